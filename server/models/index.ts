@@ -1,0 +1,72 @@
+import type { Sequelize } from 'sequelize';
+import { initAntenna } from './antenna.js';
+import { initIdentity } from './identity.js';
+import { initLastSeen } from './last-seen.js';
+import { initLeg } from './leg.js';
+import { initOrganisation } from './organisation.js';
+import { initPerson } from './person.js';
+import { initPersonSite } from './person-site.js';
+import { initReadPoint } from './read-point.js';
+import { initReaderToken } from './reader-token.js';
+import { initRouteEdge } from './route-edge.js';
+import { initRouteNode } from './route-node.js';
+import { initSession } from './session.js';
+import { initSite } from './site.js';
+import { initStay } from './stay.js';
+import { initTag } from './tag.js';
+import { initUnit } from './unit.js';
+
+/** All models bound to one connection. */
+export type Models = ReturnType<typeof bindModels>;
+
+const bound = new WeakMap<Sequelize, Models>();
+
+/** The models of a connection; bound once, the same objects ever after. */
+export function modelsOf(sequelize: Sequelize): Models {
+  let models = bound.get(sequelize);
+  if (!models) {
+    models = bindModels(sequelize);
+    bound.set(sequelize, models);
+  }
+  return models;
+}
+
+function bindModels(sequelize: Sequelize) {
+  const models = {
+    Antenna: initAntenna(sequelize),
+    Identity: initIdentity(sequelize),
+    LastSeen: initLastSeen(sequelize),
+    Leg: initLeg(sequelize),
+    Organisation: initOrganisation(sequelize),
+    Person: initPerson(sequelize),
+    PersonSite: initPersonSite(sequelize),
+    ReadPoint: initReadPoint(sequelize),
+    ReaderToken: initReaderToken(sequelize),
+    RouteEdge: initRouteEdge(sequelize),
+    RouteNode: initRouteNode(sequelize),
+    Session: initSession(sequelize),
+    Site: initSite(sequelize),
+    Stay: initStay(sequelize),
+    Tag: initTag(sequelize),
+    Unit: initUnit(sequelize),
+  };
+  models.Person.belongsTo(models.Organisation, {
+    as: 'organisation',
+    foreignKey: 'organisationId',
+  });
+  models.Person.belongsToMany(models.Site, {
+    as: 'sites',
+    through: models.PersonSite,
+    foreignKey: 'personId',
+    otherKey: 'siteId',
+    timestamps: false,
+  });
+  models.Session.belongsTo(models.Person, { as: 'person', foreignKey: 'personId' });
+  models.ReadPoint.belongsTo(models.Site, { as: 'site', foreignKey: 'siteId' });
+  models.Antenna.belongsTo(models.ReadPoint, { as: 'readPoint', foreignKey: 'readPointId' });
+  models.Unit.belongsTo(models.Organisation, { as: 'owner', foreignKey: 'ownerId' });
+  models.Unit.hasMany(models.Identity, { as: 'identities', foreignKey: 'unitId' });
+  models.Unit.hasMany(models.Tag, { as: 'tags', foreignKey: 'unitId' });
+  models.Unit.hasOne(models.LastSeen, { as: 'lastSeen', foreignKey: 'unitId' });
+  return models;
+}
