@@ -111,6 +111,7 @@ export default tseslint.config(
   {
     files: ['tests/**/*.{ts,tsx}'],
     rules: {
+      'no-console': 'off',
       // expect(spy.method) and supertest bodies are read untyped; a wrong shape fails the test itself.
       '@typescript-eslint/unbound-method': 'off',
       '@typescript-eslint/no-unsafe-assignment': 'off',

@@ -5,12 +5,6 @@ import { defineConfig } from 'vitest/config';
 
 const here = (file: string) => fileURLToPath(new URL(file, import.meta.url));
 
-/** What `vite build --ssr` makes: every program of the server that `start` and `serve` run. */
-const serverPrograms = {
-  index: here('server/index.ts'),
-  simulator: here('server/simulator/index.ts'),
-};
-
 const clientBuild = {
   outDir: 'dist/client',
   emptyOutDir: true,
@@ -21,13 +15,13 @@ const serverBuild = {
   emptyOutDir: true,
   target: 'node20',
   sourcemap: true,
-  rolldownOptions: { input: serverPrograms },
+  rolldownOptions: { input: { index: here('server/index.ts') } },
 };
 
 /** Tests that share the throw-away MariaDB; each worker has a database of its own in it. */
 const onDatabase = {
   globalSetup: ['tests/support/mariadb-global.ts'],
-  setupFiles: ['tests/support/guards.ts'],
+  setupFiles: ['tests/support/guards.ts', 'tests/support/database-setup.ts'],
 };
 
 export default defineConfig(({ isSsrBuild }) => ({

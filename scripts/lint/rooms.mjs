@@ -15,7 +15,7 @@ export const serverFloors = [
   ['services'],
   ['queries'],
   ['presenters'],
-  ['policies', 'mail'],
+  ['policies', 'mail', 'smtp-fake'],
   ['models'],
   ['domain'],
   ['contract'],
