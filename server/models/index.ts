@@ -1,9 +1,12 @@
 import type { Sequelize } from 'sequelize';
+import { initAlert } from './alert.js';
 import { initAntenna } from './antenna.js';
 import { initIdentity } from './identity.js';
 import { initLastSeen } from './last-seen.js';
 import { initLeg } from './leg.js';
+import { initMailAttempt } from './mail-attempt.js';
 import { initOrganisation } from './organisation.js';
+import { initOutboxMail } from './outbox-mail.js';
 import { initPerson } from './person.js';
 import { initPersonSite } from './person-site.js';
 import { initReadPoint } from './read-point.js';
@@ -15,6 +18,8 @@ import { initSite } from './site.js';
 import { initStay } from './stay.js';
 import { initTag } from './tag.js';
 import { initUnit } from './unit.js';
+import { initWatch } from './watch.js';
+import { initWatchPerson } from './watch-person.js';
 
 /** All models bound to one connection. */
 export type Models = ReturnType<typeof bindModels>;
@@ -28,16 +33,30 @@ export function modelsOf(sequelize: Sequelize): Models {
     models = bindModels(sequelize);
     bound.set(sequelize, models);
   }
+  models.Watch.belongsTo(models.Person, { as: 'person', foreignKey: 'personId' });
+  models.Watch.belongsToMany(models.Person, {
+    as: 'people',
+    through: models.WatchPerson,
+    foreignKey: 'watchId',
+    otherKey: 'personId',
+    timestamps: false,
+  });
+  models.Alert.belongsTo(models.Watch, { as: 'watch', foreignKey: 'watchId' });
+  models.OutboxMail.belongsTo(models.Watch, { as: 'watch', foreignKey: 'watchId' });
+  models.OutboxMail.hasMany(models.MailAttempt, { as: 'attempts', foreignKey: 'outboxId' });
   return models;
 }
 
 function bindModels(sequelize: Sequelize) {
   const models = {
+    Alert: initAlert(sequelize),
     Antenna: initAntenna(sequelize),
     Identity: initIdentity(sequelize),
     LastSeen: initLastSeen(sequelize),
     Leg: initLeg(sequelize),
+    MailAttempt: initMailAttempt(sequelize),
     Organisation: initOrganisation(sequelize),
+    OutboxMail: initOutboxMail(sequelize),
     Person: initPerson(sequelize),
     PersonSite: initPersonSite(sequelize),
     ReadPoint: initReadPoint(sequelize),
@@ -49,6 +68,8 @@ function bindModels(sequelize: Sequelize) {
     Stay: initStay(sequelize),
     Tag: initTag(sequelize),
     Unit: initUnit(sequelize),
+    Watch: initWatch(sequelize),
+    WatchPerson: initWatchPerson(sequelize),
   };
   models.Person.belongsTo(models.Organisation, {
     as: 'organisation',
