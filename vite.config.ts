@@ -27,10 +27,6 @@ const onDatabase = {
 export default defineConfig(({ isSsrBuild }) => ({
   plugins: [react(), tailwindcss()],
   build: isSsrBuild ? serverBuild : clientBuild,
-  server: {
-    host: '127.0.0.1',
-    proxy: { '/api': { target: 'http://127.0.0.1:4300' } },
-  },
   test: {
     reporters: ['default'],
     projects: [

@@ -1,35 +1,20 @@
-import { spawn, spawnSync } from 'node:child_process';
-import { randomBytes } from 'node:crypto';
+import { spawn } from 'node:child_process';
 import {
   chmodSync,
   chownSync,
   existsSync,
-  lchownSync,
-  mkdirSync,
   mkdtempSync,
   openSync,
   closeSync,
   readFileSync,
-  readdirSync,
   rmSync,
-  statSync,
   writeFileSync,
 } from 'node:fs';
 import { connect, createServer } from 'node:net';
 import os from 'node:os';
 import path from 'node:path';
+import { bootstrap, findMariadb, prepare, rememberedPassword } from './mariadb-files.mjs';
 import { identityOf, isAlive, readHolder, stopProcess, waitUntil } from './processes.mjs';
-
-// A plain user's PATH has no sbin.
-const serverPlaces = ['/usr/sbin/mariadbd', '/usr/bin/mariadbd', '/usr/local/sbin/mariadbd'];
-const installerPlaces = ['/usr/bin/mariadb-install-db', '/usr/local/bin/mariadb-install-db'];
-
-/** The database server's program, or null when it is not installed. */
-export function findMariadb() {
-  const server = serverPlaces.find((file) => existsSync(file));
-  const installer = installerPlaces.find((file) => existsSync(file));
-  return server && installer ? { server, installer } : null;
-}
 
 /**
  * Starts a MariaDB of our own on loopback, in `dir`, which is created and filled when empty.
@@ -37,12 +22,14 @@ export function findMariadb() {
  *
  * @param {object} options
  * @param {string} options.dir
- * @param {boolean} [options.throwAway] removed when stopped; not flushed to disk at each commit;
- *   the user may do anything, as tests need databases of their own
+ * @param {boolean} [options.throwAway] removed when stopped
+ * @param {boolean} [options.durable] each commit reaches the disk before it is answered
  * @param {number} [options.bufferPoolMb]
- * @param {string} [options.database] created when absent; the user's rights end at it
+ * @param {string} [options.database] created when absent, and the user's rights end at it;
+ *   without one the user may do anything, as tests need databases of their own
  */
-export async function startMariadb({ dir, throwAway = false, bufferPoolMb = 256, database }) {
+export async function startMariadb(options) {
+  const { dir, throwAway = false, durable = !throwAway, bufferPoolMb = 256, database } = options;
   const programs = findMariadb();
   if (!programs) throw new Error('MariaDB is not installed (Debian: mariadb-server-core).');
   const place = prepare(path.resolve(dir), programs.installer);
@@ -54,7 +41,7 @@ export async function startMariadb({ dir, throwAway = false, bufferPoolMb = 256,
     const started = await launch(programs.server, place, {
       port,
       bufferPoolMb,
-      throwAway,
+      durable,
       sql: grants(password, database),
     });
     if (started.child) return handle(place, started, { port, password, database, throwAway });
@@ -64,60 +51,6 @@ export async function startMariadb({ dir, throwAway = false, bufferPoolMb = 256,
     }
   }
 }
-
-function prepare(dir) {
-  mkdirSync(dir, { recursive: true, mode: 0o755 });
-  const place = {
-    dir,
-    data: path.join(dir, 'data'),
-    log: path.join(dir, 'mariadb.log'),
-    pidFile: path.join(dir, 'mariadb.pid'),
-    passwordFile: path.join(dir, 'password'),
-    account: null,
-  };
-  mkdirSync(place.data, { recursive: true, mode: 0o700 });
-  place.account = accountFor(place);
-  return place;
-}
-
-/**
- * MariaDB refuses to run as root by accident. As root it runs as `mysql` where that account
- * exists and can reach the directory (it cannot below /root), else as root said aloud.
- */
-function accountFor(place) {
-  if (process.getuid() !== 0) return null;
-  const entry = readFileSync('/etc/passwd', 'utf8')
-    .split('\n')
-    .map((line) => line.split(':'))
-    .find(([name]) => name === 'mysql');
-  const root = { name: 'root', uid: 0, gid: 0 };
-  if (!entry) return own(place, root);
-  const mysql = { name: 'mysql', uid: Number(entry[2]), gid: Number(entry[3]) };
-  own(place, mysql);
-  const reach = spawnSync('/bin/sh', ['-c', 'test -w .'], { cwd: '/', ...ids(mysql) });
-  const reachesData = spawnSync('/bin/sh', ['-c', 'test -w "$1"', 'sh', place.data], {
-    cwd: '/',
-    ...ids(mysql),
-  });
-  return reach.error || reachesData.status !== 0 ? own(place, root) : mysql;
-}
-
-function own(place, account) {
-  const hand = (file) => {
-    const stat = statSync(file, { throwIfNoEntry: false });
-    if (stat && stat.uid !== account.uid) lchownSync(file, account.uid, account.gid);
-    if (stat?.isDirectory()) {
-      for (const entry of readdirSync(file, { withFileTypes: true })) {
-        if (!entry.isSymbolicLink()) hand(path.join(file, entry.name));
-      }
-    }
-  };
-  hand(place.data);
-  if (existsSync(place.log)) lchownSync(place.log, account.uid, account.gid);
-  return account;
-}
-
-const ids = ({ uid, gid }) => ({ uid, gid });
 
 /** A MariaDB whose starter was killed still owns the files; its work is done, so it is stopped. */
 async function stopOrphan(place) {
@@ -129,30 +62,6 @@ async function stopOrphan(place) {
     );
   }
   await stopProcess(server);
-}
-
-function bootstrap(place, installer) {
-  const options = [
-    '--no-defaults',
-    `--datadir=${place.data}`,
-    '--auth-root-authentication-method=socket',
-    '--skip-test-db',
-    '--skip-name-resolve',
-    '--innodb-buffer-pool-size=32M',
-    ...(place.account ? [`--user=${place.account.name}`] : []),
-  ];
-  const run = spawnSync(installer, options, { encoding: 'utf8' });
-  if (run.status === 0) return;
-  rmSync(place.data, { recursive: true, force: true });
-  throw new Error(`MariaDB could not make its first files:\n${run.stdout}${run.stderr}`);
-}
-
-function rememberedPassword(file) {
-  const known = readHolder(file);
-  if (known) return known;
-  const password = randomBytes(24).toString('base64url');
-  writeFileSync(file, password, { mode: 0o600 });
-  return password;
 }
 
 /** Run at each start, so that accounts are what we say whatever happened before. */
@@ -171,7 +80,7 @@ function grants(password, database) {
     .join('\n');
 }
 
-async function launch(program, place, { port, bufferPoolMb, throwAway, sql }) {
+async function launch(program, place, { port, bufferPoolMb, durable, sql }) {
   // A socket's path holds 107 bytes at most: the data directory may lie too deep for it.
   const socketDir = mkdtempSync(path.join(os.tmpdir(), 'fp-'));
   const initFile = path.join(socketDir, 'init.sql');
@@ -203,8 +112,8 @@ async function launch(program, place, { port, bufferPoolMb, throwAway, sql }) {
       '--local-infile=0',
       '--performance-schema=OFF',
       `--innodb-buffer-pool-size=${bufferPoolMb}M`,
-      `--innodb-flush-log-at-trx-commit=${throwAway ? 0 : 1}`,
-      ...(throwAway ? ['--innodb-doublewrite=0', '--innodb-log-file-size=64M'] : []),
+      `--innodb-flush-log-at-trx-commit=${durable ? 1 : 0}`,
+      `--innodb-doublewrite=${durable ? 1 : 0}`,
       ...(place.account ? [`--user=${place.account.name}`] : []),
     ],
     // In a group of its own: Ctrl-C reaches the whole terminal group, and the database stops last.

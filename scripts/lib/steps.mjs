@@ -1,0 +1,62 @@
+/** Something a person can mend by what the message says; shown without a stack. */
+export class Mend extends Error {}
+
+const columns = 26;
+
+/** Runs one step and prints its name, its outcome in a few words, and how long it took. */
+export async function step(name, act) {
+  const begun = Date.now();
+  const bar = progressBar(name);
+  try {
+    const outcome = await act(bar.show);
+    bar.clear();
+    print(`${name.padEnd(columns)} ${outcome ?? 'done'} (${seconds(begun)} s)`);
+  } catch (error) {
+    bar.clear();
+    print(`${name.padEnd(columns)} failed (${seconds(begun)} s)`);
+    throw error;
+  }
+}
+
+export function print(line = '') {
+  process.stdout.write(`${line}\n`);
+}
+
+export function seconds(begun) {
+  return ((Date.now() - begun) / 1000).toFixed(1);
+}
+
+/**
+ * On a terminal one line that is drawn anew; elsewhere a line at each tenth, so that a log stays
+ * readable.
+ */
+function progressBar(name) {
+  let drawn = false;
+  let tenth = 0;
+  return {
+    show(done, total, unit = '') {
+      const share = total > 0 ? Math.min(1, done / total) : 1;
+      const text = `${bar(share)} ${String(Math.floor(share * 100)).padStart(3)} % ${unit}`;
+      if (process.stdout.isTTY) {
+        drawn = true;
+        process.stdout.write(`\r\x1b[K${name.padEnd(columns)} ${text}`);
+      } else if (Math.floor(share * 10) > tenth) {
+        tenth = Math.floor(share * 10);
+        print(`${name.padEnd(columns)} ${text}`);
+      }
+    },
+    clear() {
+      if (drawn) process.stdout.write('\r\x1b[K');
+    },
+  };
+}
+
+function bar(share) {
+  const full = Math.round(share * 24);
+  return `[${'='.repeat(full)}${' '.repeat(24 - full)}]`;
+}
+
+/** Says what went wrong: in words for what a person can mend, whole for everything else. */
+export function complain(error) {
+  process.stderr.write(`\n${error instanceof Mend ? error.message : (error?.stack ?? error)}\n`);
+}
