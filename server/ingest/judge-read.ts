@@ -1,0 +1,81 @@
+import { INGEST_BOUNDS, type RejectCode } from '../contract/ingest.js';
+import { resolveTag, type ResolvedTag } from '../domain/identifiers/resolve-tag.js';
+import { parseInstant } from './parse-instant.js';
+
+/** A read that will be stored; `index` is its place in the request. */
+export interface SoundRead {
+  index: number;
+  antenna: number;
+  tag: ResolvedTag;
+  readAtMs: number;
+  rssi: number | null;
+  count: number | null;
+}
+
+export interface RejectedRead {
+  index: number;
+  code: RejectCode;
+  detail: string;
+}
+
+/** Stands in a list of reads for a line that was no JSON. */
+export const NOT_JSON = Symbol('a line that is not JSON');
+
+const MOST_COUNT = 4_294_967_295;
+const MOST_RSSI = 9_999;
+
+/** Takes a read as it came apart into its values, or says the first thing that is wrong with it. */
+export function judgeRead(raw: unknown, index: number): SoundRead | RejectedRead {
+  const reject = (code: RejectCode, detail: string): RejectedRead => ({ index, code, detail });
+  if (raw === NOT_JSON) return reject('not-json', 'This line is not JSON.');
+  if (typeof raw !== 'object' || raw === null || Array.isArray(raw)) {
+    return reject('not-an-object', 'A read is an object with antenna, tag and readAt.');
+  }
+  const { antenna, tag, readAt, rssi, count } = raw as Record<string, unknown>;
+  if (antenna == null) return reject('missing-antenna', 'antenna is missing.');
+  const trimmed = typeof tag === 'string' ? tag.trim() : tag;
+  if (trimmed == null || trimmed === '') return reject('missing-tag', 'tag is missing.');
+  if (typeof trimmed === 'string' && isTooLong(trimmed)) {
+    return reject('tag-too-long', `tag has more than ${INGEST_BOUNDS.tagBytes} bytes.`);
+  }
+  if (readAt == null) return reject('missing-time', 'readAt is missing.');
+  const readAtMs = typeof readAt === 'string' ? parseInstant(readAt) : null;
+  if (readAtMs === null) return reject('invalid-time', INVALID_TIME);
+  const fault = faultOfValues(antenna, trimmed, rssi, count);
+  if (fault !== null) return reject('bad-value', fault);
+  return {
+    index,
+    antenna: antenna as number,
+    tag: resolveTag(trimmed as string),
+    readAtMs,
+    rssi: (rssi ?? null) as number | null,
+    count: (count ?? null) as number | null,
+  };
+}
+
+const INVALID_TIME = 'readAt must be an RFC 3339 time with an offset, in the years 1990 to 2100.';
+
+function isTooLong(text: string): boolean {
+  const { tagBytes } = INGEST_BOUNDS;
+  // No character takes fewer bytes than it takes places, none more than three a place.
+  return (
+    text.length > tagBytes || (text.length * 3 > tagBytes && Buffer.byteLength(text) > tagBytes)
+  );
+}
+
+function faultOfValues(antenna: unknown, tag: unknown, rssi: unknown, count: unknown) {
+  if (!isWholeNumber(antenna, 1, 255)) return 'antenna must be a whole number from 1 to 255.';
+  if (typeof tag !== 'string') return 'tag must be text.';
+  if (/\p{Surrogate}/u.test(tag)) return 'tag holds half a character.';
+  if (rssi != null && !(typeof rssi === 'number' && Math.abs(rssi) <= MOST_RSSI)) {
+    return `rssi must be a number from -${MOST_RSSI} to ${MOST_RSSI}.`;
+  }
+  if (count != null && !isWholeNumber(count, 0, MOST_COUNT)) {
+    return 'count must be a whole number, 0 or more.';
+  }
+  return null;
+}
+
+function isWholeNumber(value: unknown, min: number, max: number): value is number {
+  return typeof value === 'number' && Number.isInteger(value) && value >= min && value <= max;
+}

@@ -1,0 +1,45 @@
+import type { IncomingMessage } from 'node:http';
+import { INGEST_BOUNDS } from '../contract/ingest.js';
+import { invalid, timedOut, tooLarge, type Problem } from '../errors.js';
+
+/**
+ * The whole body. Throws 413 as soon as it is too large, and 408 when nothing of it came for
+ * `idleMs`; what is still on its way then is thrown away.
+ */
+export function receiveBody(request: IncomingMessage, idleMs: number): Promise<Buffer> {
+  const tooLargeProblem = () => tooLarge('A request holds at most 2 MB.');
+  if (Number(request.headers['content-length'] ?? 0) > INGEST_BOUNDS.bytes) {
+    request.resume();
+    return Promise.reject(tooLargeProblem());
+  }
+  return new Promise((resolve, reject) => {
+    const chunks: Buffer[] = [];
+    let bytes = 0;
+    const refuse = (problem: Problem) => {
+      stop();
+      request.resume();
+      reject(problem);
+    };
+    const timer = setTimeout(() => {
+      refuse(timedOut('The rest of the body did not come.'));
+    }, idleMs);
+    const onData = (chunk: Buffer) => {
+      timer.refresh();
+      chunks.push(chunk);
+      bytes += chunk.length;
+      if (bytes > INGEST_BOUNDS.bytes) refuse(tooLargeProblem());
+    };
+    const onEnd = () => {
+      stop();
+      resolve(Buffer.concat(chunks));
+    };
+    const onClose = () => {
+      refuse(invalid('The connection closed within the body.'));
+    };
+    const stop = () => {
+      clearTimeout(timer);
+      request.off('data', onData).off('end', onEnd).off('close', onClose);
+    };
+    request.on('data', onData).on('end', onEnd).on('close', onClose);
+  });
+}
