@@ -1,4 +1,14 @@
 import { z } from 'zod';
+import {
+  codeSchema,
+  dataOf,
+  equipmentKinds,
+  instantSchema,
+  namedSchema,
+  pageOf,
+  pageQuery,
+  textSchema,
+} from './common.js';
 
 /** What a watch can look for so far; the other kinds of the interface come with their figures. */
 export const watchKinds = ['quiet', 'dwell'] as const;
@@ -19,17 +29,6 @@ export const WATCH_LIMITS = {
   perPerson: 100,
 } as const;
 
-const equipmentKinds = [
-  'car',
-  'locomotive',
-  'container',
-  'trailer',
-  'chassis',
-  'generatorSet',
-  'endOfTrain',
-  'other',
-] as const;
-
 const listOf = <T extends z.ZodType>(item: T, most: number) => z.array(item).min(1).max(most);
 
 /** Which equipment a watch covers; a part that is absent narrows nothing. */
@@ -42,7 +41,7 @@ export const watchScope = z.object({
       .string()
       .trim()
       .toUpperCase()
-      .regex(/^[A-Z]{1,4}$/, 'One to four letters.'),
+      .regex(/^[A-Z]{1,4}$/, 'must be one to four letters'),
     WATCH_LIMITS.marks,
   )
     .optional()
@@ -53,16 +52,13 @@ export const watchScope = z.object({
   owners: listOf(z.int().positive(), WATCH_LIMITS.owners)
     .optional()
     .meta({ description: 'Ids of organisations' }),
-  sites: listOf(
-    z.string().regex(/^[A-Z0-9]{1,16}$/, 'Up to 16 capital letters or digits.'),
-    WATCH_LIMITS.sites,
-  )
+  sites: listOf(codeSchema, WATCH_LIMITS.sites)
     .optional()
     .meta({ description: 'Site codes: where it stands (dwell) or was last read (quiet)' }),
 });
 export type WatchScope = z.infer<typeof watchScope>;
 
-const mailAddress = z.email('This is not a mail address.').max(254);
+const mailAddress = z.email('must be a mail address').max(254);
 
 const recipients = z.object({
   people: z
@@ -75,14 +71,9 @@ const recipients = z.object({
 
 const schedule = z.object({ at: z.literal('once') });
 
-const name = z
-  .string()
-  .trim()
-  .min(1, 'A watch needs a name.')
-  .max(120)
-  .regex(/^\P{Cc}*$/u, 'Line breaks and control characters are not allowed.');
+const name = textSchema(120);
 
-const hours = z.number().min(1, 'At least one hour.').max(WATCH_LIMITS.hours);
+const hours = z.number().min(1).max(WATCH_LIMITS.hours);
 
 /** What a watch is made of; recipients absent means the person who sets it. */
 export const watchInput = z.object({
@@ -119,15 +110,17 @@ export const watchPreviewInput = watchInput.pick({
 });
 export type WatchPreviewInput = z.infer<typeof watchPreviewInput>;
 
-export const watchParams = z.object({ id: z.coerce.number().int().positive() });
+/** The number of a record in an address. */
+export const idInput = z
+  .string()
+  .regex(/^[1-9][0-9]{0,14}$/, 'must be the number of a record')
+  .transform(Number)
+  .meta({ override: { type: 'integer', minimum: 1 } });
 
-export const watchListQuery = z.strictObject({
-  limit: z.coerce.number().int().min(1).max(200).default(50),
-  cursor: z.string().max(400).optional(),
-});
+export const watchParams = z.object({ id: idInput });
 
-const instant = z.iso.datetime();
-const codeAndName = z.object({ code: z.string(), name: z.string() });
+export const watchListQuery = pageQuery;
+
 const idAndName = z.object({ id: z.number(), name: z.string() });
 
 /** A watch as answered; `scope` and `recipients` can be sent back as they are. */
@@ -145,12 +138,12 @@ export const watchView = z
     named: z.object({
       units: z.array(z.object({ unitId: z.string(), display: z.string() })),
       owners: z.array(idAndName),
-      sites: z.array(codeAndName),
+      sites: z.array(namedSchema),
       people: z.array(idAndName),
     }),
     openAlerts: z.number(),
-    createdAt: instant,
-    evaluatedAt: instant.nullable(),
+    createdAt: instantSchema,
+    evaluatedAt: instantSchema.nullable(),
   })
   .meta({ id: 'Watch' });
 export type WatchView = z.infer<typeof watchView>;
@@ -159,10 +152,7 @@ const can = z.object({ update: z.boolean(), delete: z.boolean() });
 export const watchAnswer = z.object({ data: watchView, can });
 export type WatchAnswer = z.infer<typeof watchAnswer>;
 
-export const watchListAnswer = z.object({
-  data: z.array(watchView.extend({ can })),
-  next: z.string().nullable(),
-});
+export const watchListAnswer = pageOf(watchView.extend({ can }).meta({ id: 'ListedWatch' }));
 export type WatchListAnswer = z.infer<typeof watchListAnswer>;
 
 /** A car that a watch would raise an alert for; `atLeast`: it was there before `since`. */
@@ -170,66 +160,18 @@ export const watchedUnit = z.object({
   unitId: z.string(),
   display: z.string(),
   kind: z.string(),
-  site: codeAndName.nullable(),
-  since: instant,
+  site: namedSchema.nullable(),
+  since: instantSchema,
   atLeast: z.boolean(),
   hours: z.number(),
 });
 export type WatchedUnit = z.infer<typeof watchedUnit>;
 
-export const watchPreviewAnswer = z.object({
-  data: z.object({
+export const watchPreviewAnswer = dataOf(
+  z.object({
     covers: z.number().meta({ description: 'Equipment in scope that the person may see now' }),
     wouldRaise: z.number(),
     first: z.array(watchedUnit).meta({ description: 'The longest first, at most ten' }),
   }),
-});
+);
 export type WatchPreviewAnswer = z.infer<typeof watchPreviewAnswer>;
-
-/** Operations of /api/watches, for the generated description. */
-export const watchesOperations = [
-  {
-    method: 'get',
-    path: '/api/watches',
-    summary: 'Watches of mine and those that tell me, newest first',
-    query: watchListQuery,
-    response: watchListAnswer,
-  },
-  {
-    method: 'post',
-    path: '/api/watches',
-    summary: 'Ask to be told',
-    body: watchInput,
-    status: 201,
-    response: watchAnswer,
-  },
-  {
-    method: 'post',
-    path: '/api/watches/preview',
-    summary: 'How much a watch would cover and raise now; nothing is kept',
-    body: watchPreviewInput,
-    response: watchPreviewAnswer,
-  },
-  {
-    method: 'get',
-    path: '/api/watches/:id',
-    summary: 'One watch',
-    params: watchParams,
-    response: watchAnswer,
-  },
-  {
-    method: 'patch',
-    path: '/api/watches/:id',
-    summary: 'Change a watch; its kind stays',
-    params: watchParams,
-    body: watchChange,
-    response: watchAnswer,
-  },
-  {
-    method: 'delete',
-    path: '/api/watches/:id',
-    summary: 'End a watch; its open alerts clear',
-    params: watchParams,
-    status: 204,
-  },
-] as const;
