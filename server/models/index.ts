@@ -33,17 +33,6 @@ export function modelsOf(sequelize: Sequelize): Models {
     models = bindModels(sequelize);
     bound.set(sequelize, models);
   }
-  models.Watch.belongsTo(models.Person, { as: 'person', foreignKey: 'personId' });
-  models.Watch.belongsToMany(models.Person, {
-    as: 'people',
-    through: models.WatchPerson,
-    foreignKey: 'watchId',
-    otherKey: 'personId',
-    timestamps: false,
-  });
-  models.Alert.belongsTo(models.Watch, { as: 'watch', foreignKey: 'watchId' });
-  models.OutboxMail.belongsTo(models.Watch, { as: 'watch', foreignKey: 'watchId' });
-  models.OutboxMail.hasMany(models.MailAttempt, { as: 'attempts', foreignKey: 'outboxId' });
   return models;
 }
 
@@ -89,5 +78,16 @@ function bindModels(sequelize: Sequelize) {
   models.Unit.hasMany(models.Identity, { as: 'identities', foreignKey: 'unitId' });
   models.Unit.hasMany(models.Tag, { as: 'tags', foreignKey: 'unitId' });
   models.Unit.hasOne(models.LastSeen, { as: 'lastSeen', foreignKey: 'unitId' });
+  models.Watch.belongsTo(models.Person, { as: 'person', foreignKey: 'personId' });
+  models.Watch.belongsToMany(models.Person, {
+    as: 'people',
+    through: models.WatchPerson,
+    foreignKey: 'watchId',
+    otherKey: 'personId',
+    timestamps: false,
+  });
+  models.Alert.belongsTo(models.Watch, { as: 'watch', foreignKey: 'watchId' });
+  models.OutboxMail.belongsTo(models.Watch, { as: 'watch', foreignKey: 'watchId' });
+  models.OutboxMail.hasMany(models.MailAttempt, { as: 'attempts', foreignKey: 'outboxId' });
   return models;
 }

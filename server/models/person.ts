@@ -4,8 +4,11 @@ import {
   type CreationOptional,
   type InferAttributes,
   type InferCreationAttributes,
+  type NonAttribute,
   type Sequelize,
 } from 'sequelize';
+import type { Organisation } from './organisation.js';
+import type { Site } from './site.js';
 
 /** A row of `people`. */
 export class Person extends Model<InferAttributes<Person>, InferCreationAttributes<Person>> {
@@ -17,6 +20,8 @@ export class Person extends Model<InferAttributes<Person>, InferCreationAttribut
   declare roles: string;
   declare timeZone: CreationOptional<string>;
   declare createdAt: CreationOptional<Date>;
+  declare organisation?: NonAttribute<Organisation | null>;
+  declare sites?: NonAttribute<Site[]>;
 }
 
 /** Binds Person to the given connection. */

@@ -3,8 +3,10 @@ import {
   Model,
   type InferAttributes,
   type InferCreationAttributes,
+  type NonAttribute,
   type Sequelize,
 } from 'sequelize';
+import type { Person } from './person.js';
 
 /** A row of `sessions`. */
 export class Session extends Model<InferAttributes<Session>, InferCreationAttributes<Session>> {
@@ -13,6 +15,7 @@ export class Session extends Model<InferAttributes<Session>, InferCreationAttrib
   declare createdAt: Date;
   declare expiresAt: Date;
   declare endedAt: Date | null;
+  declare person?: NonAttribute<Person>;
 }
 
 /** Binds Session to the given connection. */

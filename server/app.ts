@@ -1,0 +1,79 @@
+import compression from 'compression';
+import express, { type Express, type Router } from 'express';
+import { clientFiles, findClientDirectory } from './middleware/client-files.js';
+import type { Context } from './lib/context.js';
+import type { Operation } from './lib/openapi/operation.js';
+import { jsonBody } from './middleware/json-body.js';
+import { noStore } from './middleware/no-store.js';
+import { problemHandler, unknownPath } from './middleware/problem.js';
+import type { SignInLimits } from './middleware/rate-limit.js';
+import { requestLog } from './middleware/request-log.js';
+import { sameOrigin } from './middleware/same-origin.js';
+import { securityHeaders } from './middleware/security-headers.js';
+import { healthOperations, healthRoutes } from './routes/health.js';
+import { metricsOperations, metricsRoutes } from './routes/metrics.js';
+import { openapiOperations, openapiRoutes } from './routes/openapi.js';
+import { sessionOperations, sessionRoutes } from './routes/session.js';
+
+/** What is not the same for every server: the projector's lag, limits, where the client lies. */
+export interface AppParts {
+  projectorLagMs?: () => Promise<number>;
+  limits?: { signIn?: SignInLimits };
+  /** null: no screens are served. The build's own place when absent. */
+  clientDirectory?: string | null;
+}
+
+/** Every route of the interface, as /api/openapi.json tells it. */
+export const operations: Operation[] = [
+  ...healthOperations,
+  ...metricsOperations,
+  ...openapiOperations,
+  ...sessionOperations,
+];
+
+/** The whole web server, not yet listening: everything a request meets, in order. */
+export function createApp(context: Context, parts: AppParts = {}): Express {
+  const { env, logger } = context;
+  const lag = parts.projectorLagMs ?? (() => Promise.resolve(0));
+  const client =
+    parts.clientDirectory === undefined ? findClientDirectory() : parts.clientDirectory;
+  const app = express();
+  app.disable('x-powered-by');
+  app.set('query parser', 'simple');
+
+  app.use(requestLog(logger));
+  app.use(securityHeaders({ https: env.publicUrl.startsWith('https:') }));
+  app.use(metricsRoutes(context, lag));
+  app.use('/api', noStore);
+  app.use('/api', healthRoutes(context, lag));
+
+  app.use(sameOrigin(env.publicUrl));
+  app.use(compression({ filter: isCompressible }));
+  // Larger bodies, read only after the sign-in.
+  for (const router of administrationRouters(context)) app.use('/api', router);
+
+  app.use(jsonBody('100kb'));
+  app.use('/api', sessionRoutes(context, parts.limits?.signIn));
+  for (const router of portalRouters(context)) app.use('/api', router);
+  app.use('/api', openapiRoutes(context, operations));
+  app.use('/api', unknownPath);
+
+  if (client) app.use(clientFiles(client));
+  app.use(unknownPath);
+  app.use(problemHandler(logger));
+  return app;
+}
+
+function administrationRouters(_context: Context): Router[] {
+  return [];
+}
+
+function portalRouters(_context: Context): Router[] {
+  return [];
+}
+
+/** Event streams must not wait in a compressor for more to come. */
+function isCompressible(request: express.Request, response: express.Response): boolean {
+  const type = String(response.getHeader('Content-Type') ?? '');
+  return !type.startsWith('text/event-stream') && compression.filter(request, response);
+}

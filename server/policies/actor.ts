@@ -1,0 +1,21 @@
+import type { Role } from '../contract/common.js';
+
+export type { Role };
+
+/** The signed-in person on whose behalf a request acts. */
+export interface Actor {
+  personId: number;
+  name: string;
+  email: string;
+  roles: Role[];
+  organisationId: number | null;
+  /** Sites a clerk or dispatcher works at. */
+  siteIds: number[];
+  timeZone: string;
+}
+
+export const isAdministrator = (actor: Actor) => actor.roles.includes('administrator');
+
+/** True for the roles whose sight goes by site. */
+export const worksAtSites = (actor: Actor) =>
+  actor.roles.includes('clerk') || actor.roles.includes('dispatcher');

@@ -1,0 +1,25 @@
+import { sections, type SessionAnswer, type User } from '../contract/session.js';
+import type { Actor } from '../policies/actor.js';
+
+type Named = { code: string; name: string } | null;
+
+/** Who is signed in, as they see themselves. */
+export function presentUser(actor: Actor, organisation: Named): User {
+  return {
+    id: actor.personId,
+    name: actor.name,
+    email: actor.email,
+    roles: actor.roles,
+    organisation: organisation && { code: organisation.code, name: organisation.name },
+    timeZone: actor.timeZone,
+  };
+}
+
+/** The whole answer to "who am I". */
+export function presentSession(
+  actor: Actor,
+  organisation: Named,
+  demoMailbox: boolean,
+): SessionAnswer['data'] {
+  return { user: presentUser(actor, organisation), sections: [...sections], demoMailbox };
+}
