@@ -1,0 +1,23 @@
+/**
+ * The one description of the invented region that the demo shows: who is there, which sites and
+ * read points stand on which routes, and everything that rolls. Seeders and simulator read it.
+ */
+import { units } from './world/equipment.js';
+import { DEMO_PASSWORD, organisations, people } from './world/organisations.js';
+import { readPoints } from './world/read-points.js';
+import { edges, nodes } from './world/routes.js';
+import { sites } from './world/sites.js';
+
+export const world = {
+  organisations,
+  people,
+  password: DEMO_PASSWORD,
+  sites,
+  readPoints,
+  nodes,
+  edges,
+  units,
+};
+export type { DemoTag, DemoUnit } from './world/equipment.js';
+export type { DemoAntenna, DemoReadPoint } from './world/read-points.js';
+export type { DemoSite } from './world/sites.js';
