@@ -41,7 +41,7 @@ export async function openInstanceDatabase({ databaseUrl, dataDir }) {
     dir: path.join(dataDir, 'mariadb'),
     database: databaseName,
   });
-  return { url: server.url(), stopped: server.stopped, stop: server.stop, own: true, ...server };
+  return { ...server, url: server.url(), own: true };
 }
 
 /** Brings the schema up to date; says what has been done. */

@@ -170,10 +170,11 @@ function handle(place, { child, identity, exited, socketDir }, options) {
 /**
  * A shell that waits for the end of its input, which comes when this process ends in any way,
  * and then stops the server. A server that outlived its starter would keep the files locked.
+ * (A server that has ended stands in /proc as Z until somebody asks for its outcome.)
  */
 function startWatchdog(pid, leftovers) {
   const script =
-    'read _; kill -TERM "$1"; while kill -0 "$1" 2>/dev/null; do sleep 0.1; done; shift; rm -rf "$@"';
+    'read _; kill -TERM "$1"; while grep -q ") [^Z]" "/proc/$1/stat" 2>/dev/null; do sleep 0.1; done; shift; rm -rf "$@"';
   const watchdog = spawn('/bin/sh', ['-c', script, 'sh', String(pid), ...leftovers], {
     detached: true,
     stdio: ['pipe', 'ignore', 'ignore'],

@@ -56,7 +56,8 @@ function bar(share) {
   return `[${'='.repeat(full)}${' '.repeat(24 - full)}]`;
 }
 
-/** Says what went wrong: in words for what a person can mend, whole for everything else. */
+/** Says what went wrong: in words for what a person can mend or a command said, else whole. */
 export function complain(error) {
-  process.stderr.write(`\n${error instanceof Mend ? error.message : (error?.stack ?? error)}\n`);
+  const inWords = error instanceof Mend || error?.output !== undefined;
+  process.stderr.write(`\n${inWords ? error.message : (error?.stack ?? error)}\n`);
 }
