@@ -12,6 +12,8 @@ export function receiveBody(request: IncomingMessage, idleMs: number): Promise<B
     request.resume();
     return Promise.reject(tooLargeProblem());
   }
+  const closedProblem = () => invalid('The connection closed within the body.');
+  if (request.destroyed) return Promise.reject(closedProblem());
   return new Promise((resolve, reject) => {
     const chunks: Buffer[] = [];
     let bytes = 0;
@@ -34,7 +36,7 @@ export function receiveBody(request: IncomingMessage, idleMs: number): Promise<B
       resolve(Buffer.concat(chunks));
     };
     const onClose = () => {
-      refuse(invalid('The connection closed within the body.'));
+      refuse(closedProblem());
     };
     const stop = () => {
       clearTimeout(timer);
