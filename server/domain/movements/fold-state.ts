@@ -1,0 +1,103 @@
+import type { Direction } from './configuration.js';
+
+/** How an arrival or departure is known. */
+export type Basis = 'read' | 'inferred' | 'unknown';
+
+/** A unit at a site; instants in ms. */
+export interface Stay {
+  siteId: number;
+  firstSeenAt: number;
+  lastSeenAt: number;
+  track: string | null;
+  /** Null: it was there before anybody looked. */
+  arrivedAt: number | null;
+  arrivalBasis: Basis;
+  /** Bounds where the instant was not observed; `earliest` null: no telling. */
+  arrivalBounds: Bounds | null;
+  /** Until then the arrival may turn out to be a mere drill; null: final. */
+  arrivalFinalAt: number | null;
+  departedAt: number | null;
+  departureBasis: Exclude<Basis, 'unknown'> | null;
+  departureBounds: Bounds | null;
+  /** Until then it may come back and not have left at all; null: final. */
+  departureFinalAt: number | null;
+  /** Times it went out to the line and was soon back. */
+  excursions: number;
+  /** Its end is a guess too wide for dwell figures. */
+  outOfDwell: boolean;
+  /** Opened by a sighting without direction; an inward crossing soon after sets the arrival. */
+  openedByPresence: boolean;
+}
+
+export interface Bounds {
+  earliest: number | null;
+  latest: number;
+}
+
+/** The way between two consecutive stays of a unit. */
+export interface Leg {
+  fromSiteId: number;
+  fromFirstSeenAt: number;
+  toSiteId: number;
+  toFirstSeenAt: number;
+  departedAt: number;
+  /** Null: the arrival is not known. */
+  arrivedAt: number | null;
+  railMetres: number;
+  estimated: boolean;
+}
+
+/** The last sighting folded, as the next one is judged by it. */
+export interface Previous {
+  /** Last read of it, ms. */
+  at: number;
+  /** Where it was seen: the site it was at, left or (a line point) passed. */
+  siteId: number;
+  readPointId: number;
+  /** It was a crossing out to the line from that site. */
+  outward: boolean;
+}
+
+/** Everything about a unit's past that its next sighting can change or is judged by. */
+export interface FoldState {
+  /** Its last stay, open or closed. */
+  stay: Stay | null;
+  /** The leg that led into that stay. */
+  leg: Leg | null;
+  previous: Previous | null;
+  /** Sites (line points included) where it was seen since it left its last stay's site. */
+  trail: number[];
+  /** The crossing between two sites just made, while crossing back would strike both. */
+  drill: Drill | null;
+  /** Rows that are done unless the drill is struck. */
+  held: FoldRows;
+}
+
+export interface Drill {
+  before: FoldState;
+  readPointId: number;
+  direction: Direction;
+  at: number;
+}
+
+export interface FoldRows {
+  stays: Stay[];
+  legs: Leg[];
+}
+
+/** A unit that nobody has seen. */
+export function nothingKnown(): FoldState {
+  const held = { stays: [], legs: [] };
+  return { stay: null, leg: null, previous: null, trail: [], drill: null, held };
+}
+
+/** First sighting of the earliest stay that the state can still change; null: none. */
+export function earliestMutable(state: FoldState): number | null {
+  const firsts = [
+    ...(state.stay ? [state.stay.firstSeenAt] : []),
+    ...state.held.stays.map((stay) => stay.firstSeenAt),
+  ];
+  const nested = state.drill ? earliestMutable(state.drill.before) : null;
+  if (nested !== null) firsts.push(nested);
+  return firsts.length ? Math.min(...firsts) : null;
+}

@@ -1,0 +1,119 @@
+import type { EquipmentKind } from '../identifiers/equipment-groups.js';
+import { resolveTag } from '../identifiers/resolve-tag.js';
+import type { Network, ReadPointConfiguration, UnitRef } from './configuration.js';
+import {
+  firstRead,
+  groupsOf,
+  lastReadAt,
+  readCountOf,
+  type Evidence,
+  type UsableRead,
+} from './evidence.js';
+import {
+  ownMovement,
+  type AntennaOf,
+  type OwnMovement,
+  type WheelRecord,
+} from './own-direction.js';
+import { compareVisits, type Visit } from './visits.js';
+
+/** One unit going by (or standing at) one read point, with what it says by itself. */
+export interface Passage {
+  unit: UnitRef;
+  kind: EquipmentKind;
+  /** Which word on the kind counts, lowest first: the register's, a tag's group, a text's guess. */
+  kindRank: number;
+  visits: Evidence[];
+  first: UsableRead;
+  lastAt: number;
+  readCount: number;
+  own: OwnMovement;
+}
+
+/** What the rules of one read point need besides its visits. */
+export interface PointRules {
+  network: Network;
+  point: ReadPointConfiguration;
+  /** Wheel records of this read point near the visits, in any order. */
+  wheels: readonly WheelRecord[];
+}
+
+const LONGEST_STOP_MS = 30 * 60_000;
+
+/**
+ * Passages of one read point from all visits there (in any order): consecutive visits of one unit
+ * between which no other unit came are one passage where it may have stopped between the antennas.
+ */
+export function joinVisits(rules: PointRules, visits: readonly Visit[]): Passage[] {
+  const antennaOf: AntennaOf = (number) => rules.network.antenna(rules.point.siteId, number);
+  const severalOffsets = hasSeveralOffsets(rules.network, rules.point);
+  const wheels = [...rules.wheels].sort((a, b) => a.startedAt - b.startedAt);
+  const passages: Passage[] = [];
+  for (const visit of [...visits].sort(compareVisits)) {
+    const passage = describe(rules.network, antennaOf, wheels, visit.unit, [visit.evidence]);
+    const before = passages.at(-1);
+    if (severalOffsets && before && stoppedBetween(before, passage)) {
+      const joined = [...before.visits, visit.evidence];
+      passages[passages.length - 1] = describe(
+        rules.network,
+        antennaOf,
+        wheels,
+        visit.unit,
+        joined,
+      );
+    } else {
+      passages.push(passage);
+    }
+  }
+  return passages;
+}
+
+/** True where antennas of the read point stand at two offsets or more. */
+export function hasSeveralOffsets(network: Network, point: ReadPointConfiguration): boolean {
+  return network.offsetsOf(point.id) > 1;
+}
+
+function stoppedBetween(before: Passage, after: Passage): boolean {
+  return (
+    before.unit === after.unit &&
+    after.first.at - before.lastAt <= LONGEST_STOP_MS &&
+    (before.own.direction === null || after.own.direction === null)
+  );
+}
+
+function describe(
+  network: Network,
+  antennaOf: AntennaOf,
+  wheels: readonly WheelRecord[],
+  unit: UnitRef,
+  visits: Evidence[],
+): Passage {
+  const first = firstRead(visits[0] as Evidence);
+  const lastAt = Math.max(...visits.map(lastReadAt));
+  const { kind, kindRank } = kindOf(network, unit, visits);
+  const span = { firstAt: first.at, lastAt };
+  const own = ownMovement(visits, span, antennaOf, wheels, kind === 'endOfTrain');
+  const readCount = visits.reduce((sum, visit) => sum + readCountOf(visit), 0);
+  return { unit, kind, kindRank, visits, first, lastAt, readCount, own };
+}
+
+export const REGISTER_RANK = -1;
+export const TEXT_RANK = 99;
+
+/**
+ * The register's kind, else what the tags of this very passage say (lowest group code first, text
+ * last), so that the answer does not hang on which read of a stranger came first.
+ */
+function kindOf(network: Network, unit: UnitRef, visits: readonly Evidence[]) {
+  const known = network.unit(unit);
+  if (known?.registered) return { kind: known.kind, kindRank: REGISTER_RANK };
+  let kind: EquipmentKind = 'other';
+  let kindRank = Infinity;
+  for (const { tag } of visits.flatMap(groupsOf)) {
+    const resolved = resolveTag(tag);
+    if (resolved.kind !== 'aei' && resolved.kind !== 'text') continue;
+    const rank = resolved.kind === 'aei' ? resolved.groupCode : TEXT_RANK;
+    if (rank < kindRank) [kind, kindRank] = [resolved.equipmentKind, rank];
+  }
+  return { kind, kindRank };
+}
