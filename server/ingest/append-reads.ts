@@ -1,6 +1,7 @@
 import type { PoolConnection, UpsertResult } from 'mariadb';
 import type { HoldCode } from '../contract/ingest.js';
 import type { SoundRead } from './judge-read.js';
+import { sqlBytes, sqlCode, sqlInstant } from './sql-literals.js';
 
 /** A sound read with the door's verdict. */
 export interface DoorRead extends SoundRead {
@@ -14,9 +15,6 @@ export interface Batch {
   /** Sound reads in any order; each `index` once. */
   reads: DoorRead[];
 }
-
-const ROW = `(${Array<string>(11).fill('?').join()})`;
-const HELD_ROW = `(${Array<string>(7).fill('?').join()})`;
 
 /**
  * Appends a batch inside the caller's transaction, its row of `work` first, and returns the reads
@@ -44,27 +42,18 @@ async function insertReads(
   { siteId, receivedAt, configVersion, reads }: Batch,
 ): Promise<DoorRead[]> {
   const rows = reads.toSorted(byNaturalKey);
-  const values = rows.flatMap((read) => [
-    batchId,
-    read.index,
-    siteId,
-    read.antenna,
-    read.tag.value,
-    new Date(read.readAtMs),
-    read.rssi,
-    read.count,
-    read.hold,
-    configVersion,
-    receivedAt,
-  ]);
+  const shared = `${configVersion},${sqlInstant(receivedAt.getTime())}`;
+  const values = rows.map(({ index, antenna, tag, readAtMs, rssi, count, hold }) => {
+    const facts = `${sqlBytes(tag.value)},${sqlInstant(readAtMs)},${rssi},${count}`;
+    return `(${batchId},${index},${siteId},${antenna},${facts},${sqlCode(hold)},${shared})`;
+  });
   // Setting a column to itself makes a repeat count 0 rows and keeps the first read as it came;
   // unlike IGNORE it lets every other fault through.
   const result = await connection.query<UpsertResult>(
     `INSERT INTO \`reads\` (batch_id, seq, site_id, antenna_no, tag, read_at, rssi, read_count,
        hold_code, config_version, received_at)
-     VALUES ${rows.map(() => ROW).join()}
+     VALUES ${values.join()}
      ON DUPLICATE KEY UPDATE antenna_no = \`reads\`.antenna_no`,
-    values,
   );
   if (result.affectedRows === rows.length) return reads;
   const present = await connection.query<{ seq: number }[]>(
@@ -91,17 +80,12 @@ async function insertHeld(
 ): Promise<void> {
   const held = stored.filter((read) => read.hold !== null);
   if (held.length === 0) return;
+  const values = held.map(({ index, readAtMs, tag, hold }) => {
+    const facts = `${sqlInstant(readAtMs)},${siteId},${sqlBytes(tag.value)},${sqlCode(hold)}`;
+    return `(${batchId},${index},${facts},${configVersion})`;
+  });
   await connection.query(
     `INSERT INTO held (batch_id, seq, read_at, site_id, tag, code, config_version)
-     VALUES ${held.map(() => HELD_ROW).join()}`,
-    held.flatMap((read) => [
-      batchId,
-      read.index,
-      new Date(read.readAtMs),
-      siteId,
-      read.tag.value,
-      read.hold,
-      configVersion,
-    ]),
+     VALUES ${values.join()}`,
   );
 }

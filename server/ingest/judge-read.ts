@@ -46,11 +46,24 @@ export function judgeRead(raw: unknown, index: number): SoundRead | RejectedRead
   return {
     index,
     antenna: antenna as number,
-    tag: resolveTag(trimmed as string),
+    tag: resolveOnce(trimmed as string),
     readAtMs,
     rssi: (rssi ?? null) as number | null,
     count: (count ?? null) as number | null,
   };
+}
+
+const MOST_RESOLVED = 50_000;
+const resolved = new Map<string, ResolvedTag>();
+
+/** Each tag is read several times by several antennas: what it says is worked out once. */
+function resolveOnce(text: string): ResolvedTag {
+  const known = resolved.get(text);
+  if (known) return known;
+  if (resolved.size >= MOST_RESOLVED) resolved.clear();
+  const tag = resolveTag(text);
+  resolved.set(text, tag);
+  return tag;
 }
 
 const INVALID_TIME = 'readAt must be an RFC 3339 time with an offset, in the years 1990 to 2100.';

@@ -1,5 +1,4 @@
-const RFC3339 =
-  /^(\d{4})-(\d\d)-(\d\d)[Tt](\d\d):(\d\d):(\d\d)(?:\.(\d+))?(?:([Zz])|([+-])(\d\d):(\d\d))$/;
+const RFC3339 = /^\d{4}-\d\d-\d\d[Tt]\d\d:\d\d:\d\d(\.\d+)?([Zz]|[+-]\d\d:\d\d)$/;
 
 const EARLIEST = Date.UTC(1990, 0, 1);
 const END = Date.UTC(2101, 0, 1);
@@ -9,17 +8,35 @@ const END = Date.UTC(2101, 0, 1);
  * exist, and outside the years 1990 to 2100. A leap second counts as the second after it.
  */
 export function parseInstant(text: string): number | null {
-  const match = RFC3339.exec(text);
-  if (!match) return null;
-  const part = (index: number) => Number(match[index] ?? 0);
-  const [year, month, day, hour, minute, second] = [1, 2, 3, 4, 5, 6].map(part) as Six;
-  const date = new Date(Date.UTC(year, month - 1, day));
-  if (date.getUTCMonth() !== month - 1 || date.getUTCDate() !== day) return null;
-  if (hour > 23 || minute > 59 || second > 60 || part(10) > 23 || part(11) > 59) return null;
-  const fraction = Number((match[7] ?? '').padEnd(3, '0').slice(0, 3));
-  const offsetMinutes = (part(10) * 60 + part(11)) * (match[9] === '-' ? -1 : 1);
-  const ms = Date.UTC(year, month - 1, day, hour, minute - offsetMinutes, second, fraction);
+  if (!RFC3339.test(text)) return null;
+  const part = (from: number, to: number) => Number(text.slice(from, to));
+  const [year, month, day] = [part(0, 4), part(5, 7), part(8, 10)];
+  const [hour, minute, second] = [part(11, 13), part(14, 16), part(17, 19)];
+  if (month < 1 || month > 12 || day < 1 || day > daysOf(year, month)) return null;
+  if (hour > 23 || minute > 59 || second > 60) return null;
+  const offsetMinutes = offsetOf(text);
+  if (offsetMinutes === null) return null;
+  const ms = Date.UTC(year, month - 1, day, hour, minute - offsetMinutes, second, fractionOf(text));
   return ms >= EARLIEST && ms < END ? ms : null;
 }
 
-type Six = [number, number, number, number, number, number];
+const DAYS = [31, 28, 31, 30, 31, 30, 31, 31, 30, 31, 30, 31];
+
+function daysOf(year: number, month: number): number {
+  const isLeap = year % 4 === 0 && (year % 100 !== 0 || year % 400 === 0);
+  return month === 2 && isLeap ? 29 : (DAYS[month - 1] ?? 0);
+}
+
+/** Whole milliseconds of the fraction that may follow the seconds. */
+function fractionOf(text: string): number {
+  const digits = /^\.(\d{1,3})/.exec(text.slice(19, 23))?.[1] ?? '';
+  return Number(digits.padEnd(3, '0'));
+}
+
+/** Minutes east of UTC; null where no clock can be. */
+function offsetOf(text: string): number | null {
+  if (/[Zz]$/.test(text)) return 0;
+  const [hours, minutes] = [Number(text.slice(-5, -3)), Number(text.slice(-2))];
+  if (hours > 23 || minutes > 59) return null;
+  return (hours * 60 + minutes) * (text.at(-6) === '-' ? -1 : 1);
+}
