@@ -1,5 +1,18 @@
 import { Router } from 'express';
-import { equipmentListAnswer, equipmentQuery } from '../contract/equipment.js';
+import {
+  equipmentDetailAnswer,
+  equipmentListAnswer,
+  equipmentQuery,
+  unitParams,
+} from '../contract/equipment.js';
+import {
+  movementsAnswer,
+  movementsQuery,
+  readsAnswer,
+  readsQuery,
+  sightingsAnswer,
+  sightingsQuery,
+} from '../contract/movements.js';
 import type { Context } from '../lib/context.js';
 import type { Operation } from '../lib/openapi/operation.js';
 import { actorOf, requireUser } from '../middleware/require-user.js';
@@ -9,13 +22,19 @@ import { findReferences } from '../queries/find-references.js';
 import { listUnitIds } from '../queries/list-unit-ids.js';
 import { loadEquipment } from '../queries/load-equipment.js';
 import { unitSourcesOf } from '../queries/narrow-units.js';
+import { unitHandlers } from './unit-handlers.js';
 
 const list = { query: equipmentQuery };
+const unit = { params: unitParams };
+const movements = { params: unitParams, query: movementsQuery };
+const sightings = { params: unitParams, query: sightingsQuery };
+const reads = { params: unitParams, query: readsQuery };
 
-/** The list of equipment; a unit and its history stand in unit.ts. */
+/** The list of equipment, one unit, and its history. */
 export function equipmentRoutes(context: Context): Router {
   const { db, clock } = context;
   const router = Router();
+  const handle = unitHandlers(context, { unit, movements, sightings, reads });
 
   router.get('/equipment', requireUser(context), validate(list), async (request, response) => {
     const { site, owner, search, sort, limit, cursor, ...filters } = validated(request, list).query;
@@ -33,6 +52,11 @@ export function equipmentRoutes(context: Context): Router {
     response.json({ data, next: page.next });
   });
 
+  const guard = requireUser(context);
+  router.get('/equipment/:unitId', guard, validate(unit), handle.unit);
+  router.get('/equipment/:unitId/movements', guard, validate(movements), handle.movements);
+  router.get('/equipment/:unitId/sightings', guard, validate(sightings), handle.sightings);
+  router.get('/equipment/:unitId/reads', guard, validate(reads), handle.reads);
   return router;
 }
 
@@ -43,5 +67,36 @@ export const equipmentOperations: Operation[] = [
     summary: 'List the equipment that I may see, what wants attention first',
     query: equipmentQuery,
     response: equipmentListAnswer,
+  },
+  {
+    method: 'get',
+    path: '/api/equipment/:unitId',
+    summary: 'Tell what is known of one unit; former identities redirect',
+    params: unitParams,
+    response: equipmentDetailAnswer,
+  },
+  {
+    method: 'get',
+    path: '/api/equipment/:unitId/movements',
+    summary: 'List the stays and legs of a unit, oldest first',
+    params: unitParams,
+    query: movementsQuery,
+    response: movementsAnswer,
+  },
+  {
+    method: 'get',
+    path: '/api/equipment/:unitId/sightings',
+    summary: 'List where readers saw a unit, a row for each pass, latest first',
+    params: unitParams,
+    query: sightingsQuery,
+    response: sightingsAnswer,
+  },
+  {
+    method: 'get',
+    path: '/api/equipment/:unitId/reads',
+    summary: 'List the raw reads that a unit is known by, latest first',
+    params: unitParams,
+    query: readsQuery,
+    response: readsAnswer,
   },
 ];
