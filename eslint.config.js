@@ -106,7 +106,13 @@ export default tseslint.config(
     files: ['src/**/*.{ts,tsx}'],
     languageOptions: { globals: globals.browser },
     plugins: { 'react-hooks': reactHooks },
-    rules: reactHooks.configs.recommended.rules,
+    rules: {
+      ...reactHooks.configs.recommended.rules,
+      // Warns of libraries that the React compiler skips; this client is not compiled by it.
+      'react-hooks/incompatible-library': 'off',
+      // The hooks of form and table libraries hand out bound functions typed as methods.
+      '@typescript-eslint/unbound-method': 'off',
+    },
   },
   {
     files: ['tests/**/*.{ts,tsx}'],
