@@ -40,7 +40,7 @@ const GROUPS: Partial<Record<EquipmentKind, number>> = {
 const DEAD_SIDES = 0.04;
 
 /** Cars with two dead tags: on the register, never read. */
-const NEVER_READ = ['QTKX40388', 'QTHX61044', 'QBLX2257', 'QWKR187331'];
+const NEVER_READ = ['QTKX40388', 'QTHX61044', 'QBLX2271', 'QWKR187331'];
 
 /** GS1 keeps prefix 952 for examples, so this asset number is nobody's. */
 function epcOf(number: number, side: 0 | 1): string {

@@ -47,14 +47,14 @@ type Row = [
 const rows: Row[] = [
   ['QTKX', 40_100, 300, 'car', 'tank car', 'QUARREL', 165, 4, 'tank'],
   ['QTHX', 61_000, 130, 'car', 'covered hopper', 'QUARREL', 183, 4, 'meal'],
-  ['QBLX', 2_200, 220, 'car', 'covered hopper', 'BRACKENLD', 179, 4, 'grain', 12],
-  ['QWLX', 700, 80, 'car', 'well car', 'BRACKENLD', 235, 4, 'well'],
+  ['QBLX', 2_200, 190, 'car', 'covered hopper', 'BRACKENLD', 179, 4, 'grain', 12],
+  ['QWLX', 700, 110, 'car', 'well car', 'BRACKENLD', 235, 4, 'well'],
   ['QWKR', 151_000, 90, 'car', 'boxcar', 'QUERNWICK', 172, 4, 'freight'],
   ['QWKR', 187_300, 80, 'car', 'gondola', 'QUERNWICK', 174, 4, 'freight'],
   ['ZQXU', 305_400, 200, 'container', 'box, 40 foot', 'QUILLBOX', 122, 1, 'box'],
   ['ZQMU', 411_800, 200, 'container', 'box, 40 foot', 'QUILLBOX', 122, 1, 'box', 40],
-  ['QWKR', 2_001, 48, 'locomotive', 'road locomotive', 'QUERNWICK', 225, 6, 'power'],
-  ['QWKE', 9_001, 40, 'endOfTrain', 'end-of-train device', 'QUERNWICK', 4, 1, 'rear'],
+  ['QWKR', 2_001, 40, 'locomotive', 'road locomotive', 'QUERNWICK', 225, 6, 'power'],
+  ['QWKE', 9_001, 18, 'endOfTrain', 'end-of-train device', 'QUERNWICK', 4, 1, 'rear'],
   ['QDRX', 73_000, 340, 'car', 'covered hopper', null, 180, 4, 'stranger'],
   ['QFNX', 28_400, 260, 'car', 'tank car', null, 168, 4, 'stranger'],
   ['QHPR', 330_100, 180, 'car', 'boxcar', null, 171, 4, 'stranger'],
@@ -62,8 +62,8 @@ const rows: Row[] = [
   ['ZQKU', 620_100, 220, 'container', 'box, 40 foot', null, 122, 1, 'strangerBox', 20],
   ['ZQRU', 781_500, 180, 'container', 'box, 40 foot', null, 122, 1, 'strangerBox'],
   ['QVLZ', 240_300, 60, 'trailer', 'trailer', null, 162, 2, 'strangerBox'],
-  ['QHPR', 5_101, 12, 'locomotive', 'road locomotive', null, 226, 6, 'strangerPower'],
-  ['QHPE', 8_001, 12, 'endOfTrain', 'end-of-train device', null, 4, 1, 'strangerRear'],
+  ['QHPR', 5_101, 6, 'locomotive', 'road locomotive', null, 226, 6, 'strangerPower'],
+  ['QHPE', 8_001, 2, 'endOfTrain', 'end-of-train device', null, 4, 1, 'strangerRear'],
 ];
 
 /** The rows above by name. */
