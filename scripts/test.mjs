@@ -36,7 +36,9 @@ async function prepare() {
 
 /** Beside the linter, which takes as long as these together. */
 async function checkQuickly() {
-  await check('Format', () => runTool('prettier', ['--check', '--log-level', 'warn', '.'], { env }));
+  await check('Format', () =>
+    runTool('prettier', ['--check', '--log-level', 'warn', '.'], { env }),
+  );
   await check('Types', () => runTool('tsc', ['-p', '.'], { env }));
   await check('Build', ensureBuilt);
 }
