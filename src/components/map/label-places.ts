@@ -1,0 +1,99 @@
+interface Rectangle {
+  left: number;
+  top: number;
+  width: number;
+  height: number;
+}
+
+/** A ring with the words that want a place beside it; pixels. */
+export interface Labelled {
+  x: number;
+  y: number;
+  radius: number;
+  width: number;
+  height: number;
+}
+
+/** Where the words stand relative to the ring's middle. */
+export interface LabelPlace {
+  left: number;
+  top: number;
+  align: 'left' | 'right' | 'center';
+}
+
+const gap = 5;
+
+function candidates({ radius, width, height }: Labelled): LabelPlace[] {
+  const beside = radius + gap;
+  const slant = radius * 0.72 + gap;
+  return [
+    { left: beside, top: -height / 2, align: 'left' },
+    { left: -beside - width, top: -height / 2, align: 'right' },
+    { left: slant, top: slant - 4, align: 'left' },
+    { left: -slant - width, top: slant - 4, align: 'right' },
+    { left: slant, top: -slant - height + 4, align: 'left' },
+    { left: -slant - width, top: -slant - height + 4, align: 'right' },
+    { left: -width / 2, top: beside, align: 'center' },
+    { left: -width / 2, top: -beside - height, align: 'center' },
+  ];
+}
+
+const overlap = (a: Rectangle, b: Rectangle): number =>
+  Math.max(0, Math.min(a.left + a.width, b.left + b.width) - Math.max(a.left, b.left)) *
+  Math.max(0, Math.min(a.top + a.height, b.top + b.height) - Math.max(a.top, b.top));
+
+const holds = (box: Rectangle, [x, y]: [number, number]): boolean =>
+  x > box.left - 2 && x < box.left + box.width + 2 && y > box.top && y < box.top + box.height;
+
+/**
+ * A place for each label, greedily, the largest ring first: off the other rings and words, off the
+ * lines (`lines` are points along them), inside the frame. One place per entry, in their order.
+ */
+export function placeLabels(
+  entries: Labelled[],
+  lines: [number, number][],
+  frame: { width: number; height: number },
+): LabelPlace[] {
+  const rings = entries.map(({ x, y, radius }) => ({
+    left: x - radius,
+    top: y - radius,
+    width: radius * 2,
+    height: radius * 2,
+  }));
+  const taken: Rectangle[] = [];
+  const places = new Map<number, LabelPlace>();
+  const order = entries.map((_, index) => index);
+  order.sort((a, b) => (entries[b]?.radius ?? 0) - (entries[a]?.radius ?? 0));
+  for (const index of order) {
+    const entry = entries[index];
+    if (!entry) continue;
+    const best = candidates(entry)
+      .map((place, rank) => {
+        const box = {
+          left: entry.x + place.left,
+          top: entry.y + place.top,
+          width: entry.width,
+          height: entry.height,
+        };
+        return { place, box, cost: rank * 3 + costOf(box, rings, taken, lines, frame) };
+      })
+      .sort((a, b) => a.cost - b.cost)[0];
+    if (!best) continue;
+    places.set(index, best.place);
+    taken.push(best.box);
+  }
+  return entries.map((_, index) => places.get(index) ?? { left: 0, top: 0, align: 'left' });
+}
+
+function costOf(
+  box: Rectangle,
+  rings: Rectangle[],
+  taken: Rectangle[],
+  lines: [number, number][],
+  frame: { width: number; height: number },
+): number {
+  const onOthers = [...rings, ...taken].reduce((sum, other) => sum + overlap(box, other), 0);
+  const onLines = lines.filter((point) => holds(box, point)).length;
+  const inside = overlap(box, { left: 0, top: 0, ...frame });
+  return onOthers * 2 + onLines * 14 + (box.width * box.height - inside) * 3;
+}

@@ -1,0 +1,68 @@
+import { useEffect } from 'react';
+import L from 'leaflet';
+import type { Map as LeafletMap } from 'leaflet';
+import { drawRing } from './draw-ring';
+import { placeLabels } from './label-places';
+import type { LabelPlace } from './label-places';
+import type { MapRoute, MapSite } from './map-types';
+import { measureLabel } from './measure-label';
+import { ringRadius } from './ring-size';
+
+interface Props {
+  map: LeafletMap;
+  zoom: number;
+  sites: MapSite[];
+  routes: MapRoute[];
+  /** Code of the site that the table is narrowed to. */
+  chosen: string | undefined;
+  onChoose: (code: string) => void;
+}
+
+/** Sites as rings whose area is the count on hand, each a button with its name and what wants attention. */
+export function SiteRings({ map, zoom, sites, routes, chosen, onChoose }: Props) {
+  useEffect(() => {
+    const group = L.layerGroup().addTo(map);
+    const focused = document.activeElement?.closest<HTMLElement>('[data-site]')?.dataset.site;
+    const most = Math.max(1, ...sites.map(({ onHand }) => onHand ?? 0));
+    const radii = sites.map((site) => ringRadius(site.onHand ?? 0, most));
+    const places = placesOf(map, zoom, sites, radii, routes);
+    sites.forEach((site, index) => {
+      const radius = radii[index] ?? 0;
+      const marker = L.marker([site.latitude, site.longitude], {
+        icon: drawRing(site, radius, places[index], site.code === chosen),
+        keyboard: true,
+        riseOnHover: true,
+      });
+      marker.on('click', () => onChoose(site.code)).addTo(group);
+      const element = marker.getElement();
+      element?.setAttribute('aria-pressed', String(site.code === chosen));
+      element?.setAttribute('data-site', site.code);
+      if (focused === site.code) element?.focus({ preventScroll: true });
+    });
+    return () => {
+      group.remove();
+    };
+  }, [map, zoom, sites, routes, chosen, onChoose]);
+  return null;
+}
+
+function placesOf(
+  map: LeafletMap,
+  zoom: number,
+  sites: MapSite[],
+  radii: number[],
+  routes: MapRoute[],
+): LabelPlace[] {
+  const origin = map.project(map.getBounds().getNorthWest(), zoom);
+  const pixel = (longitude: number, latitude: number): [number, number] => {
+    const point = map.project([latitude, longitude], zoom).subtract(origin);
+    return [point.x, point.y];
+  };
+  const entries = sites.map((site, index) => {
+    const [x, y] = pixel(site.longitude, site.latitude);
+    return { x, y, radius: radii[index] ?? 0, ...measureLabel(site, radii[index] ?? 0) };
+  });
+  const lines = routes.flatMap(({ points }) => points.map(([x, y]) => pixel(x, y)));
+  const { x: width, y: height } = map.getSize();
+  return placeLabels(entries, lines, { width, height });
+}

@@ -1,0 +1,43 @@
+import { formatInstant, formatTimeOfDay, isSameDay } from '../../lib/times';
+import type { StayView } from '../../lib/wire';
+
+type Bounds = StayView['arrivalBounds'];
+
+/** An instant with what is known of it. */
+export interface KnownTime {
+  at: string | null;
+  basis: StayView['arrivalBasis'] | null;
+  bounds: Bounds;
+  provisional: boolean;
+}
+
+/** A time in words: how it reads, and how it is known. `said` '' where the end has not come. */
+export function sayKnownTime(time: KnownTime, zone: string, now: number) {
+  const { at, basis, bounds, provisional } = time;
+  const written = at ? formatInstant(at, zone, now) : '';
+  const ways: Record<NonNullable<KnownTime['basis']>, { said: string; how: string }> = {
+    read: { said: written, how: 'read' },
+    report: { said: written, how: 'reported' },
+    hand: { said: written, how: 'seen by eye' },
+    inferred: {
+      said: written && `about ${written}`,
+      how: `inferred${sayBounds(bounds, zone, now)}`,
+    },
+    unknown: { said: sayUnknown(bounds, zone, now), how: 'not seen' },
+  };
+  const way = basis ? ways[basis] : { said: written, how: '' };
+  return provisional ? { said: way.said, how: 'may only be switching' } : way;
+}
+
+/** " between 11:20 and 15:05", with the day where they fall on two. */
+function sayBounds(bounds: Bounds, zone: string, now: number): string {
+  const { earliest, latest } = bounds ?? {};
+  if (!earliest || !latest) return '';
+  const end = isSameDay(earliest, latest, zone)
+    ? formatTimeOfDay(latest, zone)
+    : formatInstant(latest, zone, now);
+  return `, between ${formatInstant(earliest, zone, now)} and ${end}`;
+}
+
+const sayUnknown = (bounds: Bounds, zone: string, now: number): string =>
+  bounds?.latest ? `before ${formatInstant(bounds.latest, zone, now)}` : 'before the first read';

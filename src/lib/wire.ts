@@ -1,0 +1,42 @@
+/** The shapes of the contract under the names that the screens use. */
+import type { SessionAnswer } from '../../server/contract/session';
+
+export type { AlertState, AlertView, AlertListAnswer } from '../../server/contract/alerts';
+export type {
+  EquipmentDetail,
+  EquipmentDetailAnswer,
+  EquipmentItem,
+  EquipmentListAnswer,
+  UnitState,
+} from '../../server/contract/equipment';
+export type { ChangedEvent } from '../../server/contract/events';
+export type { FleetSummary } from '../../server/contract/fleet';
+export type { LookUpHit } from '../../server/contract/look-up';
+export type { LookUpAnswer as LookUpReply } from '../../server/contract/look-up';
+export type { EdgeFeature, MapAnswer, SiteFeature } from '../../server/contract/map';
+export type {
+  LegView,
+  MovementsAnswer,
+  RawReadView,
+  ReadsAnswer,
+  SightingView,
+  SightingsAnswer,
+  StayView,
+} from '../../server/contract/movements';
+export type {
+  WatchInput,
+  WatchKind,
+  WatchListAnswer,
+  WatchPreviewAnswer,
+  WatchPreviewInput,
+  WatchScope,
+  WatchView,
+} from '../../server/contract/watches';
+
+/** Who is signed in and what they may open. */
+export type SessionInfo = SessionAnswer['data'];
+/** A site or reader by code and name. */
+export interface Named {
+  code: string;
+  name: string;
+}
