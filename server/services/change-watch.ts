@@ -1,6 +1,7 @@
 import type { WatchChange } from '../contract/watches.js';
 import { invalid } from '../errors.js';
 import type { Context } from '../lib/context.js';
+import { inTransaction } from '../lib/in-transaction.js';
 import { modelsOf } from '../models/index.js';
 import type { Actor } from '../policies/actor.js';
 import { listActors } from '../queries/list-actors.js';
@@ -20,7 +21,7 @@ export async function changeWatch(
   if (!owner) throw new Error(`Watch ${watch.id} belongs to nobody.`);
   const { scope, recipients } = await resolve(db, owner, change, clock.now());
   const { Watch, WatchPerson } = modelsOf(db.sequelize);
-  await db.sequelize.transaction(async (transaction) => {
+  await inTransaction(db.sequelize, async (transaction) => {
     await Watch.update(
       {
         ...(change.name === undefined ? {} : { name: change.name }),

@@ -1,6 +1,7 @@
 import { DEFAULT_WATCH_HOURS, WATCH_LIMITS, type WatchInput } from '../contract/watches.js';
 import { conflict, invalid } from '../errors.js';
 import type { Context } from '../lib/context.js';
+import { inTransaction } from '../lib/in-transaction.js';
 import { modelsOf } from '../models/index.js';
 import type { Actor } from '../policies/actor.js';
 import { countWatches } from '../queries/find-watches.js';
@@ -29,7 +30,7 @@ export async function setWatch(
   const allFaults = [...faults, ...told.faults];
   if (allFaults.length > 0) throw invalid('The watch names what is not for you.', allFaults);
   const { Watch, WatchPerson } = modelsOf(db.sequelize);
-  return db.sequelize.transaction(async (transaction) => {
+  return inTransaction(db.sequelize, async (transaction) => {
     const watch = await Watch.create(
       {
         personId: actor.personId,

@@ -1,0 +1,17 @@
+import type { Context } from '../lib/context.js';
+import { evaluateWatches } from './evaluate-watches.js';
+import { sendOutbox } from './send-outbox.js';
+
+/** Work that is done again and again; each may run twice at once and does the same. */
+export interface Job {
+  /** Also the name of its lease. */
+  name: string;
+  everySeconds: 5 | 10 | 15 | 30;
+  run(context: Context): Promise<unknown>;
+}
+
+/** Every timed job of the server. */
+export const jobs: Job[] = [
+  { name: 'evaluate-watches', everySeconds: 15, run: evaluateWatches },
+  { name: 'send-outbox', everySeconds: 5, run: (context) => sendOutbox(context) },
+];
