@@ -1,8 +1,8 @@
 import compression from 'compression';
-import express, { type Express, type Router } from 'express';
-import { clientFiles, findClientDirectory } from './middleware/client-files.js';
+import express, { type Express } from 'express';
+import type { IngestLimits } from './ingest/limits.js';
 import type { Context } from './lib/context.js';
-import type { Operation } from './lib/openapi/operation.js';
+import { clientFiles, findClientDirectory } from './middleware/client-files.js';
 import { jsonBody } from './middleware/json-body.js';
 import { noStore } from './middleware/no-store.js';
 import { problemHandler, unknownPath } from './middleware/problem.js';
@@ -10,26 +10,20 @@ import type { SignInLimits } from './middleware/rate-limit.js';
 import { requestLog } from './middleware/request-log.js';
 import { sameOrigin } from './middleware/same-origin.js';
 import { securityHeaders } from './middleware/security-headers.js';
-import { healthOperations, healthRoutes } from './routes/health.js';
-import { metricsOperations, metricsRoutes } from './routes/metrics.js';
-import { openapiOperations, openapiRoutes } from './routes/openapi.js';
-import { sessionOperations, sessionRoutes } from './routes/session.js';
+import { administrationRouters, allOperations, portalRouters } from './routes/all-routes.js';
+import { healthRoutes } from './routes/health.js';
+import { ingestRoutes } from './routes/ingest.js';
+import { metricsRoutes } from './routes/metrics.js';
+import { openapiRoutes } from './routes/openapi.js';
+import { sessionRoutes } from './routes/session.js';
 
 /** What is not the same for every server: the projector's lag, limits, where the client lies. */
 export interface AppParts {
   projectorLagMs?: () => Promise<number>;
-  limits?: { signIn?: SignInLimits };
+  limits?: { signIn?: SignInLimits; ingest?: Partial<IngestLimits> };
   /** null: no screens are served. The build's own place when absent. */
   clientDirectory?: string | null;
 }
-
-/** Every route of the interface, as /api/openapi.json tells it. */
-export const operations: Operation[] = [
-  ...healthOperations,
-  ...metricsOperations,
-  ...openapiOperations,
-  ...sessionOperations,
-];
 
 /** The whole web server, not yet listening: everything a request meets, in order. */
 export function createApp(context: Context, parts: AppParts = {}): Express {
@@ -46,6 +40,7 @@ export function createApp(context: Context, parts: AppParts = {}): Express {
   app.use(metricsRoutes(context, lag));
   app.use('/api', noStore);
   app.use('/api', healthRoutes(context, lag));
+  app.use('/api', ingestRoutes(context, parts.limits?.ingest));
 
   app.use(sameOrigin(env.publicUrl));
   app.use(compression({ filter: isCompressible }));
@@ -54,22 +49,14 @@ export function createApp(context: Context, parts: AppParts = {}): Express {
 
   app.use(jsonBody('100kb'));
   app.use('/api', sessionRoutes(context, parts.limits?.signIn));
-  for (const router of portalRouters(context)) app.use('/api', router);
-  app.use('/api', openapiRoutes(context, operations));
+  for (const router of portalRouters(context, lag)) app.use('/api', router);
+  app.use('/api', openapiRoutes(context, allOperations));
   app.use('/api', unknownPath);
 
   if (client) app.use(clientFiles(client));
   app.use(unknownPath);
   app.use(problemHandler(logger));
   return app;
-}
-
-function administrationRouters(_context: Context): Router[] {
-  return [];
-}
-
-function portalRouters(_context: Context): Router[] {
-  return [];
 }
 
 /** Event streams must not wait in a compressor for more to come. */

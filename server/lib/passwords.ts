@@ -1,6 +1,6 @@
 import bcrypt from 'bcryptjs';
 
-const COST = 11;
+const COST = 10;
 /** bcrypt reads no further than this; longer passwords are refused rather than cut. */
 export const MOST_PASSWORD_BYTES = 72;
 

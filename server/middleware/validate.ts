@@ -1,6 +1,8 @@
 import type { Request, RequestHandler } from 'express';
 import { z } from 'zod';
-import { invalid, notFound, unsupported, type ProblemFault } from '../errors.js';
+import { notFound, unsupported, type ProblemFault } from '../errors.js';
+import { Faults } from '../lib/faults.js';
+import { pointerOf } from '../lib/pointer.js';
 import { describeIssue } from './describe-issue.js';
 
 /** The schemas of a request; what is not given is not read, save that no query is then allowed. */
@@ -15,7 +17,7 @@ export type Validated<S extends RequestSchemas> = {
   [Part in keyof S]: S[Part] extends z.ZodType ? z.output<S[Part]> : undefined;
 };
 
-const passed = new WeakMap<Request, unknown>();
+const passed = new WeakMap<Request, object>();
 
 /**
  * Checks a request against its schemas and names every fault at once: body faults by JSON
@@ -30,18 +32,20 @@ export function validate(schemas: RequestSchemas): RequestHandler {
     if (schemas.body) requireJson(request);
     const query = querySchema.safeParse(request.query, { error: describeIssue });
     const body = schemas.body?.safeParse(request.body, { error: describeIssue });
-    const faults = [
-      ...(query.success ? [] : query.error.issues.flatMap(queryFaults)),
-      ...(body && !body.success ? body.error.issues.map(bodyFault) : []),
-    ];
-    if (faults.length > 0) {
-      const detail =
-        faults.length === 1
-          ? 'One thing is wrong; see errors.'
-          : `${faults.length} things are wrong; see errors.`;
-      throw invalid(detail, faults);
+    const faults = new Faults();
+    for (const { pointer, detail } of [
+      ...(query.error?.issues.flatMap(queryFaults) ?? []),
+      ...(body?.error?.issues.map(bodyFault) ?? []),
+    ]) {
+      faults.add(pointer, detail);
     }
-    passed.set(request, { params: params?.data, query: query.data, body: body?.data });
+    faults.refuse();
+    passed.set(request, {
+      ...passed.get(request),
+      query: query.data,
+      ...(params && { params: params.data }),
+      ...(body && { body: body.data }),
+    });
     next();
   };
 }
@@ -51,11 +55,6 @@ export function validated<S extends RequestSchemas>(request: Request, _schemas?:
   const parts = passed.get(request);
   if (!parts) throw new Error('This route reads its input without validate().');
   return parts as Validated<S>;
-}
-
-/** JSON pointer (RFC 6901) of a path of keys; the whole document is the empty text. */
-export function pointerOf(path: PropertyKey[]): string {
-  return path.map((key) => `/${String(key).replaceAll('~', '~0').replaceAll('/', '~1')}`).join('');
 }
 
 function requireJson(request: Request): void {

@@ -4,8 +4,10 @@ import {
   type CreationOptional,
   type InferAttributes,
   type InferCreationAttributes,
+  type NonAttribute,
   type Sequelize,
 } from 'sequelize';
+import type { Organisation } from './organisation.js';
 
 /** A row of `units`. */
 export class Unit extends Model<InferAttributes<Unit>, InferCreationAttributes<Unit>> {
@@ -19,6 +21,7 @@ export class Unit extends Model<InferAttributes<Unit>, InferCreationAttributes<U
   declare lengthDm: number | null;
   declare axles: number | null;
   declare createdAt: CreationOptional<Date>;
+  declare owner?: NonAttribute<Organisation | null>;
 }
 
 /** Binds Unit to the given connection. */

@@ -1,4 +1,4 @@
-import type { Role } from '../contract/common.js';
+import { roles, type Role } from '../contract/common.js';
 
 export type { Role };
 
@@ -19,3 +19,9 @@ export const isAdministrator = (actor: Actor) => actor.roles.includes('administr
 /** True for the roles whose sight goes by site. */
 export const worksAtSites = (actor: Actor) =>
   actor.roles.includes('clerk') || actor.roles.includes('dispatcher');
+
+/** Roles as a person's row keeps them: names with commas between. */
+export function rolesOf(stored: string): Role[] {
+  const names = stored.split(',');
+  return roles.filter((role) => names.includes(role));
+}

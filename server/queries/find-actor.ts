@@ -1,7 +1,6 @@
 import type { Database } from '../lib/database.js';
 import { modelsOf } from '../models/index.js';
-import { roles, type Role } from '../contract/common.js';
-import type { Actor } from '../policies/actor.js';
+import { rolesOf, type Actor } from '../policies/actor.js';
 
 /** The person behind a session that is neither ended nor expired; else null. */
 export async function findActor(db: Database, sessionId: string, now: Date): Promise<Actor | null> {
@@ -27,10 +26,4 @@ export async function findActor(db: Database, sessionId: string, now: Date): Pro
     siteIds: (person.sites ?? []).map((site) => site.id),
     timeZone: person.timeZone,
   };
-}
-
-/** Roles as stored: names with commas between. */
-export function rolesOf(stored: string): Role[] {
-  const names = stored.split(',');
-  return roles.filter((role) => names.includes(role));
 }

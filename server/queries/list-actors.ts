@@ -1,7 +1,6 @@
 import type { Database } from '../lib/database.js';
 import { modelsOf } from '../models/index.js';
-import type { Actor } from '../policies/actor.js';
-import { rolesOf } from './find-actor.js';
+import { rolesOf, type Actor } from '../policies/actor.js';
 
 /**
  * People as actors, by id, for work done on their behalf without a session. Unknown ids are left

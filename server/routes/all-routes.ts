@@ -1,0 +1,68 @@
+import type { Router } from 'express';
+import type { Context } from '../lib/context.js';
+import type { Operation } from '../lib/openapi/operation.js';
+import { alertsOperations, alertsRoutes } from './alerts.js';
+import { antennasOperations, antennasRoutes } from './antennas.js';
+import { equipmentOperations, equipmentRoutes } from './equipment.js';
+import { fleetOperations, fleetRoutes } from './fleet.js';
+import { healthOperations } from './health.js';
+import { ingestOperations } from './ingest.js';
+import { mailOperations, mailRoutes } from './mail.js';
+import { mapOperations, mapRoutes } from './map.js';
+import { metricsOperations } from './metrics.js';
+import { openapiOperations } from './openapi.js';
+import { organisationsOperations, organisationsRoutes } from './organisations.js';
+import { peopleOperations, peopleRoutes } from './people.js';
+import { readPointsOperations, readPointsRoutes } from './read-points.js';
+import { registerOperations, registerRoutes } from './register.js';
+import { routesOperations, routesRoutes } from './routes.js';
+import { sessionOperations } from './session.js';
+import { sitesOperations, sitesRoutes } from './sites.js';
+import { watchesOperations, watchesRoutes } from './watches.js';
+
+/** Routes that read large bodies of their own, after the sign-in. */
+export function administrationRouters(context: Context): Router[] {
+  return [
+    organisationsRoutes(context),
+    peopleRoutes(context),
+    sitesRoutes(context),
+    readPointsRoutes(context),
+    antennasRoutes(context),
+    routesRoutes(context),
+    registerRoutes(context),
+  ];
+}
+
+/** Routes behind the screens; their bodies are small. */
+export function portalRouters(context: Context, projectorLagMs: () => Promise<number>): Router[] {
+  return [
+    equipmentRoutes(context),
+    fleetRoutes(context, projectorLagMs),
+    mapRoutes(context),
+    watchesRoutes(context),
+    alertsRoutes(context),
+    mailRoutes(context),
+  ];
+}
+
+/** Every route of the interface, as /api/openapi.json tells it. */
+export const allOperations: Operation[] = [
+  ...healthOperations,
+  ...metricsOperations,
+  ...openapiOperations,
+  ...sessionOperations,
+  ...ingestOperations,
+  ...equipmentOperations,
+  ...fleetOperations,
+  ...mapOperations,
+  ...watchesOperations,
+  ...alertsOperations,
+  ...mailOperations,
+  ...organisationsOperations,
+  ...peopleOperations,
+  ...sitesOperations,
+  ...readPointsOperations,
+  ...antennasOperations,
+  ...routesOperations,
+  ...registerOperations,
+];

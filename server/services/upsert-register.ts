@@ -1,0 +1,132 @@
+import type { Transaction } from 'sequelize';
+import type { RegisterInput } from '../contract/administration.js';
+import { batchPointer, faultRepeats, type Batch } from '../lib/batch.js';
+import type { Database } from '../lib/database.js';
+import { Faults } from '../lib/faults.js';
+import { inTransaction } from '../lib/in-transaction.js';
+import { modelsOf } from '../models/index.js';
+import type { Unit } from '../models/unit.js';
+import { organisationIdsByCode } from '../queries/ids-by-code.js';
+import { unitIdsByCompact } from '../queries/unit-ids-by-compact.js';
+import { bumpConfigVersion } from './bump-config-version.js';
+import { readRegisterItems, type RegisterItem } from './read-register-items.js';
+import { replaceTags } from './replace-tags.js';
+
+/** Compact identities in the order of the batch, and the ids of the units they now name. */
+export interface Registered {
+  compacts: string[];
+  unitIds: number[];
+}
+
+/**
+ * Puts units on the register, by identity, all or none, in a fixed number of statements. One
+ * that only reads have named so far becomes registered. What is left out stays as it is; tags
+ * that are given are all it has from now on.
+ */
+export async function upsertRegister(
+  db: Database,
+  batch: Batch<RegisterInput>,
+): Promise<Registered> {
+  const faults = new Faults();
+  const items = readRegisterItems(batch, faults);
+  const parsed = { ...batch, items };
+  faultRepeats(parsed, faults, 'unit', ({ identity }) => identity.compact);
+  return inTransaction(db.sequelize, async (transaction) => {
+    await bumpConfigVersion(transaction);
+    const owners = await readOwners(db, batch, faults, transaction);
+    faults.refuse();
+    const compacts = items.map(({ identity }) => identity.compact);
+    const known = await unitIdsByCompact(db, compacts, transaction);
+    await upsertUnits(db, items, known, owners, transaction);
+    await addIdentities(db, items, transaction);
+    const unitIds = await unitIdsByCompact(db, compacts, transaction);
+    await replaceTags(db, parsed, unitIds, transaction);
+    return { compacts, unitIds: compacts.flatMap((compact) => unitIds.get(compact) ?? []) };
+  });
+}
+
+async function readOwners(
+  db: Database,
+  batch: Batch<RegisterInput>,
+  faults: Faults,
+  transaction: Transaction,
+): Promise<Map<string, number>> {
+  const codes = batch.items.flatMap(({ owner }) => owner ?? []);
+  const owners = await organisationIdsByCode(db, codes, transaction);
+  batch.items.forEach(({ owner }, index) => {
+    if (!owner || owners.has(owner)) return;
+    faults.add(batchPointer(batch, index, 'owner'), `${owner} is not known`);
+  });
+  return owners;
+}
+
+async function upsertUnits(
+  db: Database,
+  items: RegisterItem[],
+  known: Map<string, number>,
+  owners: Map<string, number>,
+  transaction: Transaction,
+): Promise<void> {
+  const { Unit } = modelsOf(db.sequelize);
+  const present = await Unit.findAll({ where: { id: [...known.values()] }, transaction });
+  const byId = new Map<number | undefined, Unit>(present.map((unit) => [unit.id, unit]));
+  const rows = items.map((item) => {
+    const unit = byId.get(known.get(item.identity.compact));
+    return rowOf(item, unit, owners);
+  });
+  await Unit.bulkCreate(rows, {
+    updateOnDuplicate: [
+      'kind',
+      'groupCode',
+      'carType',
+      'registered',
+      'ownerId',
+      'lengthDm',
+      'axles',
+    ],
+    transaction,
+  });
+}
+
+function rowOf(item: RegisterItem, unit: Unit | undefined, owners: Map<string, number>) {
+  const { input, identity } = item;
+  const kept = <Value>(value: Value | undefined, present: Value | undefined) =>
+    value === undefined ? (present ?? null) : value;
+  const ownerId = input.owner && owners.get(input.owner);
+  return {
+    unitKey: unit?.unitKey ?? identity.compact,
+    kind: input.kind,
+    groupCode: item.groupCode ?? unit?.groupCode ?? null,
+    carType: kept(input.carType, unit?.carType),
+    registered: true,
+    ownerId: kept(input.owner === null ? null : ownerId || undefined, unit?.ownerId),
+    lengthDm: kept(input.lengthDm, unit?.lengthDm),
+    axles: kept(input.axles, unit?.axles),
+  };
+}
+
+/** Only now, after the units stand: a projector that made one meanwhile has named it too. */
+async function addIdentities(
+  db: Database,
+  items: RegisterItem[],
+  transaction: Transaction,
+): Promise<void> {
+  const { Identity, Unit } = modelsOf(db.sequelize);
+  const compacts = items.map(({ identity }) => identity.compact);
+  const named = await unitIdsByCompact(db, compacts, transaction);
+  const missing = items.filter(({ identity }) => !named.has(identity.compact));
+  if (missing.length === 0) return;
+  const units = await Unit.findAll({
+    attributes: ['id', 'unitKey'],
+    where: { unitKey: missing.map(({ identity }) => identity.compact) },
+    transaction,
+  });
+  const idByKey = new Map(units.map((unit) => [unit.unitKey, unit.id]));
+  const rows = missing.map(({ identity }) => ({
+    ...identity,
+    unitId: idByKey.get(identity.compact) ?? 0,
+    validFrom: null,
+    validTo: null,
+  }));
+  await Identity.bulkCreate(rows, { transaction });
+}
