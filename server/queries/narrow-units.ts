@@ -47,3 +47,13 @@ export function unitIdsWithin(sources: readonly UnitSource[], further: Sql = sql
     ? sql`SELECT 0 AS unit_id FROM DUAL WHERE FALSE`
     : joinSql(selects, 'UNION');
 }
+
+/** True where a count of zero at this site means none, not that the person may not know. */
+export function seesSite(sources: readonly UnitSource[], siteId: number): boolean {
+  return sources.some(
+    (source) =>
+      source.table === 'visible_units' ||
+      source.siteIds === null ||
+      source.siteIds.includes(siteId),
+  );
+}

@@ -26,6 +26,13 @@ export function identityCondition(text: string, mode: SearchMode): Sql | null {
   return either(beginnings.map((start) => sql`i.compact LIKE ${`${start}%`}`));
 }
 
+/** The condition on `identities i` for a whole number or mark and number; null for a part of one. */
+export function exactCondition(text: string): Sql | null {
+  const parsed = parseUnit(text);
+  if (parsed.kind === 'unit') return sql`i.compact = ${parsed.identity.compact}`;
+  return parsed.kind === 'number' ? sql`i.number IN (${parsed.numbers})` : null;
+}
+
 /** True when a text in which nothing begins may be looked for inside numbers. */
 export function canContain(text: string): boolean {
   const joined = text.replace(/[^0-9A-Za-z]/g, '');

@@ -1,0 +1,61 @@
+import type { Database } from '../lib/database.js';
+import type { Actor } from '../policies/actor.js';
+import { findOpenableUnits } from './find-openable-units.js';
+import { listUnitIds } from './list-unit-ids.js';
+import { loadEquipment, type Equipment } from './load-equipment.js';
+import { seesSite, unitSourcesOf } from './narrow-units.js';
+import { exactCondition, findCandidates } from './search-units.js';
+import { ask, likeText, sql } from './sql.js';
+
+const MOST_UNITS = 10;
+const MOST_SITES = 5;
+
+export interface FoundSite {
+  code: string;
+  name: string;
+  kind: string;
+}
+
+/**
+ * Equipment that the text names: by a whole number all that the person may open, then, of their
+ * lists, what it only begins (or, when it begins nothing, is part of).
+ */
+export async function lookUpUnits(
+  db: Database,
+  actor: Actor,
+  text: string,
+  now: Date,
+): Promise<Equipment[]> {
+  const whole = await lookUpWhole(db, actor, text);
+  const { unitIds: parts } = await listUnitIds(db, {
+    sources: unitSourcesOf(actor),
+    filters: {},
+    search: text,
+    sort: 'unit',
+    limit: MOST_UNITS,
+    now,
+  });
+  const unitIds = [...new Set([...whole, ...parts])].slice(0, MOST_UNITS);
+  return loadEquipment(db, unitIds, now);
+}
+
+async function lookUpWhole(db: Database, actor: Actor, text: string): Promise<number[]> {
+  const condition = exactCondition(text);
+  const candidates = condition && (await findCandidates(db, condition));
+  if (!candidates) return [];
+  const openable = await findOpenableUnits(db, actor, candidates);
+  return candidates.filter((unitId) => openable.has(unitId));
+}
+
+/** Sites by the beginning of their code or a part of their name, of those the person has a view of. */
+export async function lookUpSites(db: Database, actor: Actor, text: string): Promise<FoundSite[]> {
+  const sources = unitSourcesOf(actor);
+  const pattern = likeText(text.trim());
+  const rows = await ask<FoundSite & { id: number }>(
+    db,
+    sql`SELECT id, code, name, kind FROM sites
+      WHERE code LIKE ${`${pattern.toUpperCase()}%`} OR name LIKE ${`%${pattern}%`}
+      ORDER BY code = ${text.trim().toUpperCase()} DESC, name LIKE ${`${pattern}%`} DESC, name`,
+  );
+  return rows.filter((site) => seesSite(sources, site.id)).slice(0, MOST_SITES);
+}
