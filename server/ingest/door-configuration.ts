@@ -5,10 +5,14 @@ export interface DoorConfiguration {
   version: number;
   /** Antenna numbers by site id. */
   antennas: Map<number, Set<number>>;
-  /** Validity of each registered EPC that was asked for so far, in milliseconds; none: []. */
-  epcs: Map<string, Validity[]>;
+  /** Those that were asked for so far. */
+  epcs: EpcValidities;
 }
 
+/** Spans in which each EPC was registered; none: []. */
+export type EpcValidities = Map<string, Validity[]>;
+
+/** Milliseconds; `to` is the first instant that is out. */
 interface Validity {
   from: number;
   to: number;
@@ -47,25 +51,37 @@ async function loadAntennas(connection: PoolConnection): Promise<Map<number, Set
   return antennas;
 }
 
-/** Makes `door.epcs` know each of these EPCs, with one query for those it does not know yet. */
-export async function learnEpcs(
+const MOST_EPCS = 50_000;
+
+/** When each of these EPCs was registered, with one query for those not asked for before. */
+export async function validitiesOf(
   door: DoorConfiguration,
   connection: PoolConnection,
   values: string[],
-): Promise<void> {
-  const unknown = [...new Set(values)].filter((value) => !door.epcs.has(value));
-  if (unknown.length === 0) return;
+): Promise<EpcValidities> {
+  const wanted = new Map(values.map((value) => [value, door.epcs.get(value)]));
+  const unknown = [...wanted].filter(([, known]) => !known).map(([value]) => value);
+  const loaded = await loadEpcs(connection, unknown);
+  // Made-up EPCs must not fill the memory.
+  if (door.epcs.size + loaded.size > MOST_EPCS) door.epcs.clear();
+  for (const [value, validities] of loaded) door.epcs.set(value, validities);
+  return new Map([...wanted].map(([value, known]) => [value, known ?? loaded.get(value) ?? []]));
+}
+
+async function loadEpcs(connection: PoolConnection, values: string[]): Promise<EpcValidities> {
+  const validities: EpcValidities = new Map(values.map((value) => [value, []]));
+  if (values.length === 0) return validities;
   const rows = await connection.query<
     { value: Buffer; valid_from: Date | null; valid_to: Date | null }[]
   >(
-    `SELECT value, valid_from, valid_to FROM tags WHERE value IN (${unknown.map(() => '?').join()})`,
-    unknown,
+    `SELECT value, valid_from, valid_to FROM tags WHERE value IN (${values.map(() => '?').join()})`,
+    values,
   );
-  for (const value of unknown) door.epcs.set(value, []);
   for (const row of rows) {
-    door.epcs.get(row.value.toString())?.push({
+    validities.get(row.value.toString())?.push({
       from: row.valid_from?.getTime() ?? -Infinity,
       to: row.valid_to?.getTime() ?? Infinity,
     });
   }
+  return validities;
 }

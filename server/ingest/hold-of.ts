@@ -1,5 +1,5 @@
 import type { HoldCode } from '../contract/ingest.js';
-import type { DoorConfiguration } from './door-configuration.js';
+import type { EpcValidities } from './door-configuration.js';
 import type { SoundRead } from './judge-read.js';
 
 const AHEAD_MS = 5 * 60_000;
@@ -18,22 +18,25 @@ export function doorClock(receivedAt: Date, retainMonths: number): DoorClock {
   };
 }
 
+/** What the door sees of the configuration when it judges the reads of one request. */
+export interface DoorSight {
+  /** Numbers of the antennas of the site. */
+  antennas: Set<number>;
+  epcs: EpcValidities;
+  clock: DoorClock;
+}
+
 /**
  * Why a read is set aside, or null. What the door alone can judge comes first: those verdicts are
  * facts of the ledger, all others follow from the configuration and may change with it.
  */
-export function holdOf(
-  read: SoundRead,
-  siteId: number,
-  door: DoorConfiguration,
-  clock: DoorClock,
-): HoldCode | null {
+export function holdOf(read: SoundRead, { antennas, epcs, clock }: DoorSight): HoldCode | null {
   if (read.readAtMs > clock.latestMs) return 'clock-ahead';
   if (read.readAtMs < clock.earliestMs) return 'too-old';
-  if (!door.antennas.get(siteId)?.has(read.antenna)) return 'unknown-antenna';
+  if (!antennas.has(read.antenna)) return 'unknown-antenna';
   if (read.tag.kind === 'hold') return read.tag.hold;
   if (read.tag.kind !== 'epc') return null;
-  const validities = door.epcs.get(read.tag.value) ?? [];
+  const validities = epcs.get(read.tag.value) ?? [];
   const isMapped = validities.some(({ from, to }) => from <= read.readAtMs && read.readAtMs < to);
   return isMapped ? null : 'unmapped-epc';
 }

@@ -3,7 +3,7 @@ import type { HoldCode, IngestAnswer } from '../contract/ingest.js';
 import { withTransaction, type Database } from '../lib/database.js';
 import { appendReads, type DoorRead } from './append-reads.js';
 import { asUnavailable } from './as-unavailable.js';
-import { doorConfiguration, learnEpcs } from './door-configuration.js';
+import { doorConfiguration, validitiesOf } from './door-configuration.js';
 import { doorClock, holdDetails, holdOf } from './hold-of.js';
 import { judgeRead, type RejectedRead, type SoundRead } from './judge-read.js';
 
@@ -40,13 +40,16 @@ async function append(
 ): Promise<DoorRead[]> {
   const door = await doorConfiguration(db.pool, connection);
   const epcs = sound.filter((read) => read.tag.kind === 'epc').map((read) => read.tag.value);
-  await learnEpcs(door, connection, epcs);
-  const clock = doorClock(receivedAt, retainMonths);
+  const sight = {
+    antennas: door.antennas.get(site.id) ?? new Set<number>(),
+    epcs: await validitiesOf(door, connection, epcs),
+    clock: doorClock(receivedAt, retainMonths),
+  };
   return appendReads(connection, {
     siteId: site.id,
     receivedAt,
     configVersion: door.version,
-    reads: sound.map((read) => ({ ...read, hold: holdOf(read, site.id, door, clock) })),
+    reads: sound.map((read) => ({ ...read, hold: holdOf(read, sight) })),
   });
 }
 

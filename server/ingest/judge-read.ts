@@ -53,7 +53,7 @@ export function judgeRead(raw: unknown, index: number): SoundRead | RejectedRead
   };
 }
 
-const MOST_RESOLVED = 50_000;
+const MOST_RESOLVED = 20_000;
 const resolved = new Map<string, ResolvedTag>();
 
 /** Each tag is read several times by several antennas: what it says is worked out once. */

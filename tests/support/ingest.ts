@@ -1,26 +1,19 @@
 import { createHash, randomBytes } from 'node:crypto';
-import express, { type Express } from 'express';
+import type { Express } from 'express';
 import request from 'supertest';
+import { createApp } from '../../server/app.js';
+import { encodeAei } from '../../server/domain/identifiers/aei.js';
 import type { IngestLimits } from '../../server/ingest/limits.js';
 import type { Context } from '../../server/lib/context.js';
 import type { Database } from '../../server/lib/database.js';
-import { problemHandler } from '../../server/middleware/problem.js';
-import { requestLog } from '../../server/middleware/request-log.js';
 import { modelsOf } from '../../server/models/index.js';
 import type { ReadPoint } from '../../server/models/read-point.js';
 import type { Site } from '../../server/models/site.js';
-import { ingestRoutes } from '../../server/routes/ingest.js';
-import { encodeAei } from '../../server/domain/identifiers/aei.js';
 import { buildAntenna, buildReadPoint, buildSite } from './factories.js';
 
-/** The ingest door alone, with limits of its own. */
-export function buildIngestApp(context: Context, limits: Partial<IngestLimits> = {}): Express {
-  const app = express();
-  app.use(requestLog(context.logger));
-  app.use('/api', ingestRoutes(context, limits));
-  app.use(problemHandler(context.logger));
-  return app;
-}
+/** The whole web server, with limits of its own at the ingest door. */
+export const buildIngestApp = (context: Context, ingest: Partial<IngestLimits> = {}): Express =>
+  createApp(context, { limits: { ingest }, clientDirectory: null });
 
 /** A reader that may send: a site with one read point, one antenna (number 1) and a token. */
 export async function buildReader(

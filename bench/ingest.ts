@@ -1,0 +1,196 @@
+import { fork, type ChildProcess } from 'node:child_process';
+import { createHash, randomBytes } from 'node:crypto';
+import { once } from 'node:events';
+import { mkdtempSync } from 'node:fs';
+import http from 'node:http';
+import os from 'node:os';
+import path from 'node:path';
+import { pathToFileURL } from 'node:url';
+import { startMariadb } from '../scripts/lib/mariadb.mjs';
+import { openDatabase, type Database } from '../server/lib/database.js';
+import { modelsOf } from '../server/models/index.js';
+import { buildAntenna, buildReadPoint, buildSite } from '../tests/support/factories.js';
+import { migrate } from '../tests/support/migrations.js';
+import { trainRequests, type BenchRead } from './lib/ingest-traffic.js';
+
+const WRITERS = 4;
+const READS_PER_REQUEST = 500;
+const REQUESTS_PER_WRITER = 60;
+const RUNS = 3;
+const READS = WRITERS * REQUESTS_PER_WRITER * READS_PER_REQUEST;
+
+interface Sender {
+  siteId: number;
+  token: string;
+}
+
+/**
+ * Acknowledged reads a second over HTTP against bare multi-row inserts into the same table, on
+ * the same durable database, in turns; prints the best and the spread of both, and their ratio.
+ */
+export default async function bench(): Promise<void> {
+  const mariadb = await startMariadb({
+    dir: mkdtempSync(path.join(os.tmpdir(), 'fishplate-bench-')),
+    throwAway: true,
+    durable: true,
+    database: 'bench',
+  });
+  const db = openDatabase(mariadb.url());
+  let server: ChildProcess | undefined;
+  try {
+    await migrate(db.sequelize);
+    const senders = await buildSenders(db);
+    const started = await startServer(mariadb.url());
+    server = started.server;
+    await measure(db, senders, started.port);
+  } finally {
+    server?.disconnect();
+    await db.close();
+    await mariadb.stop();
+  }
+}
+
+async function measure(db: Database, senders: Sender[], port: number): Promise<void> {
+  const floor: number[] = [];
+  const door: number[] = [];
+  for (let run = 0; run < RUNS; run += 1) {
+    await empty(db);
+    floor.push(await insertBare(db, senders));
+    await requireStored(db);
+    await empty(db);
+    door.push(await sendAll(senders, port));
+    await requireStored(db);
+  }
+  const spread = (rates: number[]) => rates.map((rate) => Math.round(rate)).join(', ');
+  console.log(
+    `ingest, ${WRITERS} writers, ${READS_PER_REQUEST} reads a request, ${READS} reads a run`,
+  );
+  console.log(
+    `  bare multi-row insert  ${Math.round(Math.max(...floor))} reads/s  (${spread(floor)})`,
+  );
+  console.log(
+    `  acknowledged over HTTP ${Math.round(Math.max(...door))} reads/s  (${spread(door)})`,
+  );
+  console.log(`  ratio ${(Math.max(...door) / Math.max(...floor)).toFixed(2)} (aim 0.7)`);
+}
+
+async function buildSenders(db: Database): Promise<Sender[]> {
+  const senders: Sender[] = [];
+  for (let writer = 0; writer < WRITERS; writer += 1) {
+    const site = await buildSite(db);
+    const readPoint = await buildReadPoint(db, { site });
+    for (const number of [1, 2, 3, 4]) await buildAntenna(db, { readPoint, number });
+    const token = randomBytes(32).toString('base64url');
+    const tokenHash = createHash('sha256').update(token).digest();
+    const createdAt = new Date();
+    await modelsOf(db.sequelize).ReaderToken.create({
+      siteId: site.id,
+      tokenHash,
+      createdAt,
+      revokedAt: null,
+    });
+    senders.push({ siteId: site.id, token });
+  }
+  return senders;
+}
+
+async function startServer(databaseUrl: string): Promise<{ server: ChildProcess; port: number }> {
+  const server = fork(path.join(import.meta.dirname, 'lib/ingest-server.ts'), {
+    execArgv: ['--import', 'tsx'],
+    env: { PATH: '', DATABASE_URL: databaseUrl, SESSION_SECRET: randomBytes(32).toString('hex') },
+  });
+  const [{ port }] = (await once(server, 'message')) as [{ port: number }];
+  return { server, port };
+}
+
+const empty = (db: Database) =>
+  Promise.all(['`reads`', 'work', 'held'].map((table) => db.pool.query(`TRUNCATE ${table}`)));
+
+async function requireStored(db: Database): Promise<void> {
+  const [row] = await db.pool.query<{ n: number }[]>('SELECT COUNT(*) AS n FROM `reads`');
+  if (row?.n !== READS) throw new Error(`${row?.n} reads are stored, not ${READS}.`);
+}
+
+const requestsOf = (site: number): BenchRead[][] =>
+  trainRequests({
+    requests: REQUESTS_PER_WRITER,
+    readsPerRequest: READS_PER_REQUEST,
+    start: new Date(Date.now() - 3_600_000),
+    site,
+  });
+
+/** One statement and commit for each request; everything but the sending is done before. */
+async function insertBare(db: Database, senders: Sender[]): Promise<number> {
+  const receivedAt = new Date();
+  const batches = senders.map(({ siteId }, writer) =>
+    requestsOf(writer).map((reads, request) =>
+      reads
+        .map((read, seq) => ({ ...read, seq }))
+        .sort((a, b) => a.antenna - b.antenna || a.readAt.getTime() - b.readAt.getTime())
+        .flatMap(({ antenna, tag, readAt, rssi, count, seq }) => {
+          const batchId = writer * REQUESTS_PER_WRITER + request + 1;
+          return [batchId, seq, siteId, antenna, tag, readAt, rssi, count, null, 1, receivedAt];
+        }),
+    ),
+  );
+  const row = `(${Array<string>(11).fill('?').join()})`;
+  const sql = `INSERT INTO \`reads\` (batch_id, seq, site_id, antenna_no, tag, read_at, rssi,
+    read_count, hold_code, config_version, received_at)
+    VALUES ${Array<string>(READS_PER_REQUEST).fill(row).join()}`;
+  return rateOf(
+    batches.map((statements) => async () => {
+      const connection = await db.pool.getConnection();
+      for (const values of statements) await connection.query(sql, values);
+      await connection.release();
+    }),
+  );
+}
+
+async function sendAll(senders: Sender[], port: number): Promise<number> {
+  const agent = new http.Agent({ keepAlive: true, maxSockets: WRITERS });
+  const bodies = senders.map((_sender, writer) =>
+    requestsOf(writer).map((reads) => JSON.stringify({ reads })),
+  );
+  const rate = await rateOf(
+    senders.map(({ token }, writer) => async () => {
+      for (const body of bodies[writer] ?? []) {
+        const answer = await post({ agent, port, token, body });
+        if (
+          answer !==
+          `{"accepted":${READS_PER_REQUEST},"duplicates":0,"held":0,"rejected":0,"problems":[]}`
+        )
+          throw new Error(`Not all were accepted: ${answer.slice(0, 300)}`);
+      }
+    }),
+  );
+  agent.destroy();
+  return rate;
+}
+
+function post(options: { agent: http.Agent; port: number; token: string; body: string }) {
+  const { agent, port, token, body } = options;
+  return new Promise<string>((resolve, reject) => {
+    const headers = {
+      Authorization: `Bearer ${token}`,
+      'Content-Type': 'application/json',
+      'Content-Length': Buffer.byteLength(body),
+    };
+    const address = { agent, port, host: '127.0.0.1', path: '/api/ingest/reads', headers };
+    const request = http.request({ ...address, method: 'POST' }, (response) => {
+      let text = '';
+      response.on('data', (chunk: Buffer) => (text += chunk.toString()));
+      response.on('end', () => resolve(text));
+    });
+    request.on('error', reject);
+    request.end(body);
+  });
+}
+
+/** Reads a second while all writers go at once. */
+async function rateOf(writers: (() => Promise<void>)[]): Promise<number> {
+  const begin = performance.now();
+  await Promise.all(writers.map((write) => write()));
+  return (READS * 1_000) / (performance.now() - begin);
+}
+
+if (import.meta.url === pathToFileURL(process.argv[1] ?? '').href) await bench();
