@@ -13,6 +13,7 @@ module.exports = {
         speed_kmh DECIMAL(6,2) NULL,
         received_at DATETIME(3) NOT NULL,
         UNIQUE KEY wheel_records_natural (read_point_id, started_at),
+        KEY wheel_records_ended (read_point_id, ended_at),
         CONSTRAINT wheel_records_read_point_fk FOREIGN KEY (read_point_id) REFERENCES read_points (id)
       ) ENGINE=InnoDB DEFAULT CHARSET=utf8mb4
     `);

@@ -13,7 +13,9 @@ module.exports = {
         speed_kmh DECIMAL(6,2) NULL,
         unit_count SMALLINT UNSIGNED NOT NULL,
         reversal BOOLEAN NOT NULL,
+        clean_start BOOLEAN NOT NULL,
         PRIMARY KEY (read_point_id, started_at, ordinal),
+        KEY passes_clean (read_point_id, clean_start, started_at),
         KEY passes_started (started_at, read_point_id)
       ) ENGINE=InnoDB DEFAULT CHARSET=utf8mb4
     `);

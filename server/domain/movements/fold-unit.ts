@@ -35,7 +35,7 @@ export function foldSighting(
   const drill = struckDrill(network, before, sighting);
   if (drill) {
     const step = startStep(network, drill.before, sighting, drill.at, countsMiles);
-    bePresent(step, move.to as NonNullable<Place>, { lingering: false, spot: false });
+    bePresent(step, move.to, { lingering: false, spot: false });
     return { state: step.state, done: step.done };
   }
   const step = startStep(network, before, sighting, instantOf(sighting, move), countsMiles);

@@ -28,6 +28,7 @@ export type AntennaOf = (number: number) => AntennaConfiguration | undefined;
 
 export const WHEEL_REACH_MS = 10_000;
 const AWAY_MS = 10_000;
+const FASTEST_KMH = 300;
 
 /** Own direction, return and speed of a passage (its visits in order). */
 export function ownMovement(
@@ -42,7 +43,7 @@ export function ownMovement(
   const sensed = Boolean(first ?? last);
   const slope = slowness(visits, antennaOf);
   const measured = first?.speedKmh ?? last?.speedKmh ?? null;
-  const speedKmh = measured ?? (slope ? 3600 / Math.abs(slope) : null);
+  const speedKmh = rounded(measured ?? (slope ? 3600 / Math.abs(slope) : null));
   const bySensors = first?.direction ?? last?.direction ?? null;
   if (bySensors) {
     const returned = Boolean(last?.direction) && last?.direction !== first?.direction;
@@ -56,6 +57,11 @@ export function ownMovement(
   if (!slope) return { direction: null, basis: null, returned: false, sensed, speedKmh };
   const direction = slope > 0 ? 'increasing' : 'decreasing';
   return { direction, basis: 'antennas', returned: false, sensed, speedKmh };
+}
+
+/** Two places; jitter over a short distance must not make a train faster than any is. */
+function rounded(speedKmh: number | null): number | null {
+  return speedKmh === null ? null : Math.min(Math.round(speedKmh * 100) / 100, FASTEST_KMH);
 }
 
 /** The record that covers `at` within ten seconds; the nearest, of those the earliest. */
