@@ -1,17 +1,33 @@
 import { z } from 'zod';
 
-/** Reads of one tag at one antenna within a passage, as `passages.evidence` keeps them. */
+/** Reads of one tag at one antenna within a passage. */
 export interface EvidenceRun {
   antenna: number;
   tag: string;
   reads: number;
 }
 
-const runSchema = z.object({ a: z.number(), t: z.string(), n: z.number() });
-const evidenceSchema = z.array(z.array(runSchema));
+/** What the projector keeps of a visit: reads `[ms, antenna, tag]` or, of many, their groups. */
+const visitSchema = z.union([
+  z.object({ r: z.array(z.tuple([z.number(), z.number(), z.string()])) }),
+  z.object({
+    g: z.array(z.tuple([z.number(), z.string(), z.number(), z.number(), z.number()])),
+  }),
+]);
+const evidenceSchema = z.array(visitSchema);
 
-/** The runs of all visits of a passage, in the order they were kept. */
+/** The reads of a passage, out of its `evidence` column, counted by antenna and tag. */
 export function evidenceRuns(evidence: string): EvidenceRun[] {
-  const visits = evidenceSchema.parse(JSON.parse(evidence));
-  return visits.flat().map(({ a, t, n }) => ({ antenna: a, tag: t, reads: n }));
+  const runs = new Map<string, EvidenceRun>();
+  const add = (antenna: number, tag: string, reads: number) => {
+    const key = `${antenna} ${tag}`;
+    const known = runs.get(key);
+    if (known) known.reads += reads;
+    else runs.set(key, { antenna, tag, reads });
+  };
+  for (const visit of evidenceSchema.parse(JSON.parse(evidence))) {
+    if ('r' in visit) visit.r.forEach(([, antenna, tag]) => add(antenna, tag, 1));
+    else visit.g.forEach(([antenna, tag, , , count]) => add(antenna, tag, count));
+  }
+  return [...runs.values()];
 }
