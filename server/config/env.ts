@@ -1,3 +1,4 @@
+import path from 'node:path';
 import { z } from 'zod';
 
 /** An empty variable counts as an absent one, as `.env` files leave them. */
@@ -68,4 +69,9 @@ export function readEnv(source: NodeJS.ProcessEnv = process.env): Env {
     metricsToken: values.METRICS_TOKEN ?? null,
     retainMonths: values.FISHPLATE_RETAIN_MONTHS,
   };
+}
+
+/** Where the demo keeps the mail it sent, as `.eml` files. */
+export function mailboxDirectory(env: Pick<Env, 'dataDir'>): string {
+  return path.join(env.dataDir, 'mailbox');
 }
