@@ -11,6 +11,7 @@ import { requestLog } from './middleware/request-log.js';
 import { sameOrigin } from './middleware/same-origin.js';
 import { securityHeaders } from './middleware/security-headers.js';
 import { administrationRouters, allOperations, portalRouters } from './routes/all-routes.js';
+import { demoMailboxPages } from './routes/demo-mailbox.js';
 import { healthRoutes } from './routes/health.js';
 import { ingestRoutes } from './routes/ingest.js';
 import { metricsRoutes } from './routes/metrics.js';
@@ -53,6 +54,7 @@ export function createApp(context: Context, parts: AppParts = {}): Express {
   app.use('/api', openapiRoutes(context, allOperations));
   app.use('/api', unknownPath);
 
+  app.use(demoMailboxPages(context));
   if (client) app.use(clientFiles(client));
   app.use(unknownPath);
   app.use(problemHandler(logger));

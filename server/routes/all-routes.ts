@@ -3,10 +3,13 @@ import type { Context } from '../lib/context.js';
 import type { Operation } from '../lib/openapi/operation.js';
 import { alertsOperations, alertsRoutes } from './alerts.js';
 import { antennasOperations, antennasRoutes } from './antennas.js';
+import { demoMailboxOperations, demoMailboxRoutes } from './demo-mailbox.js';
 import { equipmentOperations, equipmentRoutes } from './equipment.js';
+import { eventsOperations, eventsRoutes } from './events.js';
 import { fleetOperations, fleetRoutes } from './fleet.js';
 import { healthOperations } from './health.js';
 import { ingestOperations } from './ingest.js';
+import { lookUpOperations, lookUpRoutes } from './look-up.js';
 import { mailOperations, mailRoutes } from './mail.js';
 import { mapOperations, mapRoutes } from './map.js';
 import { metricsOperations } from './metrics.js';
@@ -39,9 +42,12 @@ export function portalRouters(context: Context, projectorLagMs: () => Promise<nu
     equipmentRoutes(context),
     fleetRoutes(context, projectorLagMs),
     mapRoutes(context),
+    lookUpRoutes(context),
+    eventsRoutes(context),
     watchesRoutes(context),
     alertsRoutes(context),
     mailRoutes(context),
+    demoMailboxRoutes(context),
   ];
 }
 
@@ -55,9 +61,12 @@ export const allOperations: Operation[] = [
   ...equipmentOperations,
   ...fleetOperations,
   ...mapOperations,
+  ...lookUpOperations,
+  ...eventsOperations,
   ...watchesOperations,
   ...alertsOperations,
   ...mailOperations,
+  ...demoMailboxOperations,
   ...organisationsOperations,
   ...peopleOperations,
   ...sitesOperations,

@@ -1,4 +1,4 @@
-import type { z } from 'zod';
+import { z } from 'zod';
 import {
   createDocument,
   type ZodOpenApiOperationObject,
@@ -72,7 +72,8 @@ function describe(operation: Operation, problem: z.ZodType): ZodOpenApiOperation
 }
 
 function responsesOf(operation: Operation, problem: z.ZodType): ZodOpenApiResponsesObject {
-  const { response, responseType = 'application/json' } = operation;
+  const { responseType = 'application/json' } = operation;
+  const response = operation.response ?? (operation.responseType ? z.string() : undefined);
   const status = operation.status ?? (response ? 200 : 204);
   const good = response
     ? { description: 'Done.', content: { [responseType]: { schema: response } } }
