@@ -66,9 +66,12 @@ describe('the time of a read', () => {
 describe('what goes into a statement as it stands', () => {
   test('holds no quote but its own, whatever text it is made from', () => {
     fc.assert(
-      fc.property(fc.string({ unit: 'binary' }), (text) => {
-        expect(sqlBytes(text)).toMatch(/^X'[0-9a-f]*'$/);
-        expect(Buffer.from(sqlBytes(text).slice(2, -1), 'hex')).toEqual(Buffer.from(text));
+      fc.property(fc.oneof(fc.string(), fc.string({ unit: 'binary' })), (text) => {
+        const literal = sqlBytes(text);
+        expect(literal).toMatch(/^(X'[0-9a-f]*'|'[0-9A-Za-z ]*')$/);
+        const bytes = Buffer.from(literal.replace('X', '').slice(1, -1), 'hex');
+        if (literal.startsWith('X')) expect(bytes).toEqual(Buffer.from(text));
+        else expect(literal).toBe(`'${text}'`);
       }),
     );
     expect(sqlInstant(Date.UTC(2026, 2, 4, 5, 6, 7, 89))).toBe("'2026-03-04T05:06:07.089'");
