@@ -1,5 +1,6 @@
 import { Router, type RequestHandler } from 'express';
 import { demoMailListAnswer } from '../contract/alerts.js';
+import { mailboxDirectory } from '../config/env.js';
 import { notFound } from '../errors.js';
 import type { Context } from '../lib/context.js';
 import type { Operation } from '../lib/openapi/operation.js';
@@ -7,7 +8,7 @@ import { requireUser } from '../middleware/require-user.js';
 import { validate } from '../middleware/validate.js';
 import { presentDemoMail } from '../presenters/demo-mail.js';
 import { mailboxPage, mailboxStyle, mailPage } from '../presenters/mailbox-page.js';
-import { mailboxDirectory } from '../smtp-fake/mailbox-directory.js';
+
 import { readKeptMail, readMailbox } from '../smtp-fake/read-mailbox.js';
 
 /** The demo's mailbox as JSON, below /api; outside the demo it does not exist. */
