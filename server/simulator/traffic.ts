@@ -38,6 +38,8 @@ export interface TrueCrossing {
   purpose: Purpose;
   /** When its middle went by. */
   at: number;
+  /** The site's reader reported nothing at all that day. */
+  isSilent: boolean;
 }
 
 /** Share of reads that a reader sends twice. */
@@ -107,19 +109,21 @@ export function truthBetween(from: number, to: number, seed = DEMO_SEED): TrueCr
   operations.skipTo(from - LONGEST_PASS_MS);
   return operations
     .advance(to)
-    .flatMap(crossingsOf)
+    .flatMap((pass) => crossingsOf(seed, pass))
     .filter(({ at }) => at >= from && at < to)
     .sort((a, b) => a.at - b.at);
 }
 
-function crossingsOf(pass: Pass): TrueCrossing[] {
+function crossingsOf(seed: string, pass: Pass): TrueCrossing[] {
   const { point, direction, purpose } = pass;
   const moments = momentsOf(pass);
+  const silent = isSilent(seed, point.site, pass.at);
   return pass.vehicles.flatMap(({ unit, loads }, index) => {
     const at = moments[index] ?? pass.at;
     return [unit, ...loads.map((load) => load.unit)].map(({ identity }) => {
       const { site, code: readPoint } = point;
-      return { unit: identity.compact, site, readPoint, direction, purpose, at };
+      const unit = identity.compact;
+      return { unit, site, readPoint, direction, purpose, at, isSilent: silent };
     });
   });
 }

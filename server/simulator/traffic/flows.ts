@@ -11,14 +11,14 @@ const lanes: Partial<Record<Flow, { loads: string[]; to: Record<string, number> 
     loads: ['BITTERN', 'FALLOW', 'CAIRN'],
     to: { GREBE: 25, STONECRP: 20, QUERN: 20, CAIRN: 15, ALDER: 20 },
   },
-  well: { loads: ['OSPREY'], to: { GREBE: 65, TEAL: 35 } },
-  box: { loads: ['OSPREY'], to: { GREBE: 65, TEAL: 35 } },
+  well: { loads: ['OSPREY'], to: { GREBE: 60, TEAL: 40 } },
+  box: { loads: ['OSPREY'], to: { GREBE: 68, TEAL: 32 } },
 };
 
 const SHOP = 'HOLLIN';
 const SHOPPED = 0.015;
 /** Share of stays that outlast the site's limit. */
-const OVERSTAYS = 0.013;
+const OVERSTAYS = 0.01;
 
 /** Hours that a car is busy where it was going: at least, at most. */
 const busyHours: Record<DemoSite['kind'], [number, number]> = {

@@ -1,0 +1,123 @@
+import { ingestReads } from '../ingest/ingest-reads.js';
+import { ingestWheels } from '../ingest/ingest-wheels.js';
+import type { Context } from '../lib/context.js';
+import type { Database } from '../lib/database.js';
+import { createProjector } from '../projections/projector.js';
+import { batchesOf, bySite, wheelRecord, wireRead, type Batch } from './batches.js';
+import { Traffic } from './traffic.js';
+import { world } from './world.js';
+
+const HOUR = 3_600_000;
+const DAY = 24 * HOUR;
+const SLICE_MS = 6 * HOUR;
+/** Sent again before the last stored read: what a site kept back when the process ended. */
+const OVERLAP_MS = 6 * HOUR;
+
+export interface SeedProgress {
+  done: number;
+  total: number;
+  unit: 'hours of traffic' | 'reads taken up';
+}
+
+export interface SeedOptions {
+  /** History reaches up to here. */
+  until: Date;
+  /** At most this many days back; 45 unless said otherwise. */
+  days?: number;
+  onProgress?: (progress: SeedProgress) => void;
+}
+
+type Sites = Map<string, { id: number; code: string }>;
+
+/**
+ * Gives the demo the traffic that it has not seen yet: from its last stored read (`days` back at
+ * most) to `until`, through the function behind the ingest route, and lets the projector take it
+ * all up. Run again it finds duplicates only. Returns how many reads were new.
+ */
+export async function seedTraffic(context: Context, options: SeedOptions): Promise<number> {
+  const { until, days = 45, onProgress = () => undefined } = options;
+  const sites = await demoSites(context.db);
+  const to = until.getTime();
+  const last = await lastReceived(context.db, sites);
+  const from = Math.max(to - days * DAY, last === null ? 0 : last - OVERLAP_MS);
+  const traffic = new Traffic();
+  const total = Math.ceil((to - from) / HOUR);
+  let stored = 0;
+  for (let at = from; at < to; at += SLICE_MS) {
+    const end = Math.min(at + SLICE_MS, to);
+    stored += await takeIn(context, sites, traffic.between(at, end));
+    onProgress({ done: Math.ceil((end - from) / HOUR), total, unit: 'hours of traffic' });
+  }
+  await takeUp(context, stored, onProgress);
+  return stored;
+}
+
+async function takeIn(context: Context, sites: Sites, sent: ReturnType<Traffic['between']>) {
+  const perSite = [...bySite(sent).values()].map(async (ofSite) => {
+    let stored = 0;
+    for (const batch of batchesOf(ofSite)) stored += await deliver(context, sites, batch);
+    return stored;
+  });
+  const counts = await Promise.all(perSite);
+  return counts.reduce((sum, count) => sum + count, 0);
+}
+
+async function deliver({ db, env }: Context, sites: Sites, batch: Batch): Promise<number> {
+  const site = sites.get(batch.site);
+  if (!site) return 0;
+  const receivedAt = new Date(batch.deliveredAt);
+  if (batch.kind === 'wheels') {
+    await ingestWheels(db, { site, record: wheelRecord(batch.record), receivedAt });
+    return 0;
+  }
+  const reads = batch.reads.map(wireRead);
+  const { retainMonths } = env;
+  const answer = await ingestReads(db, { site, reads, receivedAt, retainMonths });
+  return answer.accepted + answer.held;
+}
+
+async function takeUp(
+  context: Context,
+  total: number,
+  onProgress: (progress: SeedProgress) => void,
+): Promise<void> {
+  const look = setInterval(() => {
+    void waiting(context.db).then(
+      (left) => onProgress({ done: Math.max(0, total - left), total, unit: 'reads taken up' }),
+      () => undefined,
+    );
+  }, 500);
+  try {
+    await createProjector(context).drain();
+  } finally {
+    clearInterval(look);
+  }
+  onProgress({ done: total, total, unit: 'reads taken up' });
+}
+
+async function waiting({ pool }: Database): Promise<number> {
+  const [row] = await pool.query<{ waiting: number }[]>(
+    'SELECT COALESCE(SUM(read_count), 0) AS waiting FROM work',
+  );
+  return row?.waiting ?? 0;
+}
+
+async function demoSites({ pool }: Database): Promise<Sites> {
+  const codes = world.sites.map(({ code }) => code);
+  const rows = await pool.query<{ id: number; code: string }[]>(
+    'SELECT id, code FROM sites WHERE code IN (?)',
+    [codes],
+  );
+  return new Map(rows.map((row) => [row.code, row]));
+}
+
+/** When the last batch of the demo's readers came in, in milliseconds; null before the first. */
+async function lastReceived({ pool }: Database, sites: Sites): Promise<number | null> {
+  const ids = [...sites.values()].map(({ id }) => id);
+  if (ids.length === 0) return null;
+  const [row] = await pool.query<{ received_at: Date }[]>(
+    'SELECT received_at FROM `reads` WHERE site_id IN (?) ORDER BY batch_id DESC LIMIT 1',
+    [ids],
+  );
+  return row?.received_at.getTime() ?? null;
+}
