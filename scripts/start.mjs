@@ -63,7 +63,7 @@ async function runServer(settings, database) {
   );
   await step('Server', (bar) => {
     server.onMessage(({ progress, note }) => {
-      if (progress) bar(progress.done, progress.total, progress.unit);
+      if (progress) bar(progress);
       if (note) print(note);
     });
     return new Promise((resolve, reject) => {

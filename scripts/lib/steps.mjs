@@ -34,9 +34,11 @@ function progressBar(name) {
   let drawn = false;
   let tenth = 0;
   return {
-    show(done, total, unit = '') {
+    show({ done, total, unit }) {
       const share = total > 0 ? Math.min(1, done / total) : 1;
-      const text = `${bar(share)} ${String(Math.floor(share * 100)).padStart(3)} % ${unit}`;
+      const text = `${bar(share)} ${String(Math.floor(share * 100)).padStart(3)} % of ${total} ${unit}`;
+      // A step may count several things, one after the other.
+      if (share * 10 < tenth) tenth = 0;
       if (process.stdout.isTTY) {
         drawn = true;
         process.stdout.write(`\r\x1b[K${name.padEnd(columns)} ${text}`);
