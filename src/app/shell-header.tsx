@@ -15,9 +15,9 @@ interface Props {
 /** Wordmark, look-up, what wants an answer, and who is signed in. */
 export function ShellHeader({ session, onSignOut }: Props) {
   return (
-    <header className="on-dark inset flex min-h-48 flex-none items-center gap-x-16 bg-creosote text-on-creosote lg:gap-x-32 print:hidden">
+    <header className="on-dark inset sticky top-0 z-[1060] flex min-h-48 flex-none items-center gap-x-16 bg-creosote text-on-creosote lg:gap-x-32 print:hidden">
       <Link to={paths.home} className="bare" aria-label="Fishplate, first page">
-        <Wordmark />
+        <Wordmark isShort />
       </Link>
       <LookUpField />
       <div className="ml-auto flex items-center gap-x-20 text-table lg:gap-x-24">

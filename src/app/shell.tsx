@@ -32,7 +32,7 @@ export function Shell() {
   }
   if (!session.data) return <Navigate to={paths.signIn(pathname + search)} replace />;
   return (
-    <div className="flex min-h-full flex-col lg:h-full">
+    <div className="flex min-h-full flex-col">
       <a href="#page" className="absolute -top-52 left-16 z-[1200] bg-paper px-12 py-4 focus:top-8">
         Go to the page
       </a>
@@ -68,7 +68,6 @@ function PageFrame() {
       return;
     }
     window.scrollTo(0, 0);
-    main.current?.scrollTo(0, 0);
     main.current?.focus({ preventScroll: true });
   }, [pathname]);
   return (
@@ -77,7 +76,7 @@ function PageFrame() {
       ref={main}
       tabIndex={-1}
       aria-busy={state === 'loading'}
-      className="flex-1 outline-none lg:min-h-0 lg:overflow-auto"
+      className="flex-1 outline-none"
     >
       <Outlet />
     </main>

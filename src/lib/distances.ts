@@ -12,3 +12,7 @@ export function formatDistance(metres: number, unit: Preferences['distance']): s
 /** "Rail miles" or "Rail km", for headings. */
 export const distanceHeading = (unit: Preferences['distance']): string =>
   unit === 'miles' ? 'Rail miles' : 'Rail km';
+
+/** "19 mph" or "30 km/h". */
+export const formatSpeed = (kmh: number, unit: Preferences['distance']): string =>
+  unit === 'miles' ? `${Math.round((kmh * 1000) / metresAMile)} mph` : `${Math.round(kmh)} km/h`;

@@ -29,7 +29,7 @@ export function FleetPage() {
   const isBeside = useMedia('(min-width: 1024px)');
   const hasMap = (summary.data?.total ?? worthAMap) >= worthAMap;
   return (
-    <div className="flex flex-col lg:h-full">
+    <div className="flex flex-col lg:h-[calc(100dvh-92px)] lg:min-h-[560px] print:h-auto">
       <Opening />
       {summary.data?.total === 0 ? null : (
         <div className="inset flex min-h-0 flex-1 flex-col pb-24 pt-20 lg:flex-row">

@@ -82,7 +82,7 @@ function UnitDocument({ answer: { data: unit, can }, session }: DocumentProps) {
     <div className="inset grid gap-x-52 lg:grid-cols-[132px_minmax(0,980px)]">
       <nav
         aria-label="Contents of this page"
-        className="hidden pt-24 font-condensed text-table lg:sticky lg:top-0 lg:block lg:self-start"
+        className="hidden pt-24 font-condensed text-table lg:sticky lg:top-48 lg:block lg:self-start"
       >
         <ul className="flex flex-col gap-8">
           {chapters.map(({ id, word }) => (

@@ -1,12 +1,12 @@
 type Point = [x: number, y: number];
 
 const samples = 32;
-const flattest = 0.16;
+const deepest = 0.075;
 const metresADegree = 111_195;
 
 /**
- * A stretch that is known only by its ends, bowed until its length is the rail distance (within
- * reason), away from `middle`. Sagitta of a flat arc: length = chord (1 + 8/3 (s/c)^2).
+ * A stretch that is known only by its ends: the more the rail distance exceeds the straight one, the
+ * more it bows away from `middle`, up to a little. Sagitta of a flat arc: length = chord (1 + 8/3 (s/c)^2).
  */
 export function bowedLine(points: Point[], railMetres: number, middle: Point): Point[] {
   const [start, end] = points;
@@ -17,7 +17,7 @@ export function bowedLine(points: Point[], railMetres: number, middle: Point): P
   const chord = Math.hypot(dx, dy) * metresADegree;
   if (chord === 0) return points;
   const excess = Math.max(0, railMetres / chord - 1);
-  const bow = Math.min(flattest, Math.sqrt((excess * 3) / 8));
+  const bow = Math.min(deepest, Math.sqrt((excess * 3) / 8));
   const outward =
     dy * ((start[0] + end[0]) / 2 - middle[0]) * squeeze -
     dx * ((start[1] + end[1]) / 2 - middle[1]);

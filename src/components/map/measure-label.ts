@@ -1,7 +1,7 @@
 import type { MapSite } from './map-types';
 
 const lineHeight = 16;
-const countFits = 9;
+const countFits = 8;
 const font = '500 14px "IBM Plex Sans Condensed"';
 let pen: CanvasRenderingContext2D | null | undefined;
 

@@ -1,5 +1,5 @@
 import { useEffect, useState } from 'react';
-import { GeoJSON, Pane, Polyline } from 'react-leaflet';
+import { Pane, Polygon, Polyline } from 'react-leaflet';
 import type { LatLngTuple } from 'leaflet';
 import type { Position } from 'geojson';
 import { loadOutline } from './outline';
@@ -25,18 +25,20 @@ export function OutlineLayers({ box }: { box: Box }) {
         ))}
       </Pane>
       <Pane name="land" style={{ zIndex: 210 }}>
-        <GeoJSON data={outline.land} interactive={false} pathOptions={{ className: 'map-land' }} />
+        <Polygon positions={outline.land.map(toLatLng)} interactive={false} className="map-land" />
         <Polyline
           positions={shores}
           interactive={false}
-          pathOptions={{ className: 'map-shore', weight: 1 }}
+          className="map-shore"
+          pathOptions={{ weight: 1 }}
         />
       </Pane>
       <Pane name="borders" style={{ zIndex: 220 }}>
         <Polyline
           positions={toLatLng(outline.borders)}
           interactive={false}
-          pathOptions={{ className: 'map-border', weight: 1, dashArray: '9 3 1.5 3' }}
+          className="map-border"
+          pathOptions={{ weight: 1, dashArray: '9 3 1.5 3' }}
         />
       </Pane>
     </>
@@ -50,12 +52,14 @@ function WaterLine({ shores, distance }: { shores: LatLngTuple[][]; distance: nu
       <Polyline
         positions={shores}
         interactive={false}
-        pathOptions={{ className: 'map-water', weight: distance * 2 }}
+        className="map-water"
+        pathOptions={{ weight: distance * 2 }}
       />
       <Polyline
         positions={shores}
         interactive={false}
-        pathOptions={{ className: 'map-paper', weight: distance * 2 - 1.2 }}
+        className="map-paper"
+        pathOptions={{ weight: distance * 2 - 1.2 }}
       />
     </>
   );

@@ -1,9 +1,10 @@
-import type { FeatureCollection, MultiPolygon, Polygon, Position } from 'geojson';
+import type { MultiPolygon, Polygon, Position } from 'geojson';
 import type { GeometryCollection, Topology } from 'topojson-specification';
 
 /** What lies under the network: land to fill, shores, and the borders of countries and states. */
 export interface Outline {
-  land: FeatureCollection<Polygon | MultiPolygon>;
+  /** Polygons, each with its outer ring first. */
+  land: Position[][][];
   shores: Position[][];
   borders: Position[][];
 }
@@ -42,7 +43,7 @@ export async function loadOutline(box: [number, number, number, number]): Promis
     box,
   );
   return {
-    land: feature(states, nation) as unknown as Outline['land'],
+    land: feature(states, nation).features.flatMap(({ geometry }) => polygonsOf(geometry)),
     shores: [...shores, ...coasts],
     borders: [
       ...clip(mesh(states, members, (a, b) => a !== b).coordinates, box),
@@ -51,6 +52,11 @@ export async function loadOutline(box: [number, number, number, number]): Promis
     ],
   };
 }
+
+const polygonsOf = (geometry: { type: string }): Position[][][] => {
+  if (geometry.type === 'Polygon') return [(geometry as Polygon).coordinates];
+  return geometry.type === 'MultiPolygon' ? (geometry as MultiPolygon).coordinates : [];
+};
 
 const widen = ([w, s, e, n]: [number, number, number, number], by: number) =>
   [w - by, s - by, e + by, n + by] as [number, number, number, number];

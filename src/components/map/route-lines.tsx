@@ -29,20 +29,23 @@ export function RouteLines({ routes, map, zoom }: Props) {
       <Polyline
         positions={rail.map(({ points }) => toLatLng(points))}
         interactive={false}
-        pathOptions={{ className: 'map-rail', weight: 1.3 }}
+        className="map-rail"
+        pathOptions={{ weight: 1.3 }}
       />
       <Polyline
         positions={routes
           .filter(({ kind }) => kind === 'water')
           .map(({ points }) => toLatLng(points))}
         interactive={false}
-        pathOptions={{ className: 'map-rail', weight: 1.3, dashArray: '2 5' }}
+        className="map-rail"
+        pathOptions={{ weight: 1.3, dashArray: '2 5' }}
       />
       <Polyline
         key={zoom}
         positions={ticks}
         interactive={false}
-        pathOptions={{ className: 'map-rail', weight: 1 }}
+        className="map-rail"
+        pathOptions={{ weight: 1 }}
       />
     </>
   );

@@ -31,7 +31,10 @@ export function LedgerRow<Row>({ index, entry, table, isCurrent, measure }: Prop
         </td>
       ) : (
         table.columns.map((column, place) => (
-          <td key={column.id} className={column.number ? 'number' : undefined}>
+          <td
+            key={column.id}
+            className={column.number ? 'number' : column.wraps ? 'wraps' : undefined}
+          >
             {place === 0 ? (
               <RowLink to={table.linkOf?.(row)} isCurrent={isCurrent}>
                 {column.cell(row)}

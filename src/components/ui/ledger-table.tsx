@@ -11,6 +11,8 @@ export interface Column<Row> {
   /** Absent: takes its share of what the others leave. */
   width?: number;
   number?: boolean;
+  /** Long words go on a second line instead of being cut. */
+  wraps?: boolean;
   /** The sort words of the list that this heading asks for. */
   sort?: { up?: string; down?: string };
   cell: (row: Row) => ReactNode;
@@ -48,7 +50,11 @@ export function LedgerTable<Row>(props: LedgerProps<Row>) {
   const keys = useLedgerKeys(body, rows.length, shown.reach);
   const span = narrow ? 2 : columns.length + 1;
   return (
-    <table className="ledger" aria-rowcount={(props.total ?? rows.length) + 1}>
+    <table
+      className="ledger"
+      data-scrolls={props.scroller ? 'itself' : 'page'}
+      aria-rowcount={(props.total ?? rows.length) + 1}
+    >
       <caption className="only-heard">{props.caption}</caption>
       <colgroup>
         <col className="w-[49px]" />

@@ -1,8 +1,8 @@
 import { useRef } from 'react';
 import type { KeyboardEvent, PointerEvent } from 'react';
 
-/** The wordmark: the plate over two rail ends, and the name. */
-export function Wordmark() {
+/** The wordmark: the plate over two rail ends, and the name; `isShort` leaves the name out on phones. */
+export function Wordmark({ isShort = false }: { isShort?: boolean }) {
   return (
     <span className="flex items-center gap-12 text-lead font-semibold tracking-[.01em]">
       <svg width="40" height="14" viewBox="0 0 40 14" aria-hidden="true" className="fill-current">
@@ -12,7 +12,7 @@ export function Wordmark() {
           d="M6 .5h28v13H6zM14 4.2a2.8 2.8 0 1 0 0 5.6 2.8 2.8 0 0 0 0-5.6zM26 4.2a2.8 2.8 0 1 0 0 5.6 2.8 2.8 0 0 0 0-5.6z"
         />
       </svg>
-      Fishplate
+      <span className={isShort ? 'max-sm:hidden' : undefined}>Fishplate</span>
     </span>
   );
 }

@@ -36,17 +36,18 @@ export function StateMark({ decorative, state, quiet, pastLimit }: Props) {
 
 function Body({ state, quiet, pastLimit }: Required<MarkedState>) {
   if (state === 'onHand') return <Standing quiet={quiet} pastLimit={pastLimit} />;
-  const outline = state === 'enRoute' ? 'M4.7 3.2h15.6l5 3.8-5 3.8H4.7z' : 'M4.7 3.2h20.6v7.6H4.7z';
+  const outline =
+    state === 'enRoute' ? 'M3.7 2.7h17l5.6 4.3-5.6 4.3h-17z' : 'M3.7 2.7h22.6v8.6H3.7z';
   const broken =
     state === 'enRoute'
-      ? 'M13.2 10.8H4.7V3.2h11.4M19.6 3.2h.7l5 3.8-5 3.8h-3.6'
-      : 'M13.2 10.8H4.7V3.2h11.4M19.6 3.2h5.7v7.6h-8.6';
+      ? 'M3.7 2.7h10.4l-3.8 8.6H3.7zM18.2 2.7h2.5l5.6 4.3-5.6 4.3h-6.3z'
+      : 'M3.7 2.7h10.4l-3.8 8.6H3.7zM18.2 2.7h8.1v8.6H14.4z';
   return (
     <path
       d={quiet ? broken : outline}
       fill="none"
       stroke="currentColor"
-      strokeWidth="1.4"
+      strokeWidth="1.5"
       strokeDasharray={state === 'unseen' && !quiet ? '3 2' : undefined}
     />
   );

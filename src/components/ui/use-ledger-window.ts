@@ -26,7 +26,6 @@ export function useLedgerWindow(
 ): LedgerWindow {
   const top = useDistanceFromTop(body, scroller === null);
   const common = { count, estimateSize: rowHeight, overscan: 12 };
-  // eslint-disable-next-line react-hooks/incompatible-library -- nothing here is memoized by the compiler
   const within = useVirtualizer<HTMLElement, HTMLTableRowElement>({
     ...common,
     enabled: scroller !== null,

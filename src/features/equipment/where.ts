@@ -6,7 +6,7 @@ export function sayWhere({ state, quiet, lastSeen, between }: EquipmentItem): st
   if (!lastSeen || state === 'unseen') return 'Never read';
   const site = between?.from?.name ?? lastSeen.site?.name ?? 'a place without a name';
   if (quiet) return `Quiet since ${site}`;
-  if (state === 'enRoute') return `Under way from ${site}`;
+  if (state === 'enRoute') return `From ${site}`;
   return lastSeen.track ? `${site}, ${sayTrack(lastSeen.track)}` : site;
 }
 

@@ -38,5 +38,5 @@ export function sayWatch(watch: Said): string {
     return `${capital(what)} has stood over ${watch.hours} h at ${sites ?? 'any site'}`;
   }
   const standing = watch.includeOnHand ? ', standing at a site or not' : '';
-  return `${capital(what)} has not been read for ${watch.hours} h${sites ? `, last at ${sites}` : ''}${standing}`;
+  return `${capital(what)} has not been read for ${watch.hours} h${sites ? `, last read at ${sites}` : ''}${standing}`;
 }

@@ -66,7 +66,12 @@ export function FilterWords({ filter, sites, onSearch }: Props) {
           end=","
         />
       ) : null}
-      <Word label="Order" choices={simple(filter, 'sort', sortChoices)} value={filter.sort} />
+      <Word
+        label="Order"
+        choices={simple(filter, 'sort', sortChoices)}
+        value={filter.sort}
+        end=","
+      />
       <SearchWord key={filter.search ?? ''} text={filter.search ?? ''} onSearch={onSearch} />
       {isNarrowed ? (
         <Link className="ml-6" to={paths.fleet(filter.sort ? { sort: filter.sort } : {})}>

@@ -12,7 +12,7 @@ export function fleetColumns(zone: string, now: number): Column<EquipmentItem>[]
     {
       id: 'unit',
       heading: 'Car or box',
-      width: 142,
+      width: 126,
       sort: { up: 'unit' },
       cell: (row) => <Mark>{row.display}</Mark>,
     },
@@ -20,7 +20,7 @@ export function fleetColumns(zone: string, now: number): Column<EquipmentItem>[]
     {
       id: 'for',
       heading: 'For',
-      width: 104,
+      width: 84,
       number: true,
       sort: { down: 'dwell' },
       cell: (row) => <For row={row} now={now} />,
@@ -28,7 +28,7 @@ export function fleetColumns(zone: string, now: number): Column<EquipmentItem>[]
     {
       id: 'lastSeen',
       heading: `Last read, ${zoneName(zone, now)}`,
-      width: 116,
+      width: 108,
       sort: { down: '-lastSeen', up: 'lastSeen' },
       cell: (row) =>
         row.lastSeen ? (
@@ -38,7 +38,7 @@ export function fleetColumns(zone: string, now: number): Column<EquipmentItem>[]
     {
       id: 'limit',
       heading: 'Against limit',
-      width: 118,
+      width: 114,
       cell: (row) => <AgainstLimit row={row} now={now} />,
     },
   ];

@@ -40,6 +40,7 @@ export function journeyColumns(
     {
       id: 'how',
       heading: 'How known',
+      wraps: true,
       cell: (line) => <span className="text-ink-soft">{sayHow(line, zone, now)}</span>,
     },
   ];

@@ -21,7 +21,7 @@ export function SearchWord({ text, onSearch }: Props) {
         search();
       }}
     >
-      <label htmlFor={id}>, with</label>
+      <label htmlFor={id}>with</label>
       <input
         id={id}
         className="blank w-[120px]"

@@ -43,11 +43,11 @@ export function UnitMiles({ unitId }: { unitId: string }) {
               heading: 'Month of arrival, UTC',
               cell: ({ month }) => monthName.format(new Date(`${month}-15T00:00:00Z`)),
             },
-            { id: 'legs', heading: 'Legs', width: 96, number: true, cell: ({ legs: n }) => n },
+            { id: 'legs', heading: 'Legs', width: 56, number: true, cell: ({ legs: n }) => n },
             {
               id: 'distance',
               heading: distanceHeading(distance),
-              width: 130,
+              width: 96,
               number: true,
               cell: ({ metres }) => formatDistance(metres, distance),
             },

@@ -4,6 +4,9 @@ import { LedgerTable } from '../../../components/ui/ledger-table';
 import type { Column } from '../../../components/ui/ledger-table';
 import { MoreRows } from '../../../components/ui/more-rows';
 import { formatInstant, zoneName } from '../../../lib/times';
+import { formatSpeed } from '../../../lib/distances';
+import { usePreferences } from '../../../lib/preferences';
+import type { Preferences } from '../../../lib/preferences';
 import { useMedia } from '../../../lib/use-media';
 import { listed } from '../../../lib/words';
 import type { SightingView } from '../../../lib/wire';
@@ -20,6 +23,7 @@ interface Props {
 export function UnitSightings({ unitId, zone, now }: Props) {
   const list = useInfiniteQuery(sightingsQuery(unitId));
   const isNarrow = useMedia('(max-width: 767px)');
+  const { distance } = usePreferences();
   if (list.isPending) return <LoadingRows of="the passes" rows={5} />;
   if (list.isError && !list.data) {
     return (
@@ -36,11 +40,15 @@ export function UnitSightings({ unitId, zone, now }: Props) {
     <>
       <LedgerTable
         caption="Passes it was read in"
-        columns={sightingColumns(zone, now)}
+        columns={sightingColumns(zone, now, distance)}
         rows={rows}
         keyOf={(row) => row.passId + row.startedAt}
         margin={(row) => <SightingMark sighting={row} />}
-        narrow={isNarrow ? (row) => <NarrowSighting row={row} zone={zone} now={now} /> : undefined}
+        narrow={
+          isNarrow
+            ? (row) => <NarrowSighting row={row} zone={zone} now={now} distance={distance} />
+            : undefined
+        }
         scroller={null}
       />
       <MoreRows list={list} word="Earlier passes" />
@@ -48,7 +56,11 @@ export function UnitSightings({ unitId, zone, now }: Props) {
   );
 }
 
-function sightingColumns(zone: string, now: number): Column<SightingView>[] {
+function sightingColumns(
+  zone: string,
+  now: number,
+  distance: Preferences['distance'],
+): Column<SightingView>[] {
   return [
     {
       id: 'at',
@@ -57,8 +69,8 @@ function sightingColumns(zone: string, now: number): Column<SightingView>[] {
       cell: (row) => <span className="mono">{formatInstant(row.startedAt, zone, now)}</span>,
     },
     { id: 'where', heading: 'By the reader', cell: sayReader },
-    { id: 'what', heading: 'Which shows', cell: sayMeaning },
-    { id: 'sides', heading: 'Tags that answered', width: 150, cell: saySides },
+    { id: 'what', heading: 'Which shows', wraps: true, cell: (row) => sayMeaning(row, distance) },
+    { id: 'sides', heading: 'Tags that answered', width: 178, cell: saySides },
     { id: 'reads', heading: 'Reads', width: 60, number: true, cell: ({ reads }) => reads },
   ];
 }
@@ -72,9 +84,12 @@ const roles = {
   returned: 'came up to it and went back',
 } as const;
 
-function sayMeaning({ role, speedKmh, directionBasis }: SightingView): string {
+function sayMeaning(
+  { role, speedKmh, directionBasis }: SightingView,
+  distance: Preferences['distance'],
+): string {
   const bases = { sensors: 'by wheel sensors', antennas: 'by antennas', history: 'from history' };
-  const speed = speedKmh === null ? '' : ` at ${Math.round(speedKmh / 1.609344)} mph`;
+  const speed = speedKmh === null ? '' : ` at ${formatSpeed(speedKmh, distance)}`;
   const how = role === 'crossing' && directionBasis ? `, direction ${bases[directionBasis]}` : '';
   return `${roles[role]}${speed}${how}`;
 }
@@ -99,12 +114,19 @@ function SightingMark({ sighting }: { sighting: SightingView }) {
   );
 }
 
-function NarrowSighting({ row, zone, now }: { row: SightingView; zone: string; now: number }) {
+interface NarrowProps {
+  row: SightingView;
+  zone: string;
+  now: number;
+  distance: Preferences['distance'];
+}
+
+function NarrowSighting({ row, zone, now, distance }: NarrowProps) {
   return (
     <>
       <span className="mono">{formatInstant(row.startedAt, zone, now)}</span> {sayReader(row)}
       <span className="block text-ink-soft">
-        {sayMeaning(row)}; {saySides(row)}; {row.reads} reads
+        {sayMeaning(row, distance)}; {saySides(row)}; {row.reads} reads
       </span>
     </>
   );

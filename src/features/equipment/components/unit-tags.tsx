@@ -1,6 +1,7 @@
 import { LedgerTable } from '../../../components/ui/ledger-table';
 import { Mark } from '../../../components/ui/mark';
 import { formatInstant, zoneName } from '../../../lib/times';
+import { useMedia } from '../../../lib/use-media';
 import type { EquipmentDetail } from '../../../lib/wire';
 
 interface Props {
@@ -13,6 +14,7 @@ interface Props {
 export function UnitTags({ unit, zone, now }: Props) {
   const time = (instant: string | null, otherwise: string) =>
     instant ? <span className="mono">{formatInstant(instant, zone, now)}</span> : otherwise;
+  const isNarrow = useMedia('(max-width: 767px)');
   const former = unit.identities.filter(({ current }) => !current);
   return (
     <>
@@ -39,6 +41,18 @@ export function UnitTags({ unit, zone, now }: Props) {
           rows={unit.tags.map((row) => ({ row }))}
           keyOf={({ value, validFrom }) => value + (validFrom ?? '')}
           margin={() => null}
+          narrow={
+            isNarrow
+              ? ({ value, side, validTo }) => (
+                  <>
+                    <span className="mono text-note break-all whitespace-normal">{value}</span>
+                    <span className="block text-ink-soft">
+                      {side ?? 'side not said'}, valid to {time(validTo, 'now')}
+                    </span>
+                  </>
+                )
+              : undefined
+          }
           scroller={null}
         />
       )}

@@ -63,8 +63,8 @@ export function WatchSentence({ form, sites, canChooseKind }: Props) {
           aria-invalid={errors.hours ? true : undefined}
           {...register('hours')}
         />{' '}
-        hours{kind === 'dwell' ? ' at ' : ', last at '}
-        <SiteBlank form={form} sites={sites} />.
+        hours{kind === 'dwell' ? ' at ' : ', last read at '}
+        <SiteBlank form={form} sites={sites} />
       </p>
       {kind === 'quiet' ? (
         <label className="flex min-h-24 items-center gap-8 text-table">
