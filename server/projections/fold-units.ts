@@ -3,7 +3,7 @@ import type { EquipmentKind } from '../domain/identifiers/equipment-groups.js';
 import type { Network } from '../domain/movements/configuration.js';
 import { compareText } from '../domain/movements/evidence.js';
 import { foldHistory, type UnitHistory } from '../domain/movements/fold-history.js';
-import { earliestMutable, nothingKnown, type FoldState } from '../domain/movements/fold-state.js';
+import { changeableFrom, nothingKnown, type FoldState } from '../domain/movements/fold-state.js';
 import type { Sighting } from '../domain/movements/fold-unit.js';
 import { byKeys, inParts } from '../lib/bulk.js';
 import { writeHistories, type FoldedUnit } from './write-histories.js';
@@ -89,8 +89,8 @@ async function foldPart(
     const own = sightings.get(start.unitId) ?? [];
     const { kind, ownerId, registered } = kinds.get(start.unitId) as UnitRow;
     const history: UnitHistory = foldHistory(network, kind, start.state, own);
-    const mutableFrom = Math.min(start.beforeAt, earliestMutable(start.state) ?? Infinity);
-    return { start, mutableFrom, ownerId, registered, history, last: own.at(-1) ?? null };
+    const changeable = changeableFrom(start.state, start.beforeAt);
+    return { start, changeable, ownerId, registered, history, last: own.at(-1) ?? null };
   });
 }
 

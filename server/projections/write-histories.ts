@@ -1,5 +1,6 @@
 import type { PoolConnection } from 'mariadb';
 import type { UnitHistory } from '../domain/movements/fold-history.js';
+import type { Changeable } from '../domain/movements/fold-state.js';
 import { byKeys, insertRows, type SqlValue } from '../lib/bulk.js';
 import { NEVER_SEEN } from '../lib/sentinels.js';
 import type { LoadedSighting, UnitStart } from './fold-units.js';
@@ -18,8 +19,8 @@ import { isSame } from './same-row.js';
 /** One unit folded anew, with what its rows need. */
 export interface FoldedUnit {
   start: UnitStart;
-  /** First sighting (ms) of the earliest stay that the fold may have changed. */
-  mutableFrom: number;
+  /** Stored rows that the fold may have changed. */
+  changeable: Changeable;
   ownerId: number | null;
   registered: boolean;
   history: UnitHistory;
@@ -66,11 +67,21 @@ async function writeDifferences(
     connection,
     `SELECT * FROM ${table} WHERE :keys`,
     `unit_id = ? AND ${orderedBy} >= ?`,
-    units.map((unit) => [unit.start.unitId, new Date(unit.mutableFrom)]),
+    units.map((unit) => [unit.start.unitId, new Date(unit.changeable.since)]),
   );
   const keyOf = (values: readonly (SqlValue | undefined)[]) =>
     values.map((value) => (value instanceof Date ? value.getTime() : value)).join(' ');
-  const stored = new Map(rows.map((row) => [keyOf(key.map((column) => row[column])), row]));
+  const changeable = new Map(units.map((unit) => [unit.start.unitId, unit.changeable]));
+  const stored = new Map<string, Record<string, SqlValue>>();
+  for (const row of rows) {
+    const [unitId, firstSeenAt, siteId] = key.map((column) => row[column]) as [
+      number,
+      Date,
+      number,
+    ];
+    const isOurs = changeable.get(unitId)?.includes({ siteId, firstSeenAt: firstSeenAt.getTime() });
+    if (isOurs) stored.set(keyOf([unitId, firstSeenAt, siteId]), row);
+  }
   const changed: SqlValue[][] = [];
   for (const values of units.flatMap(rowsOf)) {
     const name = keyOf(values.slice(0, key.length));

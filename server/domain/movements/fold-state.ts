@@ -91,13 +91,31 @@ export function nothingKnown(): FoldState {
   return { stay: null, leg: null, previous: null, trail: [], drill: null, held };
 }
 
-/** First sighting of the earliest stay that the state can still change; null: none. */
-export function earliestMutable(state: FoldState): number | null {
-  const firsts = [
-    ...(state.stay ? [state.stay.firstSeenAt] : []),
-    ...state.held.stays.map((stay) => stay.firstSeenAt),
+/** What tells a unit's stays apart; legs go by the stay they lead to. */
+export type StayKey = Pick<Stay, 'siteId' | 'firstSeenAt'>;
+
+/** Which stored rows a fold that starts from a checkpoint may change. */
+export interface Changeable {
+  /** No row of an earlier first sighting (ms) is among them. */
+  since: number;
+  includes(key: StayKey): boolean;
+}
+
+/** Rows that a fold from `state` on, over the sightings from `beforeAt` (ms) on, may change. */
+export function changeableFrom(state: FoldState, beforeAt: number): Changeable {
+  const keys = mutableStays(state);
+  return {
+    since: Math.min(beforeAt, ...keys.map((key) => key.firstSeenAt)),
+    includes: ({ siteId, firstSeenAt }) =>
+      firstSeenAt >= beforeAt ||
+      keys.some((key) => key.siteId === siteId && key.firstSeenAt === firstSeenAt),
+  };
+}
+
+function mutableStays(state: FoldState): StayKey[] {
+  return [
+    ...(state.stay ? [state.stay] : []),
+    ...state.held.stays,
+    ...(state.drill ? mutableStays(state.drill.before) : []),
   ];
-  const nested = state.drill ? earliestMutable(state.drill.before) : null;
-  if (nested !== null) firsts.push(nested);
-  return firsts.length ? Math.min(...firsts) : null;
 }

@@ -102,7 +102,7 @@ function startStep(
 function settled(held: FoldRows): FoldRows {
   return {
     stays: held.stays.map((stay) => ({ ...stay, departureFinalAt: null })),
-    legs: held.legs,
+    legs: [...held.legs],
   };
 }
 

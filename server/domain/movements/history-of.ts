@@ -77,7 +77,7 @@ export function compareSightings(a: UnitSighting, b: UnitSighting): number {
 }
 
 /** Of what its sightings say of its kind, the word that counts most. */
-function kindOfUnit(sightings: readonly UnitSighting[]): EquipmentKind {
+export function kindOfUnit(sightings: readonly UnitSighting[]): EquipmentKind {
   const first = sightings[0] as UnitSighting;
   return sightings.reduce((best, next) => (next.kindRank < best.kindRank ? next : best), first)
     .kind;
@@ -98,7 +98,12 @@ function readsByPoint(network: Network, reads: readonly LedgerRead[]) {
   return points;
 }
 
-function sightingsOf(network: Network, point: ReadPointConfiguration, pass: Pass): UnitSighting[] {
+/** The sightings that a pass gives its units. */
+export function sightingsOf(
+  network: Network,
+  point: ReadPointConfiguration,
+  pass: Pass,
+): UnitSighting[] {
   return pass.members.map(({ passage, role, direction }) => ({
     unit: passage.unit,
     kind: passage.kind,

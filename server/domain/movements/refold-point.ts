@@ -33,11 +33,14 @@ export interface Refolded {
 
 /** Folds new visits into a stretch of a read point's history. */
 export function refoldPoint(rules: PointRules, window: PointWindow): Refolded {
-  const visits = withFresh(window, rules.point.visitGapSeconds * 1000);
+  const gapMs = rules.point.visitGapSeconds * 1000;
+  const visits = withFresh(window, gapMs);
+  // A new read may draw a stored visit that begins up to a visit gap later into its own.
+  const changedUntil = window.changedUntil + gapMs;
   const from = { reversal: window.from?.reversal ?? false };
   const passes = formPasses(rules, joinVisits(rules, visits), from);
   const index = passes.findIndex(
-    (pass, at) => at > 0 && pass.startedAt > window.changedUntil && isSettled(window, pass),
+    (pass, at) => at > 0 && pass.startedAt > changedUntil && isSettled(window, pass),
   );
   const settled = passes[index];
   return settled
