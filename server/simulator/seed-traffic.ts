@@ -81,6 +81,7 @@ async function takeUp(
   total: number,
   onProgress: (progress: SeedProgress) => void,
 ): Promise<void> {
+  const projector = createProjector(context);
   const look = setInterval(() => {
     void waiting(context.db).then(
       (left) => onProgress({ done: Math.max(0, total - left), total, unit: 'reads taken up' }),
@@ -88,9 +89,11 @@ async function takeUp(
     );
   }, 500);
   try {
-    await createProjector(context).drain();
+    await projector.drain();
   } finally {
     clearInterval(look);
+    // The server's own projector takes over, and would wait for this one's lease to expire.
+    await projector.stop();
   }
   onProgress({ done: total, total, unit: 'reads taken up' });
 }
