@@ -6,7 +6,8 @@ import { sendOutbox } from './send-outbox.js';
 export interface Job {
   /** Also the name of its lease. */
   name: string;
-  everySeconds: 5 | 10 | 15 | 30;
+  /** Divides a minute. */
+  everySeconds: 1 | 5 | 15;
   run(context: Context): Promise<unknown>;
 }
 

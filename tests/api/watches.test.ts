@@ -18,7 +18,7 @@ import { buildWatch } from '../support/watches.js';
 const db = useTestDatabase();
 const HOUR = 3_600_000;
 
-async function scene() {
+function scene() {
   const context = buildContext(db);
   const app = createApp(context);
   const now = context.clock.now();
@@ -26,7 +26,7 @@ async function scene() {
 }
 
 async function ownerScene() {
-  const { app, ...rest } = await scene();
+  const { app, ...rest } = scene();
   const organisation = await buildOrganisation(db, { name: 'Quarry Tank' });
   const person = await buildPerson(db, { roles: ['owner'], organisation, name: 'Ada Quill' });
   return { ...rest, app, organisation, person, agent: await signIn(app, person) };
@@ -69,7 +69,7 @@ describe('setting a watch', () => {
   });
 
   test('takes sites of a dispatcher by code', async () => {
-    const { app } = await scene();
+    const { app } = scene();
     const site = await buildSite(db, { code: 'ALDER', name: 'Alder Bend Yard' });
     const dispatcher = await buildPerson(db, { roles: ['dispatcher'], sites: [site] });
     const agent = await signIn(app, dispatcher);
@@ -140,7 +140,7 @@ describe('setting a watch', () => {
   });
 
   test('refuses a dispatcher sites of others', async () => {
-    const { app } = await scene();
+    const { app } = scene();
     const mine = await buildSite(db, { code: 'MINE' });
     await buildSite(db, { code: 'OTHERS' });
     const agent = await signIn(app, await buildPerson(db, { roles: ['clerk'], sites: [mine] }));
@@ -154,7 +154,7 @@ describe('setting a watch', () => {
   });
 
   test('needs somebody signed in', async () => {
-    const { app } = await scene();
+    const { app } = scene();
     await request(app).post('/api/watches').send({ name: 'x', kind: 'quiet' }).expect(401);
     await request(app).get('/api/watches').expect(401);
     await request(app).post('/api/watches/preview').send({ kind: 'quiet' }).expect(401);

@@ -26,8 +26,8 @@ export async function placeUnit(db: Database, unit: Unit, place: Place): Promise
   const state = place.state === 'left' ? 'enRoute' : place.state;
   const quietAt = state === 'enRoute' ? new Date(at.getTime() + 72 * HOUR_MS) : FAR;
   const since = place.state === 'onHand' ? (place.arrivedAt ?? at) : null;
-  // A site that was just created does not know the defaults of its columns.
-  const limitHours = (site?.dwellLimitHours as number | undefined) ?? 96;
+  // The type does not say that a site just created lacks the defaults of its columns.
+  const { dwellLimitHours: limitHours = 96 }: Partial<Site> = site ?? {};
   const limitAt = since ? new Date(since.getTime() + limitHours * HOUR_MS) : FAR;
   await LastSeen.destroy({ where: { unitId: unit.id } });
   await LastSeen.create({
