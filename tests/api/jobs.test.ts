@@ -25,7 +25,7 @@ test('a job comes again although it failed', async () => {
 test('of two servers one does a job at a time', async () => {
   const asked = vi.spyOn(db.pool, 'query');
   const triesForLease = () =>
-    asked.mock.calls.filter(([text]) => String(text).includes('INTO worker_leases')).length;
+    asked.mock.calls.filter(([text]) => JSON.stringify(text).includes('INTO worker_leases')).length;
   let atOnce = 0;
   let most = 0;
   let finished = 0;
