@@ -1,3 +1,4 @@
+import { isAeiHex } from '../../server/domain/identifiers/aei.js';
 import type {
   Configuration,
   Direction,
@@ -19,6 +20,15 @@ function required<T>(value: T | undefined): T {
   if (value === undefined) throw new Error('The invented region does not hang together.');
   return value;
 }
+
+/** Units that no rule can know of: all tags dead, or strangers' EPC tags that no register names. */
+const unreadable = new Set(
+  world.units
+    .filter(({ owner, tags }) =>
+      tags.every(({ value, dead }) => dead || (owner === null && !isAeiHex(value))),
+    )
+    .map(({ identity }) => identity.compact),
+);
 
 const siteId = (code: string) => required(siteIds.get(code));
 const placeOf = (code: string | null): Place =>
@@ -103,7 +113,40 @@ export function demoLedger(sent: Sent[]): Ledger {
   };
 }
 
-/** Shares of true crossings: how the history that was made of the reads agrees with them. */
+/** What was made of the reads, in the words of the truth; instants in milliseconds. */
+export interface Found {
+  passages: { point: string; unit: string; at: number; direction: Direction | null }[];
+  stays: { site: string; unit: string; arrivedAt: number | null; departedAt: number | null }[];
+}
+
+const siteCodes = new Map([...siteIds].map(([code, id]) => [id, code]));
+const pointKeys = new Map([...pointIds].map(([key, id]) => [id, key]));
+
+/** A history of the rules, to compare with the truth. */
+export function foundIn({ passes, units }: History): Found {
+  return {
+    passages: [...passes].flatMap(([pointId, ofPoint]) =>
+      ofPoint
+        .flatMap(({ members }) => members)
+        .map(({ passage, direction }) => ({
+          point: required(pointKeys.get(pointId)),
+          unit: String(passage.unit),
+          at: passage.first.at,
+          direction,
+        })),
+    ),
+    stays: [...units].flatMap(([unit, { stays }]) =>
+      stays.map(({ siteId: site, arrivedAt, departedAt }) => ({
+        site: required(siteCodes.get(site)),
+        unit: String(unit),
+        arrivedAt,
+        departedAt,
+      })),
+    ),
+  };
+}
+
+/** Shares of true crossings: how what was made of the reads agrees with them. */
 export interface Agreement {
   crossings: number;
   directionRight: number;
@@ -113,12 +156,14 @@ export interface Agreement {
   departures: number;
 }
 
+const MINUTE = 60_000;
+
 /**
- * Compares history with truth at the read points of one kind of equipment. What passed a silent
- * reader is left out: no rule can find it.
+ * Compares what was found with the truth at the read points of one kind of equipment. What passed
+ * a silent reader is left out, and so is what no rule can know of.
  */
 export function agreementOf(
-  history: History,
+  found: Found,
   truth: TrueCrossing[],
   equipment: DemoReadPoint['equipment'],
 ): Agreement {
@@ -127,57 +172,61 @@ export function agreementOf(
   );
   const keys = new Set(points.map(pointKey));
   const real = truth.filter(
-    (crossing) => keys.has(`${crossing.site} ${crossing.readPoint}`) && !crossing.isSilent,
+    (crossing) =>
+      keys.has(`${crossing.site} ${crossing.readPoint}`) &&
+      !crossing.isSilent &&
+      !unreadable.has(crossing.unit),
   );
-  const known = directionsOf(history);
-  const found = real.map((crossing) => nearest(known, crossing));
-  const count = (wanted: (direction: Direction | null | undefined, index: number) => boolean) =>
-    found.filter(wanted).length;
+  const passages = grouped(found.passages, ({ point, unit }) => `${point} ${unit}`);
+  const directions = real.map((crossing) => {
+    const { site, readPoint, unit, at } = crossing;
+    const seen = passages.get(`${site} ${readPoint} ${unit}`) ?? [];
+    const known = seen.find((passage) => Math.abs(passage.at - at) < MINUTE)?.direction ?? null;
+    return { known, true: crossing.direction };
+  });
+  const shareOf = (right: boolean) =>
+    directions.filter(({ known, true: real }) => known !== null && (known === real) === right)
+      .length / real.length;
   return {
     crossings: real.length,
-    directionRight: count((d, index) => d === real[index]?.direction) / real.length,
-    directionWrong: count((d, index) => d != null && d !== real[index]?.direction) / real.length,
-    arrivals: shareOf(history, real, 'arrive', 'arrivedAt'),
-    departures: shareOf(history, real, 'depart', 'departedAt'),
+    directionRight: shareOf(true),
+    directionWrong: shareOf(false),
+    arrivals: shareWithin(found, real, 'arrive', 'arrivedAt'),
+    departures: shareWithin(found, real, 'depart', 'departedAt'),
   };
 }
 
-type Known = Map<string, { at: number; direction: Direction | null }[]>;
-
-function directionsOf(history: History): Known {
-  const known: Known = new Map();
-  for (const [pointId, passes] of history.passes) {
-    for (const { passage, direction } of passes.flatMap(({ members }) => members)) {
-      const key = `${pointId} ${passage.unit}`;
-      const seen = known.get(key) ?? [];
-      known.set(key, seen);
-      seen.push({ at: passage.first.at, direction });
-    }
-  }
-  return known;
-}
-
-const MINUTE = 60_000;
-
-/** The direction known of that crossing; undefined when nothing was read of it. */
-function nearest(known: Known, { site, readPoint, unit, at }: TrueCrossing) {
-  const seen = known.get(`${required(pointIds.get(`${site} ${readPoint}`))} ${unit}`) ?? [];
-  return seen.find((passage) => Math.abs(passage.at - at) < MINUTE)?.direction;
-}
-
-function shareOf(
-  history: History,
+function shareWithin(
+  found: Found,
   real: TrueCrossing[],
   purpose: 'arrive' | 'depart',
   field: 'arrivedAt' | 'departedAt',
 ): number {
+  const stays = grouped(found.stays, ({ site, unit }) => `${site} ${unit}`);
   const wanted = real.filter((crossing) => crossing.purpose === purpose);
-  const found = wanted.filter(({ unit, site, at }) =>
-    history.units
-      .get(unit)
-      ?.stays.some(
-        (stay) => stay.siteId === siteId(site) && Math.abs((stay[field] ?? 0) - at) <= MINUTE,
-      ),
+  const close = wanted.filter(({ unit, site, at }) =>
+    stays.get(`${site} ${unit}`)?.some((stay) => Math.abs((stay[field] ?? 0) - at) <= MINUTE),
   );
-  return found.length / wanted.length;
+  return close.length / wanted.length;
+}
+
+function grouped<T>(values: T[], keyOf: (value: T) => string): Map<string, T[]> {
+  const groups = new Map<string, T[]>();
+  for (const value of values) {
+    const group = groups.get(keyOf(value));
+    if (group) group.push(value);
+    else groups.set(keyOf(value), [value]);
+  }
+  return groups;
+}
+
+/** The figures in one line, for the report of a test. */
+export function agreementLine(equipment: string, agreement: Agreement): string {
+  const { crossings, directionRight, directionWrong, arrivals, departures } = agreement;
+  const percent = (share: number) => `${(share * 100).toFixed(2)} %`;
+  return (
+    `${equipment}: ${crossings} crossings, direction right ${percent(directionRight)}, ` +
+    `wrong ${percent(directionWrong)}, arrivals ${percent(arrivals)}, ` +
+    `departures ${percent(departures)}`
+  );
 }

@@ -212,7 +212,13 @@ function wishOf(
         backM: random() < 0.5 ? between(random, 8, 45) : 0,
       }
     : null;
-  return { point, vehicles, speedKmh, halt, trainNumber: train.number % 4 === 0 ? train.number : null };
+  return {
+    point,
+    vehicles,
+    speedKmh,
+    halt,
+    trainNumber: train.number % 4 === 0 ? train.number : null,
+  };
 }
 
 function nodeAt(train: Train, offset: number): string {
