@@ -43,9 +43,14 @@ function searchCondition({ unitIds, condition }: UnitSearch): Sql {
     : sql`EXISTS (SELECT 1 FROM identities i WHERE i.unit_id = s.unit_id AND ${condition})`;
 }
 
-/** True when a filter picks few rows by an index of its own, better than walking in order. */
-export function picksFew({ quiet, pastLimit, search }: UnitFilters): boolean {
-  return quiet === true || pastLimit === true || Boolean(search?.unitIds);
+/** The index by which a filter picks few rows; null: better to walk in the order of the list. */
+export function pickingIndex(
+  table: string,
+  { quiet, pastLimit, search }: UnitFilters,
+): string | null {
+  if (search?.unitIds) return 'PRIMARY';
+  if (quiet) return `${table}_quiet`;
+  return pastLimit ? `${table}_limit` : null;
 }
 
 /** Joins conditions; none is true. */

@@ -1,7 +1,7 @@
 import { FAR } from '../lib/sentinels.js';
 import { conditionOf, type UnitSource } from './narrow-units.js';
 import { joinSql, sql, word, type Sql } from './sql.js';
-import { all, filterConditions, picksFew, type UnitFilters } from './unit-filters.js';
+import { all, filterConditions, pickingIndex, type UnitFilters } from './unit-filters.js';
 
 /** Where a page begins: the sort value and unit of the last row before it. */
 export interface UnitKey {
@@ -91,27 +91,17 @@ interface Slice {
 
 /** The source cut so that each piece has an index in the order of the last sighting. */
 function slicesOf(source: UnitSource, filters: UnitFilters): Slice[] {
+  const { table } = source;
   const { siteId, state } = filters;
-  const free = picksFew(filters);
-  const along = (index: string) => (free ? word('') : word(`FORCE INDEX (${index})`));
-  if (source.table === 'visible_units') {
-    const index =
-      siteId !== undefined
-        ? 'visible_units_site'
-        : state
-          ? 'visible_units_state'
-          : 'visible_units_at';
-    return [{ from: sql`visible_units s ${along(index)}`, condition: conditionOf(source) }];
+  const picking = pickingIndex(table, filters);
+  const along = siteId !== undefined ? 'site' : state ? 'state' : 'at';
+  const from = (index: string) => sql`${word(table)} s FORCE INDEX (${word(picking ?? index)})`;
+  if (table === 'visible_units' || source.siteIds === null) {
+    return [{ from: from(`${table}_${along}`), condition: conditionOf(source) }];
   }
-  if (source.siteIds === null) {
-    const index =
-      siteId !== undefined ? 'last_seen_site' : state ? 'last_seen_state' : 'last_seen_at';
-    return [{ from: sql`last_seen s ${along(index)}`, condition: null }];
-  }
-  const from = sql`last_seen s ${along('last_seen_site')}`;
   return source.siteIds
     .filter((id) => siteId === undefined || id === siteId)
-    .map((id) => ({ from, condition: sql`s.site_id = ${id}` }));
+    .map((id) => ({ from: from('last_seen_site'), condition: sql`s.site_id = ${id}` }));
 }
 
 function union(selects: Sql[], order: Sql, rows: number): Sql {
