@@ -4,7 +4,6 @@ import { queryString } from './api-client';
 export const paths = {
   home: '/',
   signIn: (back?: string) => `/sign-in${queryString({ back })}`,
-  setUp: '/set-up',
   fleet: (filter: Partial<FleetFilter> = {}) => `/fleet${queryString({ ...filter })}`,
   equipment: (unitId: string) => `/equipment/${encodeURIComponent(unitId)}`,
   alerts: (filter: { state?: string; watch?: string | number } = {}) =>

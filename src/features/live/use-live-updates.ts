@@ -26,10 +26,11 @@ function follow(client: QueryClient): () => void {
     units.clear();
     renew(client, changed);
   });
-  const renewAll = () => {
+  const everything = createThrottle(3000, () => {
     for (const key of [...moving, 'alerts', 'watches', 'unit'])
       void client.invalidateQueries({ queryKey: [key] });
-  };
+  });
+  const renewAll = () => everything.ask();
   const heard = () => noteFreshness({ link: 'live', heardAt: Date.now() });
   const source = new EventSource(api.events);
   source.addEventListener('ready', () => {
@@ -60,6 +61,7 @@ function follow(client: QueryClient): () => void {
     source.close();
     clearInterval(poll);
     renewMoving.stop();
+    everything.stop();
   };
 }
 

@@ -27,10 +27,19 @@ interface Props {
 
 const keyOf = (row: EquipmentItem) => row.unitId;
 
+/** A car that moved between two pages while they were fetched stands in both: its first place counts. */
+function eachOnce(rows: EquipmentItem[]): EquipmentItem[] {
+  const seen = new Set<string>();
+  return rows.filter(({ unitId }) => !seen.has(unitId) && seen.add(unitId));
+}
+
 /** The fleet as a ledger: live, its order held while it is being read, further pages as they come into view. */
 export function FleetTable({ filter, zone, scroller, onSort, dropFilters }: Props) {
   const list = useInfiniteQuery(equipmentListQuery(filter));
-  const fresh = useMemo(() => list.data?.pages.flatMap((page) => page.data) ?? [], [list.data]);
+  const fresh = useMemo(
+    () => eachOnce(list.data?.pages.flatMap((page) => page.data) ?? []),
+    [list.data],
+  );
   const held = useHeldRows(fresh, keyOf);
   const isNarrow = useMedia('(max-width: 559px)');
   const now = useNow();

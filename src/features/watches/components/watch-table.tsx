@@ -39,7 +39,7 @@ export function WatchTable({ session, sites }: Props) {
   const rows = list.data.pages.flatMap(({ data }) => data.map((row) => ({ row })));
   if (rows.length === 0) {
     return (
-      <EmptyNotice says="You have not asked to be told of anything.">
+      <EmptyNotice says="Nothing is being watched.">
         Say it as a sentence: which cars, what should have happened, how long.
       </EmptyNotice>
     );
