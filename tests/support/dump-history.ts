@@ -1,0 +1,35 @@
+import { canonicalDump, type DumpedHistory } from '../../server/domain/movements/canonical-dump.js';
+import { Network, type Configuration } from '../../server/domain/movements/configuration.js';
+import { historyOf, type History, type Ledger } from '../../server/domain/movements/history-of.js';
+
+/** History from the whole ledger as the plain rows that a canonical dump is made of. */
+export function rowsOf(history: History): DumpedHistory {
+  const rows: DumpedHistory = { passages: [], passes: [], stays: [], legs: [], lastSeen: [] };
+  for (const [readPointId, passes] of history.passes) {
+    for (const { members, cleanStart: _, ...pass } of passes) {
+      rows.passes.push({ readPointId, size: members.length, ...pass });
+      for (const { passage, role, direction, basis } of members) {
+        const { unit, lastAt, readCount, own } = passage;
+        const ofPass = { passStartedAt: pass.startedAt, passOrdinal: pass.ordinal };
+        const firstAt = passage.first.at;
+        const told = { role, direction, basis, speedKmh: own.speedKmh };
+        rows.passages.push({ readPointId, ...ofPass, unit, firstAt, lastAt, readCount, ...told });
+      }
+    }
+  }
+  for (const [unit, { stays, legs, lastSeen }] of history.units) {
+    rows.stays.push(...stays.map((stay) => ({ ...stay, unit })));
+    rows.legs.push(...legs.map((leg) => ({ ...leg, unit })));
+    if (lastSeen) rows.lastSeen.push({ ...lastSeen, unit });
+  }
+  return rows;
+}
+
+/** The canonical dump of what the ledger means, units named by what `historyOf` calls them. */
+export function dumpOf(ledger: Ledger, configuration: Configuration): string[] {
+  return canonicalDump(
+    new Network(configuration),
+    rowsOf(historyOf(ledger, configuration)),
+    String,
+  );
+}
