@@ -169,7 +169,9 @@ export type WatchedUnit = z.infer<typeof watchedUnit>;
 
 export const watchPreviewAnswer = dataOf(
   z.object({
-    covers: z.number().meta({ description: 'Equipment in scope that the person may see now' }),
+    covers: z
+      .number()
+      .meta({ description: 'In scope and in sight; of a dwell watch: standing there now' }),
     wouldRaise: z.number(),
     first: z.array(watchedUnit).meta({ description: 'The longest first, at most ten' }),
   }),

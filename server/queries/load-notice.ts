@@ -64,7 +64,11 @@ export async function loadNotice(
     where: { id: watchId, endedAt: null },
   });
   if (!watch) return null;
-  const { from, raises, lasts, siteId, since, atLeast } = watchedUnits(watch, owner, now);
+  const { fromLasting, ofAlert, raises, lasts, siteId, since, atLeast } = watchedUnits(
+    watch,
+    owner,
+    now,
+  );
   const inSight = alertsInSight(recipient);
   const [[counts], rows] = await Promise.all([
     ask<CountRow>(
@@ -77,15 +81,15 @@ export async function loadNotice(
             CAST(SUM(is_open AND lasts AND NOT in_sight) AS INT) AS out_of_sight
           FROM (
             SELECT a.state, a.raised_at, a.state = 'open' AS is_open, ${inSight} AS in_sight,
-              COALESCE(${lasts}, 0) AS lasts, COALESCE(${raises}, 0) AS raises
-            FROM alerts a LEFT JOIN (${from}) ON ls.unit_id = a.unit_id
+              ls.unit_id IS NOT NULL AS lasts, COALESCE(${raises}, 0) AS raises
+            FROM alerts a LEFT JOIN (${fromLasting}) ON ${ofAlert} AND ${lasts}
             WHERE a.notice_id = ${noticeId}
           ) verdict`,
     ),
     ask<LineRow>(
       db,
       sql`SELECT a.unit_id, u.kind, p.name AS site_name, ${since} AS since_at, ${atLeast} AS at_least
-          FROM alerts a JOIN (${from}) ON ls.unit_id = a.unit_id
+          FROM alerts a JOIN (${fromLasting}) ON ${ofAlert}
             LEFT JOIN sites p ON p.id = ${siteId}
           WHERE a.notice_id = ${noticeId} AND a.state = 'open' AND ${inSight} AND ${raises}
           ORDER BY since_at, a.id LIMIT ${MOST_LINES}`,

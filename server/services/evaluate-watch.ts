@@ -56,7 +56,7 @@ export function evaluateWatch(
     if (!row) return { raised: 0, cleared: 0, corrected: 0 };
     const rule = ruleOf(row);
     const units = watchedUnits(rule, actor, now);
-    const lasting = await findLasting(connection, watchId, rule, units);
+    const lasting = await findLasting(connection, watchId, rule.kind, units, now);
     const cleared = await clear(connection, lasting, rule.kind, now);
     const corrected = await correct(connection, lasting, units);
     const noticeId = uuid();
@@ -87,24 +87,23 @@ function parsed<T>(value: T | string): T {
 function findLasting(
   connection: PoolConnection,
   watchId: number,
-  rule: WatchRule,
-  units: WatchedUnits,
+  kind: WatchKind,
+  { fromLasting, ofAlert, lasts, since, siteId, atLeast }: WatchedUnits,
+  now: Date,
 ): Promise<LastingRow[]> {
-  const { from, lasts, since, siteId, atLeast } = units;
-  const samePlace = rule.kind === 'dwell' ? sql`${siteId} = a.site_id` : sql`TRUE`;
   const sign =
-    rule.kind === 'quiet'
+    kind === 'quiet'
       ? sql`EXISTS (SELECT 1 FROM last_seen n WHERE n.unit_id = a.unit_id AND n.at > a.since_at)`
       : sql`EXISTS (SELECT 1 FROM stays n WHERE n.unit_id = a.unit_id AND n.site_id = a.site_id
-              AND n.departed_at IS NULL AND n.first_seen_at <= a.raised_at)`;
+              AND (n.departed_at IS NULL OR n.departure_final_at > ${now})
+              AND n.first_seen_at <= a.raised_at)`;
   return run<LastingRow[]>(
     connection,
     sql`SELECT * FROM (
           SELECT a.id, ls.unit_id IS NOT NULL AS lasts, ${sign} AS sign,
             COALESCE(NOT (${siteId} <=> a.site_id AND ${since} = a.since_at
               AND (${atLeast}) = a.at_least), 0) AS differs
-          FROM alerts a LEFT JOIN (${from})
-            ON ls.unit_id = a.unit_id AND ${lasts} AND ${since} <= a.raised_at AND ${samePlace}
+          FROM alerts a LEFT JOIN (${fromLasting}) ON ${ofAlert} AND ${lasts}
           WHERE a.watch_id = ${watchId} AND a.state IN ('open', 'acknowledged')
         ) verdict WHERE lasts = 0 OR differs = 1`,
   );
@@ -138,13 +137,13 @@ async function clear(
 async function correct(
   connection: PoolConnection,
   lasting: LastingRow[],
-  { from, siteId, since, atLeast }: WatchedUnits,
+  { fromLasting, ofAlert, lasts, siteId, since, atLeast }: WatchedUnits,
 ): Promise<number> {
   const ids = lasting.filter((row) => row.lasts === 1).map((row) => row.id);
   if (ids.length === 0) return 0;
   await run(
     connection,
-    sql`UPDATE alerts a JOIN (${from}) ON ls.unit_id = a.unit_id
+    sql`UPDATE alerts a JOIN (${fromLasting}) ON ${ofAlert} AND ${lasts}
         SET a.site_id = ${siteId}, a.since_at = ${since}, a.at_least = ${atLeast}
         WHERE a.id IN (${ids})`,
   );

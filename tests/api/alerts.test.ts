@@ -227,6 +227,29 @@ describe('a dwell watch', () => {
     expect(await alertsNow()).toMatchObject([{ state: 'cleared', clearedBecause: 'left' }]);
   });
 
+  test('lasts while a crossing into the next yard may still be struck', async () => {
+    const { context, clock, organisation, site, other, dispatcher, hoursAgo } = await yardScene();
+    const unit = await car(1, organisation);
+    const arrivedAt = hoursAgo(100);
+    const gone = { at: clock.now(), finalAt: new Date(clock.now().getTime() + HOUR), arrivedAt };
+    await placeUnit(db, unit, { state: 'onHand', site, at: arrivedAt, arrivedAt });
+    await buildWatch(db, dispatcher, { kind: 'dwell' });
+    await evaluateWatches(context);
+    await placeUnit(db, unit, { state: 'left', site, ...gone });
+    const { LastSeen, Stay } = modelsOf(db.sequelize);
+    const [left] = await Stay.findAll({ where: { unitId: unit.id }, raw: true });
+    await placeUnit(db, unit, {
+      ...{ state: 'onHand', site: other, at: gone.at, arrivedAt: gone.at },
+      arrivalFinalAt: gone.finalAt,
+    });
+    if (left) await Stay.create({ ...left });
+    expect(await LastSeen.findByPk(unit.id)).toMatchObject({ staySiteId: other.id });
+    expect(await evaluateWatches(context)).toEqual({ raised: 0, cleared: 0 });
+    clock.set(gone.finalAt);
+    expect(await evaluateWatches(context)).toEqual({ raised: 0, cleared: 1 });
+    expect(await alertsNow()).toMatchObject([{ clearedBecause: 'left' }]);
+  });
+
   test('does not raise on an arrival that may still be struck, nor on a provisional departure', async () => {
     const { context, clock, organisation, site, dispatcher, hoursAgo } = await yardScene();
     const arrivedAt = hoursAgo(5);
