@@ -11,6 +11,7 @@ import { takeWork } from './take-work.js';
 
 const LEASE = 'projector';
 const RENEW_MS = 10_000;
+/** Reads a portion holds at most, about. */
 const MOST_READS = 20_000;
 const MOST_UNITS = 4_000;
 const IDLE_MS = 100;
@@ -33,7 +34,10 @@ export class Projector {
   private loop: Promise<void> | null = null;
   private running = false;
 
-  constructor(private readonly context: Pick<Context, 'db' | 'logger' | 'liveEvents' | 'clock'>) {}
+  constructor(
+    private readonly context: Pick<Context, 'db' | 'logger' | 'liveEvents' | 'clock'>,
+    private readonly mostReads: number,
+  ) {}
 
   /** Folds one portion of the queue, then units that it or an earlier portion left dirty. */
   async runOnce(): Promise<Portion> {
@@ -118,7 +122,7 @@ export class Projector {
 
   private async foldQueue(lease: Lease): Promise<number> {
     const { db } = this.context;
-    const work = await takeWork(db.pool, MOST_READS);
+    const work = await takeWork(db.pool, this.mostReads);
     if (!work) return 0;
     const loaded = await this.network();
     const usable = await resolveReads(db, loaded, work.reads);
@@ -146,9 +150,10 @@ export class Projector {
   }
 }
 
-/** A projector over the context's database. */
+/** A projector over the context's database; a portion holds about `mostReads` reads. */
 export function createProjector(
   context: Pick<Context, 'db' | 'logger' | 'liveEvents' | 'clock'>,
+  { mostReads = MOST_READS }: { mostReads?: number } = {},
 ): Projector {
-  return new Projector(context);
+  return new Projector(context, mostReads);
 }
