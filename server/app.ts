@@ -32,12 +32,15 @@ export function createApp(context: Context, parts: AppParts = {}): Express {
   const lag = parts.projectorLagMs ?? (() => Promise.resolve(0));
   const client =
     parts.clientDirectory === undefined ? findClientDirectory() : parts.clientDirectory;
+  const isHttps = env.publicUrl.startsWith('https:');
   const app = express();
   app.disable('x-powered-by');
+  // We speak no TLS ourselves: published as https, a proxy beside us knows who asks.
+  app.set('trust proxy', isHttps ? 'loopback, uniquelocal' : false);
   app.set('query parser', 'simple');
 
   app.use(requestLog(logger));
-  app.use(securityHeaders({ https: env.publicUrl.startsWith('https:') }));
+  app.use(securityHeaders({ https: isHttps }));
   app.use(metricsRoutes(context, lag));
   app.use('/api', noStore);
   app.use('/api', healthRoutes(context, lag));

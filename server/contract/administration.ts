@@ -76,7 +76,7 @@ export const siteInput = z
     longitude,
     timeZone: timeZoneSchema,
     returnHours: z.number().min(0).max(1_000).optional(),
-    dwellLimitHours: z.number().positive('must be more than 0').max(20_000).optional(),
+    dwellLimitHours: z.number().min(0.01).max(20_000).optional(),
   })
   .meta({ id: 'SiteInput' });
 export type SiteInput = z.output<typeof siteInput>;

@@ -9,7 +9,7 @@ import { requireAdministrator } from '../middleware/require-role.js';
 import { actorOf, requireUser } from '../middleware/require-user.js';
 import { batchOf, validateBatch } from '../middleware/validate-batch.js';
 import { validate, validated } from '../middleware/validate.js';
-import { administrationPolicy, changes } from '../policies/administration.js';
+import { administrationPolicy, changes } from '../policies/administration-policy.js';
 import { authorize, permissions } from '../policies/policy.js';
 import { presentOrganisation } from '../presenters/administration.js';
 import { findOrganisations, listOrganisations } from '../queries/list-organisations.js';

@@ -14,7 +14,7 @@ import { requireAdministrator } from '../middleware/require-role.js';
 import { actorOf, requireUser } from '../middleware/require-user.js';
 import { batchOf, validateBatch } from '../middleware/validate-batch.js';
 import { validate, validated } from '../middleware/validate.js';
-import { changes, readPointPolicy } from '../policies/administration.js';
+import { changes, readPointPolicy } from '../policies/administration-policy.js';
 import { authorize, permissions } from '../policies/policy.js';
 import { presentReadPoint } from '../presenters/administration.js';
 import { findReadPoint, findReadPoints, listReadPoints } from '../queries/list-read-points.js';

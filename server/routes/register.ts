@@ -15,7 +15,7 @@ import { requireAdministrator } from '../middleware/require-role.js';
 import { actorOf, requireUser } from '../middleware/require-user.js';
 import { batchOf, validateBatch } from '../middleware/validate-batch.js';
 import { validate, validated } from '../middleware/validate.js';
-import { administrationPolicy, changes } from '../policies/administration.js';
+import { administrationPolicy, changes } from '../policies/administration-policy.js';
 import { authorize, permissions } from '../policies/policy.js';
 import { presentRegistered } from '../presenters/administration.js';
 import { refreshVisibleUnits } from '../projections/refresh-visible-units.js';

@@ -9,7 +9,7 @@ import { administrationBody } from '../middleware/administration-body.js';
 import { requireAdministrator } from '../middleware/require-role.js';
 import { actorOf, requireUser } from '../middleware/require-user.js';
 import { validate, validated } from '../middleware/validate.js';
-import { administrationPolicy, changes } from '../policies/administration.js';
+import { administrationPolicy, changes } from '../policies/administration-policy.js';
 import { authorize, permissions } from '../policies/policy.js';
 import { presentRouteEdge, presentRouteNode } from '../presenters/administration.js';
 import {

@@ -1,3 +1,4 @@
+import { Op } from 'sequelize';
 import { v4 as uuid } from 'uuid';
 import { unauthenticated } from '../errors.js';
 import type { Context } from '../lib/context.js';
@@ -7,7 +8,7 @@ import { signSessionToken } from '../lib/session-token.js';
 import { modelsOf } from '../models/index.js';
 
 /**
- * Signs a person in: a session row, and the token that points at it. 401 in the same words,
+ * Signs a person in: a session row, and the token that points at it; expired rows go. 401 in the same words,
  * after the same work, whether address or password is wrong.
  */
 export async function startSession(
@@ -23,6 +24,7 @@ export async function startSession(
     throw unauthenticated('Address or password is not right.');
   }
   const createdAt = clock.now();
+  await Session.destroy({ where: { personId: person.id, expiresAt: { [Op.lte]: createdAt } } });
   const expiresAt = new Date(createdAt.getTime() + SESSION_HOURS * 3_600_000);
   const session = { id: uuid(), personId: person.id, createdAt, expiresAt, endedAt: null };
   await Session.create(session);

@@ -100,9 +100,9 @@ describe('a network loaded by script', () => {
     const many = Array.from({ length: 500 }, (_, index) => ({ ...alder, code: `S${index}` }));
     const count = async (sent: object) => {
       let queries = 0;
-      db.sequelize.options.logging = () => (queries += 1);
+      db.sequelize.addHook('beforeQuery', 'count', () => void (queries += 1));
       await admin.post('/api/sites').send(sent).expect(200);
-      db.sequelize.options.logging = false;
+      db.sequelize.removeHook('beforeQuery', 'count');
       return queries;
     };
     expect(await count(many)).toBe(await count({ ...alder, code: 'T1' }));
@@ -149,6 +149,15 @@ describe('a change', () => {
       .expect(200);
     expect(body.data.edges).toMatchObject([{ from: 'ALDER', to: 'CAIRN', railMetres: 200 }]);
     expect(await models.RouteEdge.count()).toBe(1);
+  });
+
+  test('keeps names in any script', async () => {
+    const name = 'Ærø · Łódź · 鉄道 · 🚃';
+    const { body } = await admin
+      .post('/api/sites')
+      .send({ ...alder, name })
+      .expect(200);
+    expect(body.data.name).toBe(name);
   });
 
   test('puts a spot read point into its own site', async () => {

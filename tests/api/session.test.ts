@@ -144,6 +144,24 @@ describe('signing in', () => {
     expect(statuses).toEqual([401, 401, 401, 429, 429, 429, 429, 429, 429, 429]);
   });
 
+  test('counts by who asks, as the proxy beside a published portal tells it', async () => {
+    const limits = { signIn: { perAddress: 1, perSource: 100, seconds: 60 } };
+    const { email } = await buildPerson(db);
+    const statusFrom = async (app: ReturnType<typeof createApp>, source: string) => {
+      const sent = { email, password: 'wrong' };
+      const tried = request(app).post('/api/session').set('X-Forwarded-For', source).send(sent);
+      return (await tried).status;
+    };
+    const env = { publicUrl: 'https://portal.example' };
+    const published = createApp(buildContext(db, { env }), { clientDirectory: null, limits });
+    expect(await statusFrom(published, '203.0.113.7')).toBe(401);
+    expect(await statusFrom(published, '203.0.113.7')).toBe(429);
+    expect(await statusFrom(published, '203.0.113.8')).toBe(401);
+    const bare = createApp(buildContext(db), { clientDirectory: null, limits });
+    expect(await statusFrom(bare, '203.0.113.7')).toBe(401);
+    expect(await statusFrom(bare, '203.0.113.8')).toBe(429);
+  });
+
   test('gives failures back after a success', async () => {
     const person = await buildPerson(db);
     const app = createApp(buildContext(db), {
@@ -183,6 +201,15 @@ describe('a session', () => {
     await agent.get('/api/session').expect(200);
     context.clock.advance(1_000);
     await agent.get('/api/session').expect(401);
+  });
+
+  test('that has expired leaves no row behind at the next sign-in', async () => {
+    const { app, context } = start();
+    const person = await buildPerson(db);
+    await signIn(app, person);
+    context.clock.advance(12 * 3_600_000);
+    await signIn(app, person);
+    expect(await modelsOf(db.sequelize).Session.count()).toBe(1);
   });
 
   test('is gone with its person, and follows a change of role at once', async () => {
