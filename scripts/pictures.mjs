@@ -71,6 +71,9 @@ async function takeBoth(screen, data, { width, height }, storageState) {
     await page.getByRole('heading', { level: 1 }).first().waitFor();
     await page.waitForLoadState('networkidle', { timeout: 4000 }).catch(() => undefined);
     await screen.act?.(page);
+    for (const waiting of await page.getByText(/^(Fetching|Reckoning)/).all()) {
+      await waiting.waitFor({ state: 'detached' });
+    }
     const file = `${screen.name}-${data}-${width}-${colorScheme}.png`;
     await page.screenshot({ path: path.join(directory, file), fullPage: screen.isWhole ?? false });
     console.log(file);

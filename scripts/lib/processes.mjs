@@ -100,7 +100,12 @@ export function tryLock(file) {
   return null;
 }
 
-/** Like `tryLock`, but waits for the holder; `onWait` is called once when there is one. */
+/**
+ * Like `tryLock`, but waits for the holder; `onWait` is called once, with its id, when there is one.
+ *
+ * @param {string} file
+ * @param {{ timeoutMs?: number, onWait?: (pid: number) => void }} [options]
+ */
 export async function lock(file, { timeoutMs = 600_000, onWait = () => {} } = {}) {
   let release = tryLock(file);
   if (release === null) onWait(Number.parseInt(readHolder(file) ?? '0', 10));

@@ -26,6 +26,9 @@ const settings = z.object({
   FISHPLATE_RETAIN_MONTHS: optional(z.coerce.number().int().min(1).max(120).default(13)),
 });
 
+/** The variables that are read. */
+export const settingNames = Object.keys(settings.shape);
+
 /** The settings of one server process. */
 export interface Env {
   port: number;
