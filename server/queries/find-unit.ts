@@ -15,7 +15,9 @@ export interface FoundUnit {
  */
 export async function findUnit(db: Database, text: string, now: Date): Promise<FoundUnit | null> {
   const parsed = parseUnit(text);
-  const compacts = [text, ...(parsed.kind === 'unit' ? [parsed.identity.compact] : [])];
+  const written = /^[A-Z0-9]+$/.test(text) ? [text] : [];
+  const compacts = [...written, ...(parsed.kind === 'unit' ? [parsed.identity.compact] : [])];
+  if (compacts.length === 0) return null;
   const rows = await ask<IdentityRow>(
     db,
     sql`SELECT id, unit_id, compact, valid_from, valid_to FROM identities

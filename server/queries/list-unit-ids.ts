@@ -35,7 +35,7 @@ export interface UnitListPage {
 /** `at`: when the first page was asked for; `key` is an instant in ms where the sort goes by time. */
 const cursorSchema = z.object({
   sort: z.enum(equipmentSorts),
-  key: z.union([z.number(), z.string().max(40)]),
+  key: z.union([z.number(), z.string().regex(/^[ -~]{0,40}$/)]),
   unit: z.int().nonnegative(),
   at: z.number().min(0).max(8.64e15),
   range: z.enum(attentionRanges).optional(),

@@ -51,11 +51,12 @@ async function lookUpWhole(db: Database, actor: Actor, text: string): Promise<nu
 export async function lookUpSites(db: Database, actor: Actor, text: string): Promise<FoundSite[]> {
   const sources = unitSourcesOf(actor);
   const pattern = likeText(text.trim());
+  const code = text.trim().toUpperCase();
+  const byCode = /^[A-Z0-9]{1,16}$/.test(code) ? sql`code LIKE ${`${code}%`}` : sql`FALSE`;
   const rows = await ask<FoundSite & { id: number }>(
     db,
-    sql`SELECT id, code, name, kind FROM sites
-      WHERE code LIKE ${`${pattern.toUpperCase()}%`} OR name LIKE ${`%${pattern}%`}
-      ORDER BY code = ${text.trim().toUpperCase()} DESC, name LIKE ${`${pattern}%`} DESC, name`,
+    sql`SELECT id, code, name, kind FROM sites WHERE ${byCode} OR name LIKE ${`%${pattern}%`}
+      ORDER BY ${byCode} DESC, name LIKE ${`${pattern}%`} DESC, CHAR_LENGTH(code), name`,
   );
   return rows.filter((site) => seesSite(sources, site.id)).slice(0, MOST_SITES);
 }

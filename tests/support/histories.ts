@@ -155,3 +155,30 @@ export async function buildLeg(
     ],
   );
 }
+
+/** A passage of one read by a text tag, in a pass of its own that began with it. */
+export async function buildPassage(
+  db: Database,
+  unit: Unit,
+  values: { readPoint: ReadPoint; at: Date; direction?: string; antenna?: number },
+): Promise<void> {
+  const { readPoint, at, direction = 'unknown', antenna = 1 } = values;
+  await db.pool.query(
+    `INSERT INTO passages (read_point_id, first_at, unit_id, first_antenna, first_tag, last_at,
+       pass_started_at, pass_ordinal, direction, direction_basis, role, read_count, evidence)
+     VALUES (?, ?, ?, ?, ?, ?, ?, 0, ?, ?, ?, 1, ?)`,
+    [
+      readPoint.id,
+      at,
+      unit.id,
+      antenna,
+      unit.unitKey,
+      at,
+      at,
+      direction,
+      direction === 'unknown' ? null : 'antennas',
+      direction === 'unknown' ? 'presence' : 'crossing',
+      JSON.stringify([{ r: [[at.getTime(), antenna, unit.unitKey]] }]),
+    ],
+  );
+}
