@@ -35,6 +35,13 @@ type Sites = Map<string, { id: number; code: string }>;
  * all up. Run again it finds duplicates only. Returns how many reads were new.
  */
 export async function seedTraffic(context: Context, options: SeedOptions): Promise<number> {
+  const stored = await feedTraffic(context, options);
+  await takeUp(context, stored, options.onProgress ?? (() => undefined));
+  return stored;
+}
+
+/** The first half of `seedTraffic`: the reads are in the queue, and nothing is made of them yet. */
+export async function feedTraffic(context: Context, options: SeedOptions): Promise<number> {
   const { until, days = 45, onProgress = () => undefined } = options;
   const sites = await demoSites(context.db);
   const to = until.getTime();
@@ -48,7 +55,6 @@ export async function seedTraffic(context: Context, options: SeedOptions): Promi
     stored += await takeIn(context, sites, traffic.between(at, end));
     onProgress({ done: Math.ceil((end - from) / HOUR), total, unit: 'hours of traffic' });
   }
-  await takeUp(context, stored, onProgress);
   return stored;
 }
 
