@@ -51,7 +51,7 @@ export function createApp(context: Context, parts: AppParts = {}): Express {
   // Larger bodies, read only after the sign-in.
   for (const router of administrationRouters(context)) app.use('/api', router);
 
-  app.use(jsonBody('100kb'));
+  app.use(jsonBody(100_000));
   app.use('/api', sessionRoutes(context, parts.limits?.signIn));
   for (const router of portalRouters(context, lag)) app.use('/api', router);
   app.use('/api', openapiRoutes(context, allOperations));

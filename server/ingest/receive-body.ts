@@ -3,12 +3,17 @@ import { INGEST_BOUNDS } from '../contract/ingest.js';
 import { invalid, timedOut, tooLarge, type Problem } from '../errors.js';
 
 /**
- * The whole body. Throws 413 as soon as it is too large, and 408 when nothing of it came for
- * `idleMs`; what is still on its way then is thrown away.
+ * The whole body. Throws 413 as soon as it is over `mostBytes`, and 408 when nothing of it came
+ * for `idleMs`; what is still on its way then is thrown away.
  */
-export function receiveBody(request: IncomingMessage, idleMs: number): Promise<Buffer> {
-  const tooLargeProblem = () => tooLarge('A request holds at most 2 MB.');
-  if (Number(request.headers['content-length'] ?? 0) > INGEST_BOUNDS.bytes) {
+export function receiveBody(
+  request: IncomingMessage,
+  idleMs: number,
+  mostBytes: number = INGEST_BOUNDS.bytes,
+): Promise<Buffer> {
+  const most = mostBytes < 1e6 ? `${mostBytes / 1e3} kB` : `${mostBytes / 1e6} MB`;
+  const tooLargeProblem = () => tooLarge(`A request holds at most ${most} here.`);
+  if (Number(request.headers['content-length'] ?? 0) > mostBytes) {
     request.resume();
     return Promise.reject(tooLargeProblem());
   }
@@ -29,7 +34,7 @@ export function receiveBody(request: IncomingMessage, idleMs: number): Promise<B
       timer.refresh();
       chunks.push(chunk);
       bytes += chunk.length;
-      if (bytes > INGEST_BOUNDS.bytes) refuse(tooLargeProblem());
+      if (bytes > mostBytes) refuse(tooLargeProblem());
     };
     const onEnd = () => {
       stop();

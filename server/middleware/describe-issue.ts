@@ -12,9 +12,9 @@ const nouns: Record<string, string> = {
 
 /** Says in words what is wrong where a schema has no words of its own. */
 export function describeIssue(issue: z.core.$ZodRawIssue): string | undefined {
+  if (issue.input === undefined && issue.code !== 'custom') return 'is missing';
   switch (issue.code) {
     case 'invalid_type':
-      if (issue.input === undefined) return 'is missing';
       return `must be ${nouns[issue.expected] ?? issue.expected}`;
     case 'invalid_value':
       return `must be ${issue.values.length > 1 ? 'one of ' : ''}${issue.values.join(', ')}`;

@@ -6,16 +6,7 @@ import {
   UniqueConstraintError,
 } from 'sequelize';
 import type { Logger } from 'pino';
-import {
-  conflict,
-  invalid,
-  notFound,
-  Problem,
-  tooLarge,
-  unavailable,
-  unsupported,
-  timedOut,
-} from '../errors.js';
+import { conflict, invalid, notFound, Problem, unavailable } from '../errors.js';
 import { isDatabaseAway } from '../lib/database-away.js';
 
 /** Answers a path of the interface that no route has taken. */
@@ -62,7 +53,7 @@ function requestIdOf(request: Request): string {
 /** The problem for a thrown value; by class or code, never by message text. */
 export function problemFrom(error: unknown): Problem {
   if (error instanceof Problem) return error;
-  return problemOfDatabase(error) ?? problemOfParser(error) ?? unforeseen;
+  return problemOfDatabase(error) ?? problemOfRouter(error) ?? unforeseen;
 }
 
 const unforeseen = new Problem(
@@ -88,25 +79,11 @@ function problemOfDatabase(error: unknown): Problem | null {
   return null;
 }
 
-/** Faults of the JSON body parser and of the router carry a `type` or a `status` of 4xx. */
-function problemOfParser(error: unknown): Problem | null {
-  const { type, status } = (error ?? {}) as { type?: string; status?: number };
-  switch (type) {
-    case 'entity.too.large':
-      return tooLarge('The body is larger than this route takes.');
-    case 'entity.parse.failed':
-      return invalid('The body is not JSON.');
-    case 'encoding.unsupported':
-    case 'charset.unsupported':
-      return unsupported('Send it as UTF-8 JSON, plain or compressed by gzip.');
-    case 'request.aborted':
-      return timedOut('The request ended before its body did.');
-    default:
-  }
-  if (typeof status === 'number' && status >= 400 && status < 500) {
-    return status === 404
-      ? notFound('There is nothing at this address.')
-      : invalid('The request cannot be read.');
-  }
-  return null;
+/** The router and the file server throw errors with a `status` of 4xx for what they cannot read. */
+function problemOfRouter(error: unknown): Problem | null {
+  const { status } = (error ?? {}) as { status?: unknown };
+  if (typeof status !== 'number' || status < 400 || status >= 500) return null;
+  return status === 404
+    ? notFound('There is nothing at this address.')
+    : invalid('The request cannot be read.');
 }

@@ -305,8 +305,6 @@ describe('faults', () => {
       .send(`${'['.repeat(40)}${']'.repeat(40)}`)
       .expect(400);
     await admin.post(path).type('json; charset=utf-16').send('{}').expect(415);
-    const latin = Buffer.from('{"code":"\xe9"}', 'latin1');
-    await admin.post(path).type('json').send(latin).expect(400);
     await admin
       .post(path)
       .type('json')

@@ -1,11 +1,16 @@
+import { once } from 'node:events';
+import { connect, type AddressInfo } from 'node:net';
 import { Writable } from 'node:stream';
+import { gzipSync } from 'node:zlib';
+import express from 'express';
 import { pino } from 'pino';
 import request from 'supertest';
 import { afterAll, describe, expect, test } from 'vitest';
 import { createApp } from '../../server/app.js';
 import { openDatabase } from '../../server/lib/database.js';
 import { isDatabaseAway } from '../../server/lib/database-away.js';
-import { problemFrom } from '../../server/middleware/problem.js';
+import { jsonBody } from '../../server/middleware/json-body.js';
+import { problemFrom, problemHandler } from '../../server/middleware/problem.js';
 import { modelsOf } from '../../server/models/index.js';
 import { buildContext } from '../support/context.js';
 import { testDatabaseUrl, useTestDatabase } from '../support/database.js';
@@ -38,6 +43,55 @@ describe('a refusal', () => {
       instance: '/api/sites',
       requestId: headers['x-request-id'],
     });
+  });
+});
+
+describe('a body', () => {
+  const post = (text: string | Buffer, type = 'application/json') =>
+    request(createApp(buildContext(db), { clientDirectory: null }))
+      .post('/api/session')
+      .set('Content-Type', type)
+      .serialize((sent: unknown) => sent as string)
+      .send(text);
+
+  test.each([
+    ['not JSON', '{"email":', 400, 'The body is not JSON.'],
+    ['not UTF-8', Buffer.from('{"email":"\xe9"}', 'latin1'), 400, 'The body is not UTF-8.'],
+    ['nested without end', '['.repeat(5_000), 400, 'The body is nested more than 32 deep.'],
+    ['huge', `"${'x'.repeat(100_000)}"`, 413, 'A request holds at most 100 kB here.'],
+  ])('that is %s is refused', async (_what, text, status, detail) => {
+    const { body } = await post(text).expect(status);
+    expect(body.detail).toBe(detail);
+  });
+
+  test.each([
+    'text/plain',
+    'application/x-www-form-urlencoded',
+    'application/json; charset=utf-16',
+  ])('that comes as %s is refused', async (type) => {
+    const { body } = await post('{}', type).expect(415);
+    expect(body.title).toBe('Wrong media type');
+  });
+
+  test('that is compressed is refused, whatever it would grow to', async () => {
+    const sent = post(gzipSync('{}')).set('Content-Encoding', 'gzip');
+    await sent.expect(415);
+  });
+
+  test('that stops coming is answered', async () => {
+    const app = express();
+    app.use(jsonBody(1_000, 50));
+    app.use(problemHandler(pino({ level: 'silent' })));
+    const server = app.listen(0, '127.0.0.1');
+    await once(server, 'listening');
+    const socket = connect((server.address() as AddressInfo).port, '127.0.0.1');
+    const head = 'POST / HTTP/1.1\r\nHost: x\r\nContent-Type: application/json\r\n';
+    socket.write(`${head}Content-Length: 100\r\n\r\n{"email"`);
+    const [answer] = (await once(socket, 'data')) as [Buffer];
+    expect(answer.toString()).toMatch(/^HTTP\/1.1 408 /);
+    socket.destroy();
+    server.close();
+    await once(server, 'close');
   });
 });
 
