@@ -11,7 +11,7 @@ import { world } from '../../server/simulator/world.js';
 
 const HOUR = 3_600_000;
 const DAY = 24 * HOUR;
-const start = Date.UTC(2026, 4, 11);
+const start = Date.UTC(2026, 1, 9);
 const readsOf = (sent: Sent[]) => sent.filter((each) => each.kind === 'read');
 
 describe('the invented traffic', () => {
@@ -70,7 +70,7 @@ describe('the invented traffic', () => {
 });
 
 describe('45 days of it', () => {
-  const from = Date.UTC(2026, 2, 3, 11);
+  const from = Date.UTC(2026, 0, 27, 11);
   const sent = trafficBetween(from, from + 45 * DAY);
   const reads = readsOf(sent);
 

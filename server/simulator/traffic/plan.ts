@@ -66,10 +66,12 @@ export const turns: Turn[] = rows.map((row) => {
   return { id, carries, days, hour, sets, capacity, layoverHours, path, stops };
 });
 
-/** Hours of the UTC day at which a yard's own engine sorts cars over one of its leads. */
-export const sortings: { site: string; hours: number[] }[] = [
-  { site: 'ALDER', hours: [1, 13.5, 19] },
-  { site: 'CAIRN', hours: [8] },
-  { site: 'BITTERN', hours: [17] },
-  { site: 'FALLOW', hours: [22] },
+/** How often a day a site's own engine sorts cars over one of its leads. */
+export const sortings: { site: string; timesADay: number }[] = [
+  { site: 'ALDER', timesADay: 10 },
+  { site: 'BITTERN', timesADay: 5 },
+  { site: 'FALLOW', timesADay: 4 },
+  { site: 'GREBE', timesADay: 4 },
+  { site: 'STONECRP', timesADay: 4 },
+  { site: 'CAIRN', timesADay: 3 },
 ];

@@ -28,7 +28,7 @@ const FROM_END_M = 2.4;
 /** Half the length of track over which an antenna hears a tag. */
 const BEAM_M = 1.3;
 const JITTER_MS = 15;
-const READS_A_SECOND = 2;
+const READS_A_SECOND = 1.8;
 /** Share of passages of a living tag that an antenna misses. */
 const MISSED = 0.006;
 /** Share of reads whose tag came over the air with a wrong bit. */

@@ -1,4 +1,5 @@
 import { between, wholeBetween } from '../random.js';
+import { OUTSIDE } from '../world/read-points.js';
 import { inwardOf, leadsOf, opposite } from './network.js';
 import { EPOCH, type Operations } from './operations.js';
 import { turnedRound, type Vehicle } from './pass.js';
@@ -6,41 +7,57 @@ import type { sortings } from './plan.js';
 import { HOUR } from './stock.js';
 
 const DAY = 24 * HOUR;
+const MINUTE = 60_000;
 const engineOnly = 1;
 
 /** Notes the sorting of a yard: each day cars are pulled out over a lead and shoved back. */
-export function noteSortings(operations: Operations, { site, hours }: (typeof sortings)[0]): void {
+export function noteSortings(
+  operations: Operations,
+  { site, timesADay }: (typeof sortings)[0],
+): void {
   const [engine] = operations.assign('power', engineOnly);
   if (!engine) return;
-  for (const hour of hours) {
+  for (let time = 0; time < timesADay; time += 1) {
     const daily = (at: number) => {
       operations.agenda.note(at + DAY, daily);
-      const start = operations.later(at, 0, 1);
+      const start = operations.later(at, 0, 20 / timesADay);
       operations.agenda.note(start, (now) =>
         sortOver(operations, site, { unit: engine, bLeads: false, loads: [] }, now),
       );
     };
-    operations.agenda.note(EPOCH + hour * HOUR, daily);
+    operations.agenda.note(EPOCH + (time * DAY) / timesADay, daily);
   }
 }
 
 function sortOver(operations: Operations, site: string, engine: Vehicle, at: number): void {
-  const { random, stock } = operations;
-  const leads = leadsOf(site).filter((lead) => !lead.toward.includes('OUTSIDE'));
+  const { random } = operations;
+  const leads = leadsOf(site).filter((lead) => !lead.toward.includes(OUTSIDE));
   const lead = leads[Math.floor(random() * leads.length)];
+  const cars = cutToSort(operations, site, at);
+  if (!lead || cars.length < 2) return;
+  const vehicles = [engine, ...cars];
+  const inward = inwardOf(lead);
+  const awayMs = between(random, 5, 30) * MINUTE;
+  const wish = { point: lead, vehicles, speedKmh: between(random, 6, 14) };
+  const out = { ...wish, direction: opposite(inward), keepMs: awayMs + 10 * MINUTE };
+  operations.pass(at, { ...out, purpose: 'sortOut' }, (end) => {
+    operations.agenda.note(Math.round(end + awayMs), (now) => {
+      operations.release(lead, now);
+      const back = { ...wish, vehicles: turnedRound(vehicles), direction: inward };
+      operations.pass(now, { ...back, purpose: 'sortBack' }, () => undefined);
+    });
+  });
+}
+
+/** A few cars that have stood for an hour and stay for three. */
+function cutToSort({ random, stock }: Operations, site: string, at: number): Vehicle[] {
   const standing = stock
     .at(site)
-    .filter(({ since, readyAt }) => since < at - HOUR && readyAt > at + 3 * HOUR)
-    .slice(0, wholeBetween(random, 3, 9));
-  if (!lead || standing.length < 3) return;
-  const cars = standing.map(({ unit }) => ({ unit, bLeads: random() < 0.5, loads: [] }));
-  const vehicles = [engine, ...cars];
-  const outward = opposite(inwardOf(lead));
-  const wish = { point: lead, vehicles, speedKmh: between(random, 6, 14), keepMs: 2 * HOUR };
-  operations.pass(at, { ...wish, direction: outward, purpose: 'sortOut' }, (end) => {
-    operations.release(lead, end);
-    const back = { ...wish, vehicles: turnedRound(vehicles), keepMs: 0 };
-    const start = operations.later(end, 0.08, 0.5);
-    operations.pass(start, { ...back, direction: inwardOf(lead), purpose: 'sortBack' }, () => {});
-  });
+    .filter(({ unit }) => unit.kind === 'car')
+    .filter(({ since, readyAt }) => since < at - HOUR && readyAt > at + 3 * HOUR);
+  const count = wholeBetween(random, 2, 4);
+  const first = Math.floor(random() * Math.max(1, standing.length - count));
+  return standing
+    .slice(first, first + count)
+    .map(({ unit }) => ({ unit, bLeads: random() < 0.5, loads: [] }));
 }

@@ -53,7 +53,7 @@ const rows: Row[] = [
   ['QWKR', 187_300, 80, 'car', 'gondola', 'QUERNWICK', 174, 4, 'freight'],
   ['ZQXU', 305_400, 200, 'container', 'box, 40 foot', 'QUILLBOX', 122, 1, 'box'],
   ['ZQMU', 411_800, 200, 'container', 'box, 40 foot', 'QUILLBOX', 122, 1, 'box', 40],
-  ['QWKR', 2_001, 40, 'locomotive', 'road locomotive', 'QUERNWICK', 225, 6, 'power'],
+  ['QWKR', 2_001, 42, 'locomotive', 'road locomotive', 'QUERNWICK', 225, 6, 'power'],
   ['QWKE', 9_001, 18, 'endOfTrain', 'end-of-train device', 'QUERNWICK', 4, 1, 'rear'],
   ['QDRX', 73_000, 340, 'car', 'covered hopper', null, 180, 4, 'stranger'],
   ['QFNX', 28_400, 260, 'car', 'tank car', null, 168, 4, 'stranger'],
