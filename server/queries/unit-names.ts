@@ -1,4 +1,6 @@
 import type { Database } from '../lib/database.js';
+import { loadIdentities } from './load-equipment.js';
+import { ask, sql } from './sql.js';
 
 /** What a unit is called now. */
 export interface UnitName {
@@ -7,29 +9,18 @@ export interface UnitName {
   display: string;
 }
 
-interface NameRow {
-  unit_id: number;
-  compact: string;
-  display: string;
-}
-
 /** The identity each unit carries at `now`, else its last; by unit id, in one query. */
 export async function unitNames(
   db: Database,
-  unitIds: number[],
+  unitIds: readonly number[],
   now: Date,
 ): Promise<Map<number, UnitName>> {
-  if (unitIds.length === 0) return new Map();
-  const rows = await db.pool.query<NameRow[]>(
-    `SELECT unit_id, compact, display FROM identities WHERE unit_id IN (?)
-      ORDER BY unit_id,
-        (valid_from IS NULL OR valid_from <= ?) AND (valid_to IS NULL OR valid_to > ?),
-        valid_from`,
-    [[...new Set(unitIds)], now, now],
-  );
-  return new Map(
-    rows.map((row) => [row.unit_id, { unitId: row.compact, display: row.display }] as const),
-  );
+  const identities = await loadIdentities(db, [...new Set(unitIds)], now);
+  const names = new Map<number, UnitName>();
+  for (const [unitId, [present]] of identities) {
+    if (present) names.set(unitId, { unitId: present.compact, display: present.display });
+  }
+  return names;
 }
 
 interface HolderRow {
@@ -44,12 +35,12 @@ export async function unitsByIdentity(
   now: Date,
 ): Promise<Map<string, number>> {
   if (compacts.length === 0) return new Map();
-  const rows = await db.pool.query<HolderRow[]>(
-    `SELECT compact, unit_id FROM identities WHERE compact IN (?)
-      ORDER BY compact,
-        (valid_from IS NULL OR valid_from <= ?) AND (valid_to IS NULL OR valid_to > ?),
-        valid_from`,
-    [[...new Set(compacts)], now, now],
+  const rows = await ask<HolderRow>(
+    db,
+    sql`SELECT compact, unit_id FROM identities WHERE compact IN (${[...new Set(compacts)]})
+        ORDER BY compact,
+          (valid_from IS NULL OR valid_from <= ${now}) AND (valid_to IS NULL OR valid_to > ${now}),
+          valid_from`,
   );
   return new Map(rows.map((row) => [row.compact, row.unit_id] as const));
 }

@@ -426,6 +426,25 @@ describe('the list of alerts', () => {
     });
   });
 
+  test('gives every alert once over the pages, also those raised at one instant', async () => {
+    const { context, app, organisation, person, site, hoursAgo } = await scene();
+    for (let number = 1; number <= 5; number += 1) {
+      const unit = await car(number, organisation);
+      await placeUnit(db, unit, { state: 'enRoute', site, at: hoursAgo(100) });
+    }
+    await buildWatch(db, person);
+    await evaluateWatches(context);
+    const agent = await signIn(app, person);
+    const seen: string[] = [];
+    let cursor = '';
+    do {
+      const { body } = await agent.get(`/api/alerts?limit=2${cursor}`).expect(200);
+      seen.push(...body.data.map((alert: { unitId: string }) => alert.unitId));
+      cursor = body.next ? `&cursor=${body.next}` : '';
+    } while (cursor);
+    expect(seen).toEqual(['QTKX5', 'QTKX4', 'QTKX3', 'QTKX2', 'QTKX1']);
+  });
+
   test('narrows to one watch and one car', async () => {
     const { agent, watch } = await listScene();
     const countOf = async (query: string) =>
