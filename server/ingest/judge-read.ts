@@ -26,23 +26,22 @@ const MOST_RSSI = 9_999;
 
 /** Takes a read as it came apart into its values, or says the first thing that is wrong with it. */
 export function judgeRead(raw: unknown, index: number): SoundRead | RejectedRead {
-  const reject = (code: RejectCode, detail: string): RejectedRead => ({ index, code, detail });
-  if (raw === NOT_JSON) return reject('not-json', 'This line is not JSON.');
+  if (raw === NOT_JSON) return reject(index, 'not-json', 'This line is not JSON.');
   if (typeof raw !== 'object' || raw === null || Array.isArray(raw)) {
-    return reject('not-an-object', 'A read is an object with antenna, tag and readAt.');
+    return reject(index, 'not-an-object', 'A read is an object with antenna, tag and readAt.');
   }
   const { antenna, tag, readAt, rssi, count } = raw as Record<string, unknown>;
-  if (antenna == null) return reject('missing-antenna', 'antenna is missing.');
+  if (antenna == null) return reject(index, 'missing-antenna', 'antenna is missing.');
   const trimmed = typeof tag === 'string' ? tag.trim() : tag;
-  if (trimmed == null || trimmed === '') return reject('missing-tag', 'tag is missing.');
+  if (trimmed == null || trimmed === '') return reject(index, 'missing-tag', 'tag is missing.');
   if (typeof trimmed === 'string' && isTooLong(trimmed)) {
-    return reject('tag-too-long', `tag has more than ${INGEST_BOUNDS.tagBytes} bytes.`);
+    return reject(index, 'tag-too-long', `tag has more than ${INGEST_BOUNDS.tagBytes} bytes.`);
   }
-  if (readAt == null) return reject('missing-time', 'readAt is missing.');
+  if (readAt == null) return reject(index, 'missing-time', 'readAt is missing.');
   const readAtMs = typeof readAt === 'string' ? parseInstant(readAt) : null;
-  if (readAtMs === null) return reject('invalid-time', INVALID_TIME);
+  if (readAtMs === null) return reject(index, 'invalid-time', INVALID_TIME);
   const fault = faultOfValues(antenna, trimmed, rssi, count);
-  if (fault !== null) return reject('bad-value', fault);
+  if (fault !== null) return reject(index, 'bad-value', fault);
   return {
     index,
     antenna: antenna as number,
@@ -51,6 +50,10 @@ export function judgeRead(raw: unknown, index: number): SoundRead | RejectedRead
     rssi: (rssi ?? null) as number | null,
     count: (count ?? null) as number | null,
   };
+}
+
+function reject(index: number, code: RejectCode, detail: string): RejectedRead {
+  return { index, code, detail };
 }
 
 const MOST_RESOLVED = 20_000;

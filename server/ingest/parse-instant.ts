@@ -9,15 +9,22 @@ const END = Date.UTC(2101, 0, 1);
  */
 export function parseInstant(text: string): number | null {
   if (!RFC3339.test(text)) return null;
-  const part = (from: number, to: number) => Number(text.slice(from, to));
-  const [year, month, day] = [part(0, 4), part(5, 7), part(8, 10)];
-  const [hour, minute, second] = [part(11, 13), part(14, 16), part(17, 19)];
+  const year = digits(text, 0, 4);
+  const month = digits(text, 5, 7);
+  const day = digits(text, 8, 10);
+  const hour = digits(text, 11, 13);
+  const minute = digits(text, 14, 16);
+  const second = digits(text, 17, 19);
   if (month < 1 || month > 12 || day < 1 || day > daysOf(year, month)) return null;
   if (hour > 23 || minute > 59 || second > 60) return null;
   const offsetMinutes = offsetOf(text);
   if (offsetMinutes === null) return null;
   const ms = Date.UTC(year, month - 1, day, hour, minute - offsetMinutes, second, fractionOf(text));
   return ms >= EARLIEST && ms < END ? ms : null;
+}
+
+function digits(text: string, from: number, to: number): number {
+  return Number(text.slice(from, to));
 }
 
 const DAYS = [31, 28, 31, 30, 31, 30, 31, 31, 30, 31, 30, 31];
@@ -29,8 +36,8 @@ function daysOf(year: number, month: number): number {
 
 /** Whole milliseconds of the fraction that may follow the seconds. */
 function fractionOf(text: string): number {
-  const digits = /^\.(\d{1,3})/.exec(text.slice(19, 23))?.[1] ?? '';
-  return Number(digits.padEnd(3, '0'));
+  const fraction = /^\.(\d{1,3})/.exec(text.slice(19, 23))?.[1] ?? '';
+  return Number(fraction.padEnd(3, '0'));
 }
 
 /** Minutes east of UTC; null where no clock can be. */

@@ -69,11 +69,18 @@ export function isAeiHex(hex: string): boolean {
   return /^[0-9A-Fa-f]{15}[37BFbf][0-9A-Fa-f]{15}[159Dd]$/.test(hex);
 }
 
+/** 32 bits of the tag, from bit 32 times `index` on. */
+function wordAt(hex: string, index: number): number {
+  return parseInt(hex.slice(index * 8, index * 8 + 8), 16);
+}
+
 /** Reads the fields of an AEI tag; null when `isAeiHex` is false. Judges nothing else. */
 export function decodeAei(hex: string): AeiTag | null {
   if (!isAeiHex(hex)) return null;
-  const word = (index: number) => parseInt(hex.slice(index * 8, index * 8 + 8), 16);
-  const [w0, w1, w2, w3] = [word(0), word(1), word(2), word(3)];
+  const w0 = wordAt(hex, 0);
+  const w1 = wordAt(hex, 1);
+  const w2 = wordAt(hex, 2);
+  const w3 = wordAt(hex, 3);
   const number = ((w0 & 0x3f) << 14) | (w1 >>> 18);
   const firstCheckSum = (w1 >>> 2) & 3;
   return {
