@@ -16,7 +16,7 @@ export function mailboxPage(mails: KeptMail[]): string {
 </table>`;
   return page(
     'Mailbox of the demo',
-    `<h1>${mails.length === 0 ? 'No mail yet' : `${mails.length} mails caught`}</h1>
+    `<h1>${countOfMails(mails.length)}</h1>
 <p>No mail leaves the demo: what it sends, to whomever, ends here. Newest first.</p>
 ${mails.length === 0 ? '<p>Set a watch, and its first mail comes here.</p>' : table}`,
   );
@@ -56,6 +56,11 @@ dd { margin: 0; overflow-wrap: anywhere; }
 pre, .time { font-family: 'IBM Plex Mono', ui-monospace, monospace; font-size: 14px; }
 pre { border-top: 1px solid var(--rule); padding-top: 12px; white-space: pre-wrap; overflow-wrap: anywhere; }
 `;
+
+function countOfMails(count: number): string {
+  if (count === 0) return 'No mail yet';
+  return count === 1 ? '1 mail caught' : `${count} mails caught`;
+}
 
 function page(title: string, body: string): string {
   return `<!doctype html>
