@@ -56,7 +56,7 @@ export async function lookUpSites(db: Database, actor: Actor, text: string): Pro
   const rows = await ask<FoundSite & { id: number }>(
     db,
     sql`SELECT id, code, name, kind FROM sites WHERE ${byCode} OR name LIKE ${`%${pattern}%`}
-      ORDER BY ${byCode} DESC, name LIKE ${`${pattern}%`} DESC, CHAR_LENGTH(code), name`,
+      ORDER BY IF(${byCode}, 0, 1), name LIKE ${`${pattern}%`} DESC, CHAR_LENGTH(code), name`,
   );
   return rows.filter((site) => seesSite(sources, site.id)).slice(0, MOST_SITES);
 }

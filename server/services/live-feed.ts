@@ -157,9 +157,12 @@ export class LiveFeed {
 
   /** Closes streams whose session has ended or whose person's rights have changed. */
   private async dropEnded(): Promise<void> {
-    const sessionIds = [...this.clients.keys()].map((client) => client.sessionId);
+    // Streams that open while the database answers were not asked about.
+    const asked = [...this.clients.keys()];
+    const sessionIds = asked.map((client) => client.sessionId);
     const rights = await findRights(this.context.db, sessionIds, this.context.clock.now());
-    for (const [client, before] of this.clients) {
+    for (const client of asked.filter((one) => this.clients.has(one))) {
+      const before = this.clients.get(client) ?? null;
       const present = rights.get(client.sessionId);
       if (present !== undefined && (before ?? present) === present) {
         this.clients.set(client, present);
