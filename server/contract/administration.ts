@@ -119,7 +119,7 @@ export const antennaInput = z
   .meta({ id: 'AntennaInput' });
 export type AntennaInput = z.output<typeof antennaInput>;
 
-const routeNodeInput = z.object({
+export const routeNodeInput = z.object({
   code: codeSchema,
   name: textSchema(120),
   latitude,
@@ -127,7 +127,7 @@ const routeNodeInput = z.object({
   site: codeSchema.nullish(),
 });
 
-const routeEdgeInput = z.object({
+export const routeEdgeInput = z.object({
   from: codeSchema,
   to: codeSchema,
   railMetres: z.int().min(1).max(50_000_000),
@@ -140,6 +140,7 @@ export const routesInput = z
     nodes: z.array(routeNodeInput).max(MOST_ITEMS).default([]),
     edges: z.array(routeEdgeInput).max(MOST_ITEMS).default([]),
   })
+  .refine(({ nodes, edges }) => nodes.length + edges.length > 0, 'must hold nodes or edges')
   .meta({ id: 'RoutesInput' });
 export type RoutesInput = z.output<typeof routesInput>;
 

@@ -1,13 +1,21 @@
 import { Router } from 'express';
 import { z } from 'zod';
 import { recordOf, routeEdgeView, routeNodeView } from '../contract/administration-answers.js';
-import { codeParams, idParams, routesInput } from '../contract/administration.js';
+import {
+  batchOfSchema,
+  codeParams,
+  idParams,
+  routeEdgeInput,
+  routeNodeInput,
+  routesInput,
+} from '../contract/administration.js';
 import { dataOf, pageOf, pageQuery } from '../contract/common.js';
 import type { Context } from '../lib/context.js';
 import type { Operation } from '../lib/openapi/operation.js';
 import { administrationBody } from '../middleware/administration-body.js';
 import { requireAdministrator } from '../middleware/require-role.js';
 import { actorOf, requireUser } from '../middleware/require-user.js';
+import { restorePointers, sortRoutesBody } from '../middleware/routes-body.js';
 import { validate, validated } from '../middleware/validate.js';
 import { administrationPolicy, changes } from '../policies/administration-policy.js';
 import { authorize, permissions } from '../policies/policy.js';
@@ -50,6 +58,7 @@ export function routesRoutes(context: Context): Router {
     signedIn,
     requireAdministrator,
     administrationBody,
+    sortRoutesBody,
     validate(store),
     async (request, response) => {
       const { body } = validated(request, store);
@@ -109,6 +118,7 @@ export function routesRoutes(context: Context): Router {
     response.status(204).end();
   });
 
+  router.use(restorePointers);
   return router;
 }
 
@@ -124,7 +134,7 @@ export const routesOperations: Operation[] = [
     method: 'post',
     path: '/api/routes',
     summary: 'Store nodes by code and edges by ends and line, all or none',
-    body: routesInput,
+    body: z.union([routesInput, batchOfSchema(z.union([routeNodeInput, routeEdgeInput]))]),
     response: dataOf(z.object({ nodes: z.array(routeNodeView), edges: z.array(routeEdgeView) })),
   },
   {

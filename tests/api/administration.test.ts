@@ -11,6 +11,7 @@ import {
   buildPerson,
   buildReadPoint,
   buildSite,
+  buildUnit,
   signIn,
 } from '../support/factories.js';
 
@@ -258,6 +259,28 @@ describe('faults', () => {
     expect(await models.RouteNode.count()).toBe(1);
   });
 
+  test('of a route graph that comes as a plain list, or as one edge', async () => {
+    const node = { code: 'LARCHJ', name: 'Larch', latitude: 44, longitude: -93 };
+    const edge = { from: 'LARCHJ', to: 'CAIRNJ', railMetres: 5, kind: 'rail', line: 'Main' };
+    const cairn = { ...node, code: 'CAIRNJ' };
+    expect(await faultsOf('/api/routes', [edge, node, { ...cairn, latitude: 99 }, null])).toEqual([
+      '/2/latitude',
+      '/3',
+    ]);
+    expect(await faultsOf('/api/routes', [node, edge, { ...edge, to: 'X' }])).toEqual([
+      '/1/to',
+      '/2/to',
+    ]);
+    expect(await faultsOf('/api/routes', edge)).toEqual(['/from', '/to']);
+    expect(await faultsOf('/api/routes', { ...edge, kind: 'air' })).toEqual(['/kind']);
+    expect(await faultsOf('/api/routes', {})).toEqual(['']);
+    expect(await faultsOf('/api/routes', [])).toEqual(['']);
+    const { body } = await admin.post('/api/routes').send([edge, node, cairn]).expect(200);
+    expect(body.data).toMatchObject({ nodes: [node, cairn], edges: [edge] });
+    await admin.post('/api/routes').send(edge).expect(200);
+    expect(await models.RouteEdge.count()).toBe(1);
+  });
+
   test('of people', async () => {
     const sent = [
       { email: 'not an address', name: 'A\u0000', roles: [], password: 'short' },
@@ -347,6 +370,45 @@ describe('lists', () => {
       expect(body.errors.map((fault: { pointer: string }) => fault.pointer)).toContain(pointer);
     }
   });
+
+  test.each(['sites', 'people', 'organisations', 'read-points', 'antennas', 'register', 'routes'])(
+    'of %s cost as many queries for one row as for thirty',
+    async (path) => {
+      const fill = async (from: number, count: number) => {
+        const numbers = Array.from({ length: count }, (_, index) => from + index);
+        const sites = numbers.map((number) => ({ ...alder, code: `S${number}` }));
+        await admin.post('/api/sites').send(sites).expect(200);
+        const points = sites.map(({ code }) => ({ ...north, site: code, increasingPlace: null }));
+        await admin.post('/api/read-points').send(points).expect(200);
+        const antenna = { readPoint: 'NORTH', number: 1, offsetM: 0, side: 'left' };
+        await admin
+          .post('/api/antennas')
+          .send(sites.map(({ code }) => ({ ...antenna, site: code })));
+        for (const { code } of sites) {
+          const owner = await buildOrganisation(db, { code: `O${code}` });
+          await buildUnit(db, { owner, tags: [{ value: code }] });
+          await buildPerson(db, { roles: ['owner'], organisation: owner });
+        }
+        const edge = { to: sites[0]?.code, railMetres: 1, kind: 'rail', line: 'Main' };
+        const edges = sites.slice(1).map(({ code }) => ({ ...edge, from: code }));
+        await admin.post('/api/routes').send({ edges }).expect(200);
+      };
+      const count = async () => {
+        let queries = 0;
+        db.sequelize.addHook('beforeQuery', 'count', () => void (queries += 1));
+        const { body } = await admin.get(`/api/${path}`).query({ limit: 100 }).expect(200);
+        db.sequelize.removeHook('beforeQuery', 'count');
+        return { rows: body.data.length as number, queries };
+      };
+      await fill(1, 2);
+      const few = await count();
+      await fill(10, 28);
+      const many = await count();
+      expect(few.queries).toBeGreaterThan(1);
+      expect(many.rows).toBeGreaterThan(few.rows + 20);
+      expect(many.queries).toBe(few.queries);
+    },
+  );
 
   test('of read points and antennas go by site', async () => {
     const first = await buildAntenna(db);
