@@ -13,7 +13,7 @@ import { complain, print, step } from './lib/steps.mjs';
 const long = process.argv.includes('--long');
 const counts = { passed: 0, failed: 0, skipped: 0 };
 const env = cleanEnvironment({ NODE_ENV: 'test' });
-const stopping = manageStopping();
+const stopping = manageStopping({ interrupted: 130 });
 
 await stopping.guard(async () => {
   try {

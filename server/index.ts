@@ -105,6 +105,8 @@ function tell(message: Message): void {
 }
 
 async function fail(error: unknown): Promise<void> {
+  // What was under way when its ground was taken away fails; that is no fault.
+  if (stopping) return;
   logger.fatal({ err: error }, 'the server cannot go on');
   await stop('a fault', 1);
 }

@@ -2,6 +2,12 @@
 export class Mend extends Error {}
 
 const columns = 26;
+let interrupted = false;
+
+/** From now on steps that break off do so because we end, and say nothing of it. */
+export function interruptSteps() {
+  interrupted = true;
+}
 
 /** Runs one step and prints its name, its outcome in a few words, and how long it took. */
 export async function step(name, act) {
@@ -13,7 +19,7 @@ export async function step(name, act) {
     print(`${name.padEnd(columns)} ${outcome ?? 'done'} (${seconds(begun)} s)`);
   } catch (error) {
     bar.clear();
-    print(`${name.padEnd(columns)} failed (${seconds(begun)} s)`);
+    if (!interrupted) print(`${name.padEnd(columns)} failed (${seconds(begun)} s)`);
     throw error;
   }
 }

@@ -1,34 +1,36 @@
 import { watchParents } from './processes.mjs';
 import { stopRunning } from './run.mjs';
-import { complain, print } from './steps.mjs';
+import { complain, interruptSteps, print } from './steps.mjs';
 
 /**
  * One way to end for a script that has started others: on Ctrl-C, SIGTERM, the death of its
- * parent, a failure. What was started last is stopped first.
+ * parent, a failure. What was started last is stopped first. `interrupted` is the exit code when
+ * somebody ended it: 0 where that is how it ends, another where its work was not done.
  */
-export function manageStopping({ quiet = false } = {}) {
+export function manageStopping({ interrupted = 0 } = {}) {
   const acts = [];
   let ending = null;
   let failure = null;
 
   const end = (why, code) => {
     ending ??= (async () => {
-      if (!quiet && why) print(`\n${why}: stopping`);
+      interruptSteps();
+      if (why) print(`\n${why}: stopping`);
       stopRunning();
-      for (const act of acts.reverse()) await Promise.resolve(act()).catch(complain);
-      if (!quiet && why) print('stopped');
+      for (const act of acts.reverse()) await attempt(act);
+      if (why) print('stopped');
       process.exit(code);
     })();
     return ending;
   };
 
-  process.on('SIGINT', () => void end('Ctrl-C', 0));
-  process.on('SIGTERM', () => void end('SIGTERM', 0));
-  process.on('SIGHUP', () => void end('SIGHUP', 0));
+  process.on('SIGINT', () => void end('Ctrl-C', interrupted));
+  process.on('SIGTERM', () => void end('SIGTERM', interrupted));
+  process.on('SIGHUP', () => void end('SIGHUP', interrupted));
   // A pipe that nobody reads any more must not end us before what we started has ended.
   process.stdout.on('error', () => {});
   process.stderr.on('error', () => {});
-  watchParents(() => void end('The process that started this one has gone', 0));
+  watchParents(() => void end('The process that started this one has gone', interrupted));
 
   return {
     end,
@@ -53,4 +55,12 @@ export function manageStopping({ quiet = false } = {}) {
       }
     },
   };
+}
+
+async function attempt(act) {
+  try {
+    await act();
+  } catch (error) {
+    complain(error);
+  }
 }
