@@ -66,6 +66,15 @@ export function formatInstantInFull(instant: string, zone: string): string {
   return `${parts.weekday} ${parts.day} ${parts.month} ${parts.year} ${parts.hour}:${parts.minute}:${parts.second} ${parts.timeZoneName}`;
 }
 
+/** "1 Dec 2026 04:51:08.250"; the zone stands in the heading, but for the hour that comes twice. */
+export function formatToTheMillisecond(instant: string, zone: string): string {
+  const at = Date.parse(instant);
+  const parts = partsOf(at, zone);
+  const fraction = String(new Date(at).getUTCMilliseconds()).padStart(3, '0');
+  const twice = isRepeated(at, zone, parts) ? ` ${parts.timeZoneName}` : '';
+  return `${parts.day} ${parts.month} ${parts.year} ${parts.hour}:${parts.minute}:${parts.second}.${fraction}${twice}`;
+}
+
 /** "07:41:08 CST". */
 export function formatClock(at: number, zone: string): string {
   const parts = partsOf(at, zone);

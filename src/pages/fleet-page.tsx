@@ -1,9 +1,10 @@
 import { useCallback, useMemo, useState } from 'react';
 import { useQuery } from '@tanstack/react-query';
-import { Link, useNavigate, useSearchParams } from 'react-router-dom';
+import { useNavigate, useSearchParams } from 'react-router-dom';
 import { Divider } from '../components/ui/plate';
 import { ErrorNotice, LoadingSentence } from '../components/ui/notice';
 import { fleetSummaryQuery } from '../features/equipment/api/fleet-summary';
+import { DropFilters } from '../features/equipment/components/drop-filters';
 import { FilterWords } from '../features/equipment/components/filter-words';
 import { FleetSentence } from '../features/equipment/components/fleet-sentence';
 import { FleetTable } from '../features/equipment/components/fleet-table';
@@ -140,7 +141,7 @@ function LedgerPanel({ isBeside, hasMap }: { isBeside: boolean; hasMap: boolean 
           zone={session?.user.timeZone ?? 'UTC'}
           scroller={isBeside ? scroller : null}
           onSort={(sort) => change({ sort })}
-          dropFilters={<Link to={paths.fleet()}>Drop all filters</Link>}
+          dropFilters={<DropFilters filter={filter} sites={sites} />}
         />
       </div>
     </section>

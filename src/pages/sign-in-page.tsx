@@ -21,6 +21,7 @@ export function SignInPage() {
       <header className="inset flex h-48 flex-none items-center bg-creosote text-on-creosote">
         <Wordmark />
       </header>
+      <div aria-hidden="true" className="sections min-h-20" />
       <main className="inset grid w-full max-w-[1120px] gap-32 py-52 md:grid-cols-[1fr_360px] md:gap-52">
         <h1 className="max-w-[20ch] text-sentence-narrow font-normal text-pretty sm:text-sentence">
           Where each car and box is, since when, and how it got there.

@@ -1,7 +1,8 @@
 import { useEffect } from 'react';
 import { useQuery } from '@tanstack/react-query';
 import { Link, useNavigate, useParams } from 'react-router-dom';
-import { EmptyNotice, ErrorNotice, LoadingSentence } from '../components/ui/notice';
+import { ErrorNotice, LoadingSentence } from '../components/ui/notice';
+import { Sentence } from '../components/ui/sentence';
 import { unitQuery } from '../features/equipment/api/unit';
 import { UnitHeading } from '../features/equipment/components/unit-heading';
 import { UnitJourney, useJourneySpan } from '../features/equipment/components/unit-journey';
@@ -38,21 +39,28 @@ export function UnitPage() {
   useTitle(unit.data?.data.display ?? unitId);
   useCurrentAddress(unitId, current);
   if (unit.isPending || !session) return <LoadingSentence />;
+  if (unit.error instanceof ApiProblem && unit.error.status === 404) {
+    return (
+      <Sentence
+        under={
+          <>
+            It may be written otherwise, or it was never at a site of yours.{' '}
+            <Link to={paths.fleet()}>Go to Fleet</Link>
+          </>
+        }
+      >
+        <span className="font-mono">{unitId}</span> is not a car or box you may see.
+      </Sentence>
+    );
+  }
   if (!unit.data) {
     return (
       <div className="inset py-32">
-        {unit.error instanceof ApiProblem && unit.error.status === 404 ? (
-          <EmptyNotice says={`${unitId} is not a car or box you may see.`}>
-            It may be written otherwise, or it was never at a site of yours.{' '}
-            <Link to={paths.fleet()}>Go to Fleet</Link>
-          </EmptyNotice>
-        ) : (
-          <ErrorNotice
-            what="The car did not come"
-            error={unit.error}
-            onRetry={() => void unit.refetch()}
-          />
-        )}
+        <ErrorNotice
+          what="The car did not come"
+          error={unit.error}
+          onRetry={() => void unit.refetch()}
+        />
       </div>
     );
   }

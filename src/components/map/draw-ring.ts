@@ -12,11 +12,11 @@ function span(className: string, text = ''): HTMLSpanElement {
   return element;
 }
 
-/** The ring and its words as a Leaflet icon, sized through the style object so that no inline style is parsed. */
+/** The ring and its words (only heard without a place) as a Leaflet icon, sized through the style object so that no inline style is parsed. */
 export function drawRing(
   site: MapSite,
   radius: number,
-  place: LabelPlace | undefined,
+  place: LabelPlace | null,
   isChosen: boolean,
 ): L.DivIcon {
   const words = labelWords(site, radius);
@@ -32,8 +32,8 @@ export function drawRing(
   return L.divIcon({ className: 'map-site', html: frame, iconSize: [target, target] });
 }
 
-function labelOf(words: ReturnType<typeof labelWords>, place: LabelPlace | undefined) {
-  const label = span('map-name');
+function labelOf(words: ReturnType<typeof labelWords>, place: LabelPlace | null) {
+  const label = span(place ? 'map-name' : 'map-name only-heard');
   label.style.left = `${place?.left ?? 0}px`;
   label.style.top = `${place?.top ?? 0}px`;
   label.style.textAlign = place?.align ?? 'left';

@@ -1,4 +1,4 @@
-interface Rectangle {
+export interface Rectangle {
   left: number;
   top: number;
   width: number;
@@ -22,6 +22,10 @@ export interface LabelPlace {
 }
 
 const gap = 5;
+/** Room that the ticks of the neatline take. */
+const edge = 8;
+/** Share of a label that may lie on other words before it is left out. */
+const mostCovered = 0.12;
 
 function candidates({ radius, width, height }: Labelled): LabelPlace[] {
   const beside = radius + gap;
@@ -47,20 +51,23 @@ const holds = (box: Rectangle, [x, y]: [number, number]): boolean =>
 
 /**
  * A place for each label, greedily, the largest ring first: off the other rings and words, off the
- * lines (`lines` are points along them), inside the frame. One place per entry, in their order.
+ * lines (`lines` are points along them), inside the frame. One place per entry, in their order; null where
+ * words would lie on words.
  */
 export function placeLabels(
   entries: Labelled[],
   lines: [number, number][],
   frame: { width: number; height: number },
-): LabelPlace[] {
+  /** What else stands on the sheet, like its scale. */
+  furniture: Rectangle[] = [],
+): (LabelPlace | null)[] {
   const rings = entries.map(({ x, y, radius }) => ({
     left: x - radius,
     top: y - radius,
     width: radius * 2,
     height: radius * 2,
   }));
-  const taken: Rectangle[] = [];
+  const taken: Rectangle[] = [...furniture];
   const places = new Map<number, LabelPlace>();
   const order = entries.map((_, index) => index);
   order.sort((a, b) => (entries[b]?.radius ?? 0) - (entries[a]?.radius ?? 0));
@@ -75,14 +82,20 @@ export function placeLabels(
           width: entry.width,
           height: entry.height,
         };
-        return { place, box, cost: rank * 3 + costOf(box, rings, taken, lines, frame) };
+        const covered = taken.reduce((sum, other) => sum + overlap(box, other), 0);
+        return {
+          place,
+          box,
+          covered,
+          cost: rank * 3 + costOf(box, rings, taken, lines, frame),
+        };
       })
       .sort((a, b) => a.cost - b.cost)[0];
-    if (!best) continue;
+    if (!best || best.covered > best.box.width * best.box.height * mostCovered) continue;
     places.set(index, best.place);
     taken.push(best.box);
   }
-  return entries.map((_, index) => places.get(index) ?? { left: 0, top: 0, align: 'left' });
+  return entries.map((_, index) => places.get(index) ?? null);
 }
 
 function costOf(
@@ -94,6 +107,11 @@ function costOf(
 ): number {
   const onOthers = [...rings, ...taken].reduce((sum, other) => sum + overlap(box, other), 0);
   const onLines = lines.filter((point) => holds(box, point)).length;
-  const inside = overlap(box, { left: 0, top: 0, ...frame });
+  const inside = overlap(box, {
+    left: edge,
+    top: edge,
+    width: frame.width - 2 * edge,
+    height: frame.height - 2 * edge,
+  });
   return onOthers * 2 + onLines * 14 + (box.width * box.height - inside) * 3;
 }

@@ -16,7 +16,7 @@ interface Props {
   unit: 'miles' | 'kilometres';
 }
 
-const padding: [number, number] = [56, 44];
+const padding: [number, number] = [64, 52];
 
 /** The network on its sheet, all of it vector; the words below it move it, the table says the same. */
 export function NetworkMap(props: Props) {
@@ -63,7 +63,7 @@ export function NetworkMap(props: Props) {
 
 function MapWord({ word, onPress }: { word: string; onPress: () => void }) {
   return (
-    <button type="button" className="link" onClick={onPress}>
+    <button type="button" className="link min-h-24 min-w-24" onClick={onPress}>
       {word}
     </button>
   );

@@ -30,6 +30,7 @@ export function RouteLines({ routes, map, zoom }: Props) {
         positions={rail.map(({ points }) => toLatLng(points))}
         interactive={false}
         className="map-rail"
+        smoothFactor={0}
         pathOptions={{ weight: 1.3 }}
       />
       <Polyline
@@ -38,6 +39,7 @@ export function RouteLines({ routes, map, zoom }: Props) {
           .map(({ points }) => toLatLng(points))}
         interactive={false}
         className="map-rail"
+        smoothFactor={0}
         pathOptions={{ weight: 1.3, dashArray: '2 5' }}
       />
       <Polyline
@@ -45,6 +47,7 @@ export function RouteLines({ routes, map, zoom }: Props) {
         positions={ticks}
         interactive={false}
         className="map-rail"
+        smoothFactor={0}
         pathOptions={{ weight: 1 }}
       />
     </>

@@ -24,12 +24,12 @@ export function SiteRings({ map, zoom, sites, routes, chosen, onChoose }: Props)
     const group = L.layerGroup().addTo(map);
     const focused = document.activeElement?.closest<HTMLElement>('[data-site]')?.dataset.site;
     const most = Math.max(1, ...sites.map(({ onHand }) => onHand ?? 0));
-    const radii = sites.map((site) => ringRadius(site.onHand ?? 0, most));
+    const radii = sites.map((site) => ringRadius(site.onHand ?? 0, most, map.getSize().x));
     const places = placesOf(map, zoom, sites, radii, routes);
     sites.forEach((site, index) => {
       const radius = radii[index] ?? 0;
       const marker = L.marker([site.latitude, site.longitude], {
-        icon: drawRing(site, radius, places[index], site.code === chosen),
+        icon: drawRing(site, radius, places[index] ?? null, site.code === chosen),
         keyboard: true,
         riseOnHover: true,
       });
@@ -52,7 +52,7 @@ function placesOf(
   sites: MapSite[],
   radii: number[],
   routes: MapRoute[],
-): LabelPlace[] {
+): (LabelPlace | null)[] {
   const origin = map.project(map.getBounds().getNorthWest(), zoom);
   const pixel = (longitude: number, latitude: number): [number, number] => {
     const point = map.project([latitude, longitude], zoom).subtract(origin);
@@ -64,5 +64,6 @@ function placesOf(
   });
   const lines = routes.flatMap(({ points }) => points.map(([x, y]) => pixel(x, y)));
   const { x: width, y: height } = map.getSize();
-  return placeLabels(entries, lines, { width, height });
+  const scale = { left: 0, top: height - 48, width: 296, height: 48 };
+  return placeLabels(entries, lines, { width, height }, [scale]);
 }

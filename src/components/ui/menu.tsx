@@ -30,6 +30,8 @@ export function Menu({ word, label, look = 'bare', align = 'right', children }: 
     };
     const escape = (event: KeyboardEvent) => {
       if (event.key !== 'Escape') return;
+      // A dialog around it must not take the same key.
+      event.preventDefault();
       setOpen(false);
       opener.current?.focus();
     };

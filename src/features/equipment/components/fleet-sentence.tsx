@@ -1,3 +1,4 @@
+import { Link } from 'react-router-dom';
 import { Counted, Sentence } from '../../../components/ui/sentence';
 import { sayDuration } from '../../../lib/durations';
 import { formatClock } from '../../../lib/times';
@@ -73,7 +74,10 @@ function Heard({ summary }: { summary: FleetSummary }) {
       {total.toLocaleString('en-US')} {readLast24h === 1 ? 'was' : 'were'} read in the last 24 hours
       {unseen > 0 ? (
         <>
-          ; <b className="font-medium text-ink">{unseen.toLocaleString('en-US')}</b>{' '}
+          ;{' '}
+          <Link to={paths.fleet({ state: 'unseen' })} className="font-medium text-ink">
+            {unseen.toLocaleString('en-US')}
+          </Link>{' '}
           {unseen === 1 ? 'has' : 'have'} never been read
         </>
       ) : null}

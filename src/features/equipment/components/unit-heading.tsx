@@ -73,8 +73,8 @@ function Whereabouts({ unit, zone, now }: Props) {
         <Link to={paths.fleet({ site: from.code })}>{from.name}</Link>
       ) : (
         'a place without a name'
-      )}{' '}
-      {at}, <b className="font-medium">{length}</b> ago.
+      )}
+      , {at}, <b className="font-medium">{length}</b> ago.
     </>
   );
 }

@@ -5,7 +5,8 @@ import { EmptyNotice, ErrorNotice, LoadingRows } from '../../../components/ui/no
 import { LedgerTable } from '../../../components/ui/ledger-table';
 import type { Column } from '../../../components/ui/ledger-table';
 import { MoreRows } from '../../../components/ui/more-rows';
-import { formatInstantInFull } from '../../../lib/times';
+import { formatToTheMillisecond, zoneName } from '../../../lib/times';
+import { useNow } from '../../../lib/use-now';
 import { useMedia } from '../../../lib/use-media';
 import type { RawReadView } from '../../../lib/wire';
 import { readsQuery } from '../api/reads';
@@ -23,6 +24,7 @@ export function UnitReads({ unitId, zone }: Props) {
 }
 
 function Reads({ unitId, zone }: Props) {
+  const now = useNow();
   const list = useInfiniteQuery(readsQuery(unitId));
   const isNarrow = useMedia('(max-width: 767px)');
   if (list.isPending) return <LoadingRows of="the reads" rows={10} />;
@@ -41,7 +43,7 @@ function Reads({ unitId, zone }: Props) {
     <>
       <LedgerTable
         caption="Raw reads"
-        columns={readColumns(zone)}
+        columns={readColumns(zone, zoneName(zone, now))}
         rows={rows}
         keyOf={({ site, antenna, readAt, tag }) => `${site.code} ${antenna} ${readAt} ${tag}`}
         margin={() => null}
@@ -53,12 +55,12 @@ function Reads({ unitId, zone }: Props) {
   );
 }
 
-function readColumns(zone: string): Column<RawReadView>[] {
+function readColumns(zone: string, name: string): Column<RawReadView>[] {
   return [
     {
       id: 'at',
-      heading: 'Read at',
-      width: 236,
+      heading: `Read at, ${name}`,
+      width: 208,
       cell: ({ readAt }) => <span className="mono text-note">{sayAt(readAt, zone)}</span>,
     },
     {
@@ -78,7 +80,7 @@ function readColumns(zone: string): Column<RawReadView>[] {
   ];
 }
 
-const sayAt = (instant: string, zone: string): string => formatInstantInFull(instant, zone);
+const sayAt = (instant: string, zone: string): string => formatToTheMillisecond(instant, zone);
 const sayAntenna = ({ antenna, antennaSide }: RawReadView): string =>
   antennaSide ? `${antenna}, ${antennaSide}` : String(antenna);
 

@@ -84,7 +84,12 @@ function watchColumns(act: (row: WatchRow) => React.ReactNode): Column<WatchRow>
       number: true,
       cell: (row) => <Open watch={row} />,
     },
-    { id: 'act', heading: '', width: 130, cell: act },
+    {
+      id: 'act',
+      heading: <span className="only-heard">What can be done</span>,
+      width: 130,
+      cell: act,
+    },
   ];
 }
 
