@@ -116,9 +116,9 @@ async function openUnit(
   const text = (request.params as z.infer<typeof unitParams>).unitId;
   const found = await findUnit(db, text, clock.now());
   const openable = await findOpenableUnits(db, actorOf(request), found ? [found.unitId] : []);
-  const access = (found && openable.get(found.unitId)) ?? null;
-  authorize(actorOf(request), unitPolicy, 'see', { access });
+  const access = found && openable.get(found.unitId);
   if (!found || !access) throw notFound();
+  authorize(actorOf(request), unitPolicy, 'see', { access });
   if (found.compact === text) return { unitId: found.unitId, access, siteIds: access.siteIds };
   response.redirect(308, presentAddress(request, found.compact));
   return null;
