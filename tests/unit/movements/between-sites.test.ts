@@ -73,16 +73,12 @@ describe('over a read point between two sites', () => {
     const track = intoPlant()
       .cross(leadB, CAR, '10:30', 'increasing')
       .cross(gate, CAR, '10:50', 'decreasing');
-    expect(
-      track
-        .stays(CAR)
-        .map(({ siteId }) => siteId)
-        .slice(0, 2),
-    ).toEqual([yardB, plant]);
-    expect(track.stays(CAR)[0]).toMatchObject({
-      departedAt: time('10:00'),
-      departureBasis: 'read',
-    });
+    const stays = track.stays(CAR);
+    expect(stays.slice(0, 2)).toMatchObject([
+      { siteId: yardB, departedAt: time('10:00'), departureBasis: 'read' },
+      { siteId: plant, arrivedAt: time('10:00') },
+    ]);
+    expect(stays.at(-1)).toMatchObject({ siteId: yardB, arrivedAt: time('10:50') });
   });
 
   test('a drill as the first sighting ever: it was there, since when nobody knows', () => {

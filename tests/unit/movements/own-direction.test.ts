@@ -93,6 +93,12 @@ describe('direction from antennas', () => {
     expect(only(track, point)).toMatchObject({ role: 'presence', direction: null });
   });
 
+  test('two tags at two offsets of one side give no direction', () => {
+    const { point, track } = lead('offsets');
+    track.read(point, 0, 'QTKX1', '10:00:00').read(point, 2, 'QTKX1', '10:00:02', 'right');
+    expect(only(track, point)).toMatchObject({ role: 'presence', direction: null });
+  });
+
   test('two tags at one offset give no direction', () => {
     const { point, track } = lead('sensors');
     track.read(point, 0, 'QTKX1', '10:00:00').read(point, 1, 'QTKX1', '10:00:02', 'right');

@@ -139,6 +139,14 @@ describe('a pass ends under the gap', () => {
     expect(track.passes(point).map(({ reversal }) => reversal)).toEqual([false, true]);
   });
 
+  test('of two gaps of one width the earlier is cut', () => {
+    const { point, track } = lead();
+    track.cross(point, 'QTKX1', '10:00:00', 'increasing');
+    track.read(point, 0, 'QTKX2', '10:00:21');
+    track.cross(point, 'QTKX3', '10:00:41', 'decreasing');
+    expect(unitsOf(track, point)).toEqual([['QTKX1'], ['QTKX2', 'QTKX3']]);
+  });
+
   test('at a reversal the passages next to the cut that know no direction are presence', () => {
     const { point, track } = lead();
     track.cross(point, 'QTKX1', '10:00:00', 'increasing');

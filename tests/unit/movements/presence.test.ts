@@ -142,6 +142,12 @@ describe('a spot read point', () => {
     expect(track.lastSeen(CAR)).toMatchObject({ state: 'onHand', track: 'D1' });
   });
 
+  test('seen at the lead afterwards it is still on that track', () => {
+    const { spot, entry, track } = dock();
+    track.read(spot, 0, CAR, '13:00').read(entry, 0, CAR, '14:00');
+    expect(track.lastSeen(CAR)).toMatchObject({ at: time('14:00'), track: 'D1' });
+  });
+
   test('reopens a stay that it seemed to leave minutes ago', () => {
     const { spot, entry, track } = dock();
     track.cross(entry, CAR, '12:00', 'decreasing').cross(entry, CAR, '13:00', 'increasing');

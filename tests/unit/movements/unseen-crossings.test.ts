@@ -98,6 +98,20 @@ describe('crossings that nobody saw', () => {
     ]);
   });
 
+  test('it had not left before it was last seen there', () => {
+    const { track, intoA, intoB } = car(world);
+    intoA('08:00');
+    track.read(leadA, 0, CAR, '16:00');
+    intoB('18:00');
+    expect(track.stays(CAR)).toMatchObject([
+      {
+        departedAt: time('16:00'),
+        departureBounds: { earliest: time('16:00'), latest: time('18:00') },
+      },
+      {},
+    ]);
+  });
+
   test('seen at a line point: it had left, 40 km before', () => {
     const { track, intoA, overLine } = car(world);
     intoA('08:00');
