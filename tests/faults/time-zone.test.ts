@@ -3,11 +3,11 @@ import { testDatabaseUrl, useTestDatabase } from '../support/database.js';
 
 useTestDatabase();
 afterEach(() => {
-  process.env.TZ = 'UTC';
+  vi.unstubAllEnvs();
 });
 
 it('writes and reads instants in UTC, whatever zone the machine is set to', async () => {
-  process.env.TZ = 'America/Chicago';
+  vi.stubEnv('TZ', 'America/Chicago');
   vi.resetModules();
   const { openDatabase } = await import('../../server/lib/database.js');
   const { pool, close } = openDatabase(testDatabaseUrl(), { connections: 1 });
