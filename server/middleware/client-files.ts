@@ -4,7 +4,7 @@ import { fileURLToPath } from 'node:url';
 import express, { Router } from 'express';
 
 /** Where the build puts the client, seen from the built server and from its sources. */
-const builds = ['../client', '../../dist/client'];
+const builds = ['../client', '../../client', '../../dist/client'];
 
 /** The directory of the built client, or null when there is no build. */
 export function findClientDirectory(): string | null {

@@ -81,6 +81,8 @@ async function peopleByEmail(
 ): Promise<Map<string, Person>> {
   const rows = await modelsOf(db.sequelize).Person.findAll({
     where: { email: items.map((item) => item.email) },
+    // What is left out is written back as it was read: nobody may change it meanwhile.
+    lock: transaction.LOCK.UPDATE,
     transaction,
   });
   return new Map(rows.map((row) => [row.email.toLowerCase(), row]));
