@@ -2,7 +2,7 @@ import { ingestReads } from '../ingest/ingest-reads.js';
 import { ingestWheels } from '../ingest/ingest-wheels.js';
 import type { Context } from '../lib/context.js';
 import type { Database } from '../lib/database.js';
-import { createProjector } from '../projections/projector.js';
+import { createProjector, type Projector } from '../projections/projector.js';
 import { batchesOf, bySite, wheelRecord, wireRead, type Batch } from './batches.js';
 import { Traffic } from './traffic.js';
 import { world } from './world.js';
@@ -35,9 +35,17 @@ type Sites = Map<string, { id: number; code: string }>;
  * all up. Run again it finds duplicates only. Returns how many reads were new.
  */
 export async function seedTraffic(context: Context, options: SeedOptions): Promise<number> {
-  const stored = await feedTraffic(context, options);
-  await takeUp(context, stored, options.onProgress ?? (() => undefined));
-  return stored;
+  const projector = createProjector(context);
+  // It works beside the ingest, as in life: with two cores one folds while the other takes in.
+  projector.start();
+  try {
+    const stored = await feedTraffic(context, options);
+    await takeUp(context, projector, stored, options.onProgress ?? (() => undefined));
+    return stored;
+  } finally {
+    // The server's own projector takes over, and would wait for this one's lease to expire.
+    await projector.stop();
+  }
 }
 
 /** The first half of `seedTraffic`: the reads are in the queue, and nothing is made of them yet. */
@@ -84,10 +92,12 @@ async function deliver({ db, env }: Context, sites: Sites, batch: Batch): Promis
 
 async function takeUp(
   context: Context,
+  projector: Projector,
   total: number,
   onProgress: (progress: SeedProgress) => void,
 ): Promise<void> {
-  const projector = createProjector(context);
+  // Its loop ends first, so that what it waits for here is its own work alone.
+  await projector.stop();
   const look = setInterval(() => {
     void waiting(context.db).then(
       (left) => onProgress({ done: Math.max(0, total - left), total, unit: 'reads taken up' }),
@@ -98,8 +108,6 @@ async function takeUp(
     await projector.drain();
   } finally {
     clearInterval(look);
-    // The server's own projector takes over, and would wait for this one's lease to expire.
-    await projector.stop();
   }
   onProgress({ done: total, total, unit: 'reads taken up' });
 }
