@@ -172,6 +172,18 @@ describe('last seen', () => {
     });
   });
 
+  test('how long is too long counts from the arrival where that is known', () => {
+    const track = new Trackside(world.configuration)
+      .cross(world.line, CAR, '08:00', 'decreasing')
+      .read(world.leadA, 0, CAR, '10:00')
+      .cross(world.leadA, CAR, '11:00', 'decreasing');
+    expect(track.lastSeen(CAR)).toMatchObject({
+      stayFirstSeenAt: time('10:00'),
+      arrivedAt: time('11:00'),
+      limitAt: time('4T11:00'),
+    });
+  });
+
   test('is the last read of a passage, not its first', () => {
     const track = new Trackside(world.configuration).read(world.leadA, 0, CAR, '08:00:00');
     track.read(world.leadA, 0, CAR, '08:00:45');
