@@ -36,10 +36,15 @@ export function lastSeenPage(page: PageRequest, direction: 'ASC' | 'DESC'): Sql 
   return union(selects, order, rows);
 }
 
-/** The page by how long it has stood, longest first; what does not stand comes after, by unit. */
+/**
+ * The page by how long it has stood, longest first; what does not stand comes after, by unit. So do
+ * locomotives and the like, which no limit applies to, unless their kind is asked for.
+ */
 export function dwellPage(page: PageRequest): Sql {
   const { filters, now, after, rows } = page;
-  const since = sql`IF(s.state = 'onHand', COALESCE(l.arrived_at, l.stay_first_seen_at, l.at), CAST(${FAR} AS DATETIME(3)))`;
+  const counts = filters.kind ? sql`TRUE` : sql`s.limit_at < ${FAR}`;
+  const since = sql`IF(s.state = 'onHand' AND ${counts},
+    COALESCE(l.arrived_at, l.stay_first_seen_at, l.at), CAST(${FAR} AS DATETIME(3)))`;
   const selects = page.sources.map(
     (source) => sql`(
       SELECT ${since} AS sort_key, s.unit_id FROM ${word(source.table)} s

@@ -3,6 +3,7 @@ import { describe, expect, test } from 'vitest';
 import { createApp } from '../../server/app.js';
 import { equipmentListAnswer } from '../../server/contract/equipment.js';
 import { aarIdentity, isoIdentity, uicIdentity } from '../../server/domain/identifiers/identity.js';
+import { FAR } from '../../server/lib/sentinels.js';
 import { buildContext } from '../support/context.js';
 import { useTestDatabase } from '../support/database.js';
 import {
@@ -208,6 +209,21 @@ describe('filters of the list', () => {
     expect(await orderOf('lastSeen')).toMatch(/^65(23|32)41$/);
     expect(await orderOf('dwell')).toMatch(/^(23|32)1/);
     expect(await orderOf('unit')).toBe('123456');
+  });
+
+  test('a locomotive, which no limit applies to, leads by dwell only when asked for', async () => {
+    await buildFleet();
+    const site = await buildSite(db);
+    const stands = { state: 'onHand', at: ago(500), site, limitAt: FAR } as const;
+    const engine = { identity: aarIdentity('QTKX', 7), kind: 'locomotive' };
+    await placeUnit(db, await buildUnit(db, engine), stands);
+    const { agent } = await openPortal();
+    const firstBy = async (query: string) => {
+      const { body } = await agent.get(`/api/equipment?sort=dwell${query}`).expect(200);
+      return identitiesIn(body)[0];
+    };
+    expect(await firstBy('')).toMatch(/^QTKX[23]$/);
+    expect(await firstBy('&kind=locomotive')).toBe('QTKX7');
   });
 
   test('the order by unit takes numbers as numbers', async () => {
