@@ -51,7 +51,11 @@ function useFilter() {
       void navigate(paths.fleet({ ...filter, ...part }), { preventScrollReset: true }),
     [filter, navigate],
   );
-  return { filter, change };
+  const chooseSite = useCallback(
+    (site: string) => change({ site: filter.site === site ? '' : site }),
+    [change, filter.site],
+  );
+  return { filter, change, chooseSite };
 }
 
 function Opening() {
@@ -83,7 +87,7 @@ function Opening() {
 }
 
 function MapBeside() {
-  const { filter, change } = useFilter();
+  const { filter, chooseSite } = useFilter();
   const { mapShare } = usePreferences();
   return (
     <>
@@ -91,7 +95,7 @@ function MapBeside() {
         className="flex min-w-0 flex-none flex-col"
         style={{ width: `calc(${mapShare}% - 12px)` }}
       >
-        <NetworkPanel chosen={filter.site} onChoose={(site) => change({ site })} />
+        <NetworkPanel chosen={filter.site} onChoose={chooseSite} />
       </div>
       <Divider
         label="Width of the map"
@@ -103,7 +107,7 @@ function MapBeside() {
 }
 
 function LedgerPanel({ isBeside, hasMap }: { isBeside: boolean; hasMap: boolean }) {
-  const { filter, change } = useFilter();
+  const { filter, change, chooseSite } = useFilter();
   const { data: session } = useQuery(sessionQuery);
   const { data: network } = useQuery(mapQuery);
   const [scroller, setScroller] = useState<HTMLElement | null>(null);
@@ -131,7 +135,7 @@ function LedgerPanel({ isBeside, hasMap }: { isBeside: boolean; hasMap: boolean 
       </div>
       {isMapOpen && !isBeside ? (
         <div className="mb-16 flex h-[380px] flex-col">
-          <NetworkPanel chosen={filter.site} onChoose={(site) => change({ site })} />
+          <NetworkPanel chosen={filter.site} onChoose={chooseSite} />
         </div>
       ) : null}
       <div ref={isBeside ? setScroller : undefined} className="min-h-0 flex-1 lg:overflow-auto">

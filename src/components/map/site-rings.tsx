@@ -1,4 +1,4 @@
-import { useEffect } from 'react';
+import { useEffect, useRef } from 'react';
 import L from 'leaflet';
 import type { Map as LeafletMap } from 'leaflet';
 import { drawRing } from './draw-ring';
@@ -20,9 +20,9 @@ interface Props {
 
 /** Sites as rings whose area is the count on hand, each a button with its name and what wants attention. */
 export function SiteRings({ map, zoom, sites, routes, chosen, onChoose }: Props) {
+  const focused = useRef<string | null>(null);
   useEffect(() => {
     const group = L.layerGroup().addTo(map);
-    const focused = document.activeElement?.closest<HTMLElement>('[data-site]')?.dataset.site;
     const most = Math.max(1, ...sites.map(({ onHand }) => onHand ?? 0));
     const radii = sites.map((site) => ringRadius(site.onHand ?? 0, most, map.getSize().x));
     const places = placesOf(map, zoom, sites, radii, routes);
@@ -37,9 +37,17 @@ export function SiteRings({ map, zoom, sites, routes, chosen, onChoose }: Props)
       const element = marker.getElement();
       element?.setAttribute('aria-pressed', String(site.code === chosen));
       element?.setAttribute('data-site', site.code);
-      if (focused === site.code) element?.focus({ preventScroll: true });
+      element?.addEventListener('keydown', (event) => {
+        if (event.key !== 'Enter' && event.key !== ' ') return;
+        event.preventDefault();
+        onChoose(site.code);
+      });
+      if (focused.current === site.code) element?.focus({ preventScroll: true });
     });
     return () => {
+      // Rings are drawn anew with each count; the one in hand stays in hand.
+      const held = document.activeElement?.closest<HTMLElement>('[data-site]');
+      focused.current = held?.dataset.site ?? null;
       group.remove();
     };
   }, [map, zoom, sites, routes, chosen, onChoose]);
