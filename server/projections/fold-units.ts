@@ -88,7 +88,7 @@ async function foldPart(
   return starts.map((start) => {
     const own = sightings.get(start.unitId) ?? [];
     const { kind, ownerId, registered } = kinds.get(start.unitId) as UnitRow;
-    const history: UnitHistory = foldHistory(network, kind, start.state, own);
+    const history: UnitHistory = foldHistory(network, { kind, registered }, start.state, own);
     const changeable = changeableFrom(start.state, start.beforeAt);
     return { start, changeable, ownerId, registered, history, last: own.at(-1) ?? null };
   });

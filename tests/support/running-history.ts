@@ -129,7 +129,13 @@ export class RunningHistory {
       this.units.delete(unit);
       return;
     }
-    const folded = foldHistory(this.network, kindOfUnit(sightings), start.state, own);
+    const registered = this.network.unit(unit)?.registered ?? false;
+    const folded = foldHistory(
+      this.network,
+      { kind: kindOfUnit(sightings), registered },
+      start.state,
+      own,
+    );
     const changeable = changeableFrom(start.state, start.beforeAt);
     this.units.set(unit, {
       stays: [

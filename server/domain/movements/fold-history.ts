@@ -2,7 +2,7 @@ import type { EquipmentKind } from '../identifiers/equipment-groups.js';
 import type { Network } from './configuration.js';
 import type { FoldRows, FoldState } from './fold-state.js';
 import { foldSighting, openRows, type Sighting } from './fold-unit.js';
-import { lastSeenOf, type LastSeen } from './last-seen.js';
+import { lastSeenOf, type FoldedUnit, type LastSeen } from './last-seen.js';
 
 /** A state of the fold to start again from: everything before `beforeAt` (ms) is in it. */
 export interface Checkpoint {
@@ -29,7 +29,7 @@ const RIDERS: ReadonlySet<EquipmentKind> = new Set([
 /** Folds a unit's sightings (in order of first reads) onto `start`. */
 export function foldHistory(
   network: Network,
-  kind: EquipmentKind,
+  { kind, registered }: FoldedUnit,
   start: FoldState,
   sightings: readonly Sighting[],
 ): UnitHistory {
@@ -55,7 +55,7 @@ export function foldHistory(
   return {
     stays: [...stays, ...open.stays],
     legs: [...legs, ...open.legs],
-    lastSeen: lastSighting ? lastSeenOf(network, kind, state, lastSighting) : null,
+    lastSeen: lastSighting ? lastSeenOf(network, { kind, registered }, state, lastSighting) : null,
     checkpoints,
   };
 }

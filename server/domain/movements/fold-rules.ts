@@ -82,10 +82,8 @@ export function bePresent(
   { lingering, spot }: { lingering: boolean; spot: boolean },
 ): void {
   const { state, at, network, sighting } = step;
-  if (!place) {
-    const here = network.readPoint(sighting.readPointId).siteId;
-    return see(step, state.stay?.departedAt === null ? state.stay.siteId : here, false);
-  }
+  // Between two sites it was at neither of, it is on its way like at a line point.
+  if (!place) return passOnLine(step);
   const returnMs = network.site(place.siteId).returnHours * HOUR_MS;
   const { stay, previous } = state;
   if (stay?.siteId === place.siteId) {
@@ -119,10 +117,14 @@ function unknownArrival(at: number): Arrival {
   };
 }
 
-/** It left without having been seen to arrive: it came as fast as the reference speed allows. */
-function inferArrival({ network, state, at }: Step, siteId: number): Arrival {
-  const { previous } = state;
-  if (!previous) return unknownArrival(at);
+/**
+ * It left without having been seen to arrive. Standing elsewhere until then, as far as anybody
+ * knows, it came at the last moment; on its way, as fast as the reference speed allows.
+ */
+function inferArrival(step: Step, siteId: number): Arrival {
+  const { network, state, at } = step;
+  const { previous, stay } = state;
+  if (!previous || stay?.departedAt === null) return presentSince(step, false);
   const travel = travelMs(network, previous.siteId, siteId);
   return {
     arrivedAt: clamp(previous.at + travel, previous.at, at),
@@ -165,8 +167,9 @@ function stayOn(step: Step, track: string | null): void {
 
 function see({ state, sighting }: Step, siteId: number, outward: boolean): void {
   const { readPointId, lastAt } = sighting;
+  const direction = sighting.role === 'crossing' ? sighting.direction : null;
   const at = Math.max(lastAt, state.previous?.at ?? -Infinity);
-  state.previous = { at, siteId, readPointId, outward };
+  state.previous = { at, siteId, readPointId, outward, direction };
 }
 
 /** Ends the stay before (guessing its departure where nobody saw it) and begins the next one. */

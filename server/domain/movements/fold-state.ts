@@ -56,6 +56,8 @@ export interface Previous {
   readPointId: number;
   /** It was a crossing out to the line from that site. */
   outward: boolean;
+  /** Its direction where it was a crossing. */
+  direction: Direction | null;
 }
 
 /** Everything about a unit's past that its next sighting can change or is judged by. */

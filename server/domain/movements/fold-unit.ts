@@ -19,6 +19,8 @@ export interface FoldStep {
 }
 
 const MINUTE_MS = 60_000;
+const HOUR_MS = 60 * MINUTE_MS;
+const LONGEST_STOP_MS = 30 * MINUTE_MS;
 const LONG_PASSAGE_MS = 2 * MINUTE_MS;
 
 /**
@@ -31,6 +33,7 @@ export function foldSighting(
   sighting: Sighting,
   countsMiles: boolean,
 ): FoldStep {
+  if (isSameCrossing(before, sighting)) return goOn(before, sighting);
   const move = moveOf(network, sighting);
   const drill = struckDrill(network, before, sighting);
   if (drill) {
@@ -42,6 +45,30 @@ export function foldSighting(
   step.done = settled(before.held);
   apply(step, move, before);
   return { state: step.state, done: step.done };
+}
+
+/** A car that stopped astride the reader is read again on its way: it has not crossed twice. */
+function isSameCrossing({ previous }: FoldState, sighting: Sighting): boolean {
+  return (
+    (previous?.direction ?? null) !== null &&
+    previous !== null &&
+    sighting.role === 'crossing' &&
+    previous.readPointId === sighting.readPointId &&
+    previous.direction === sighting.direction &&
+    sighting.firstAt - previous.at <= LONGEST_STOP_MS
+  );
+}
+
+function goOn(before: FoldState, { lastAt }: Sighting): FoldStep {
+  const previous = before.previous && {
+    ...before.previous,
+    at: Math.max(before.previous.at, lastAt),
+  };
+  const stay = before.stay && {
+    ...before.stay,
+    lastSeenAt: Math.max(before.stay.lastSeenAt, lastAt),
+  };
+  return { state: { ...before, previous, stay }, done: { stays: [], legs: [] } };
 }
 
 /** Rows that later sightings may still change. */
@@ -115,7 +142,15 @@ function apply(step: Step, { kind, from, to }: Move, before: FoldState): void {
   if (!from && to) return arrive(step, to);
   if (from && !to) return leave(step, from.siteId);
   if (from && to && from.siteId === to.siteId) return moveWithin(step, to);
+  if (to && isStillAt(step, to.siteId)) return arrive(step, to);
   crossBetween(step, from as NonNullable<Place>, to as NonNullable<Place>, before);
+}
+
+/** It crosses in where it already is, and not long unseen: nobody saw it step out and back. */
+function isStillAt({ network, state, at }: Step, siteId: number): boolean {
+  const { stay, previous } = state;
+  if (stay?.siteId !== siteId || stay.departedAt !== null || !previous) return false;
+  return at - previous.at < network.site(siteId).returnHours * HOUR_MS;
 }
 
 /** Without direction between two sites it is where it already was, else nobody can tell. */

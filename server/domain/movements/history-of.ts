@@ -52,7 +52,9 @@ export function historyOf(ledger: Ledger, configuration: Configuration): History
   const units = new Map<UnitRef, UnitHistory>();
   for (const [unit, own] of sightings) {
     own.sort(compareSightings);
-    units.set(unit, foldHistory(network, kindOfUnit(own), nothingKnown(), own));
+    const registered = network.unit(unit)?.registered ?? false;
+    const folded = { kind: kindOfUnit(own), registered };
+    units.set(unit, foldHistory(network, folded, nothingKnown(), own));
   }
   return { passes, units };
 }

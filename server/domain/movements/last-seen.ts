@@ -25,10 +25,17 @@ export interface LastSeen {
 const HOUR_MS = 3_600_000;
 const NO_LIMITS: ReadonlySet<EquipmentKind> = new Set(['locomotive', 'endOfTrain']);
 
+/** What of the register bears on a unit's limits. */
+export interface FoldedUnit {
+  kind: EquipmentKind;
+  /** Nobody waits for a stranger: it is never quiet. */
+  registered: boolean;
+}
+
 /** The last-seen row after `sighting`, the last of a unit's sightings, led to `state`. */
 export function lastSeenOf(
   network: Network,
-  kind: EquipmentKind,
+  { kind, registered }: FoldedUnit,
   state: FoldState,
   sighting: Sighting,
 ): LastSeen {
@@ -47,7 +54,7 @@ export function lastSeenOf(
     staySiteId: stay?.siteId ?? null,
     stayFirstSeenAt: stay?.firstSeenAt ?? null,
     arrivedAt: open?.arrivedAt ?? null,
-    quietAt: limited && !open ? previous.at + QUIET_HOURS * HOUR_MS : null,
+    quietAt: registered && limited && !open ? previous.at + QUIET_HOURS * HOUR_MS : null,
     limitAt: limited && open ? (open.arrivedAt ?? open.firstSeenAt) + limitHours * HOUR_MS : null,
   };
 }

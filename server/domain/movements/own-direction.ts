@@ -36,7 +36,7 @@ export function ownMovement(
   span: { firstAt: number; lastAt: number },
   antennaOf: AntennaOf,
   wheels: readonly WheelRecord[],
-  isEndOfTrain: boolean,
+  { isEndOfTrain, severalOffsets }: { isEndOfTrain: boolean; severalOffsets: boolean },
 ): OwnMovement {
   const first = covering(wheels, span.firstAt);
   const last = covering(wheels, span.lastAt);
@@ -51,7 +51,8 @@ export function ownMovement(
       ? { direction: null, basis: null, returned: true, sensed, speedKmh }
       : { direction: bySensors, basis: 'sensors', returned: false, sensed, speedKmh };
   }
-  if (wentBack(visits, antennaOf, isEndOfTrain || sensed)) {
+  const byTags = !sensed && !isEndOfTrain;
+  if (severalOffsets ? wentBackAlong(visits, antennaOf) : byTags && wentBackByTags(visits)) {
     return { direction: null, basis: null, returned: true, sensed, speedKmh: null };
   }
   if (!slope) return { direction: null, basis: null, returned: false, sensed, speedKmh };
@@ -94,22 +95,23 @@ function slowness(visits: readonly Evidence[], antennaOf: AntennaOf): number | n
 
 /**
  * Judged on one raw tag at antennas of one side: back at the first offset after another one, at
- * least ten seconds away from it. With one offset: back at the first tag after the other tag (not
- * where `ignoreTags`: end-of-train devices, and passages a wheel sensor saw).
+ * least ten seconds away from it.
  */
-function wentBack(visits: readonly Evidence[], antennaOf: AntennaOf, ignoreTags: boolean): boolean {
-  const reads = visits.flatMap((visit) => visit.reads ?? []);
+function wentBackAlong(visits: readonly Evidence[], antennaOf: AntennaOf): boolean {
   const sequences = new Map<string, { place: number; at: number }[]>();
-  const offsets = new Set<number>();
-  for (const read of reads) {
+  for (const read of visits.flatMap((visit) => visit.reads ?? [])) {
     const antenna = antennaOf(read.antenna);
     if (!antenna) continue;
-    offsets.add(antenna.offsetM);
     const key = `${antenna.side} ${read.tag}`;
     sequences.set(key, [...(sequences.get(key) ?? []), { place: antenna.offsetM, at: read.at }]);
   }
-  if (offsets.size > 1) return [...sequences.values()].some(isBackAtStart);
-  return !ignoreTags && isBackAtStart(reads.map((read) => ({ place: read.tag, at: read.at })));
+  return [...sequences.values()].some(isBackAtStart);
+}
+
+/** With one offset and no sensors: back at the first tag after the other tag. */
+function wentBackByTags(visits: readonly Evidence[]): boolean {
+  const reads = visits.flatMap((visit) => visit.reads ?? []);
+  return isBackAtStart(reads.map((read) => ({ place: read.tag, at: read.at })));
 }
 
 /** Starts and ends at one place, was at another in between, for ten seconds or more. */

@@ -45,22 +45,16 @@ const LONGEST_STOP_MS = 30 * 60_000;
  * between which no other unit came are one passage where it may have stopped between the antennas.
  */
 export function joinVisits(rules: PointRules, visits: readonly Visit[]): Passage[] {
-  const antennaOf: AntennaOf = (number) => rules.network.antenna(rules.point.siteId, number);
-  const severalOffsets = hasSeveralOffsets(rules.network, rules.point);
   const wheels = [...rules.wheels].sort((a, b) => a.startedAt - b.startedAt);
+  const ordered = { ...rules, wheels };
+  const severalOffsets = hasSeveralOffsets(rules.network, rules.point);
   const passages: Passage[] = [];
   for (const visit of [...visits].sort(compareVisits)) {
-    const passage = describe(rules.network, antennaOf, wheels, visit.unit, [visit.evidence]);
+    const passage = describe(ordered, visit.unit, [visit.evidence]);
     const before = passages.at(-1);
     if (severalOffsets && before && stoppedBetween(before, passage)) {
       const joined = [...before.visits, visit.evidence];
-      passages[passages.length - 1] = describe(
-        rules.network,
-        antennaOf,
-        wheels,
-        visit.unit,
-        joined,
-      );
+      passages[passages.length - 1] = describe(ordered, visit.unit, joined);
     } else {
       passages.push(passage);
     }
@@ -82,17 +76,18 @@ function stoppedBetween(before: Passage, after: Passage): boolean {
 }
 
 function describe(
-  network: Network,
-  antennaOf: AntennaOf,
-  wheels: readonly WheelRecord[],
+  { network, point, wheels }: PointRules,
   unit: UnitRef,
   visits: Evidence[],
 ): Passage {
+  const antennaOf: AntennaOf = (number) => network.antenna(point.siteId, number);
+  const severalOffsets = hasSeveralOffsets(network, point);
   const first = firstRead(visits[0] as Evidence);
   const lastAt = Math.max(...visits.map(lastReadAt));
   const { kind, kindRank } = kindOf(network, unit, visits);
   const span = { firstAt: first.at, lastAt };
-  const own = ownMovement(visits, span, antennaOf, wheels, kind === 'endOfTrain');
+  const isEndOfTrain = kind === 'endOfTrain';
+  const own = ownMovement(visits, span, antennaOf, wheels, { isEndOfTrain, severalOffsets });
   const readCount = visits.reduce((sum, visit) => sum + readCountOf(visit), 0);
   return { unit, kind, kindRank, visits, first, lastAt, readCount, own };
 }

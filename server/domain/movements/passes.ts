@@ -59,7 +59,8 @@ export function formPasses(
     const later = !before || passage.first.at > before.first.at;
     const draft = drafts.at(-1);
     if (!draft || isBoundary(rules, draft, passage)) {
-      const reversal = draft ? opposes(draft.passages, passage) : from.reversal;
+      const near = draft && passage.first.at - draft.reach <= LONGEST_STOP_MS;
+      const reversal = draft ? Boolean(near) && opposes(draft.passages, passage) : from.reversal;
       drafts.push(draftOf([passage], reversal, later));
       return;
     }

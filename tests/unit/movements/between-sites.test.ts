@@ -78,7 +78,7 @@ describe('over a read point between two sites', () => {
       { siteId: yardB, departedAt: time('10:00'), departureBasis: 'read' },
       { siteId: plant, arrivedAt: time('10:00') },
     ]);
-    expect(stays.at(-1)).toMatchObject({ siteId: yardB, arrivedAt: time('10:50') });
+    expect(stays.at(-1)).toMatchObject({ siteId: yardB, arrivedAt: time('10:30') });
   });
 
   test('a drill as the first sighting ever: it was there, since when nobody knows', () => {

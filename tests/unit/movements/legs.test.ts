@@ -1,10 +1,16 @@
 import { describe, expect, test } from 'vitest';
+import type { Configuration } from '../../../server/domain/movements/configuration.js';
 import { NetworkBuilder, at } from '../../support/network-builder.js';
 import { Trackside, time } from '../../support/trackside.js';
 import { twoYards } from '../../support/two-yards.js';
 
 const CAR = 'QTKX1';
 const world = twoYards('sensors');
+const registered: Configuration = {
+  ...world.configuration,
+  units: [{ unit: CAR, kind: 'car', registered: true }],
+  identities: [{ value: CAR, unit: CAR, validFrom: null, validTo: null }],
+};
 
 /** Yards A and B with a lead each, a junction between them, and line points off it. */
 function forked() {
@@ -149,7 +155,7 @@ describe('last seen', () => {
   });
 
   test('en route: where it left, and when it becomes quiet', () => {
-    const track = new Trackside(world.configuration).cross(world.leadA, CAR, '08:00', 'increasing');
+    const track = new Trackside(registered).cross(world.leadA, CAR, '08:00', 'increasing');
     expect(track.lastSeen(CAR)).toMatchObject({
       state: 'enRoute',
       siteId: world.yardA,
@@ -160,7 +166,7 @@ describe('last seen', () => {
   });
 
   test('en route past a line point: there', () => {
-    const track = new Trackside(world.configuration)
+    const track = new Trackside(registered)
       .cross(world.leadA, CAR, '08:00', 'increasing')
       .cross(world.line, CAR, '09:30', 'increasing');
     expect(track.lastSeen(CAR)).toMatchObject({
@@ -170,6 +176,11 @@ describe('last seen', () => {
       staySiteId: world.yardA,
       quietAt: time('5T09:30'),
     });
+  });
+
+  test('a stranger is never quiet: nobody waits for it', () => {
+    const track = new Trackside(world.configuration).cross(world.leadA, CAR, '08:00', 'increasing');
+    expect(track.lastSeen(CAR)).toMatchObject({ state: 'enRoute', quietAt: null });
   });
 
   test('how long is too long counts from the arrival where that is known', () => {
