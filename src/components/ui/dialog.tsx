@@ -9,7 +9,10 @@ interface Props {
   children: ReactNode;
 }
 
-/** The browser's own modal dialog, open as long as it is drawn; focus goes back where it came from. */
+/**
+ * The browser's own modal dialog, open as long as it is drawn. Focus begins at `data-begin`, else at
+ * its first control, and goes back where it came from.
+ */
 export function Dialog({ heading, onClose, canClose = true, children }: Props) {
   const box = useRef<HTMLDialogElement>(null);
   const id = useId();
@@ -18,6 +21,7 @@ export function Dialog({ heading, onClose, canClose = true, children }: Props) {
     if (!element) return;
     const before = document.activeElement;
     element.showModal();
+    element.querySelector<HTMLElement>('[data-begin]')?.focus();
     return () => {
       element.close();
       if (before instanceof HTMLElement && before.isConnected) before.focus();

@@ -1,5 +1,5 @@
 import { z } from 'zod';
-import { watchInput, watchKinds } from '../../../server/contract/watches';
+import { WATCH_LIMITS, watchInput, watchKinds } from '../../../server/contract/watches';
 import { parseUnit } from '../../../server/domain/identifiers/parse-unit';
 import type { WatchInput, WatchView } from '../../lib/wire';
 
@@ -18,6 +18,8 @@ export const watchFormSchema = z.object({
   addresses: z.string(),
 });
 export type WatchFormValues = z.infer<typeof watchFormSchema>;
+
+const hoursFault = `a number from 1 to ${WATCH_LIMITS.hours.toLocaleString('en-US')}`;
 
 const parts = (text: string): string[] =>
   text
@@ -65,7 +67,8 @@ export function checkWatch(
   }
   const faults: Partial<Record<keyof WatchFormValues, string>> = {};
   for (const issue of result.error.issues) {
-    faults[blankOf(issue.path.map(String))] ??= issue.message;
+    const blank = blankOf(issue.path.map(String));
+    faults[blank] ??= blank === 'hours' ? hoursFault : issue.message;
   }
   return { faults };
 }

@@ -63,7 +63,6 @@ export function FleetTable({ filter, zone, scroller, onSort, dropFilters }: Prop
       onFocus={() => held.hold('focus')}
       onBlur={() => held.release('focus')}
     >
-      <ChangedLine changed={held.changed} onShow={held.show} />
       <LedgerTable
         caption="Cars and boxes"
         columns={fleetColumns(zone, now)}
@@ -78,6 +77,7 @@ export function FleetTable({ filter, zone, scroller, onSort, dropFilters }: Prop
           if (list.hasNextPage && !list.isFetching) void list.fetchNextPage();
         }}
       />
+      <ChangedLine changed={held.changed} onShow={held.show} />
       {list.isFetchingNextPage ? <LoadingRows of="further rows" rows={5} /> : null}
       {list.isError ? (
         <ErrorNotice
@@ -92,9 +92,12 @@ export function FleetTable({ filter, zone, scroller, onSort, dropFilters }: Prop
 
 function ChangedLine({ changed, onShow }: { changed: number; onShow: () => void }) {
   return (
-    <p role="status" className="sticky top-0 z-[2] h-0 text-right font-condensed text-table">
+    <p
+      role="status"
+      className="sticky bottom-0 z-[2] text-center font-condensed text-table max-md:bottom-52"
+    >
       {changed > 0 ? (
-        <span className="bg-wash-ochre px-8 py-2">
+        <span className="inline-block border border-rule-strong bg-wash-ochre px-12 py-4">
           {changed} changed,{' '}
           <button type="button" className="link" onClick={onShow}>
             show

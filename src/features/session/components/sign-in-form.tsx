@@ -40,6 +40,7 @@ export function SignInForm({ onSignedIn, email = '' }: Props) {
         label="Password"
         type="password"
         autoComplete="current-password"
+        data-begin={email ? true : undefined}
         fault={errors.password?.message ?? null}
         {...form.register('password')}
       />
