@@ -25,7 +25,7 @@ export interface PassageRecord {
 export interface RunRecord {
   antenna: number;
   tag: string;
-  reads: number;
+  count: number;
 }
 
 /** What the register knows about where antennas and tags are. */
@@ -99,7 +99,7 @@ function antennasOf(
   sides: Sides,
 ): SightingView['antennas'] {
   const reads = new Map<number, number>();
-  for (const run of runs) reads.set(run.antenna, (reads.get(run.antenna) ?? 0) + run.reads);
+  for (const run of runs) reads.set(run.antenna, (reads.get(run.antenna) ?? 0) + run.count);
   return [...reads]
     .sort(([a], [b]) => a - b)
     .map(([number, count]) => ({ number, side: sides.ofAntenna(siteId, number), reads: count }));

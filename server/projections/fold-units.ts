@@ -146,7 +146,7 @@ async function loadSightings(
     connection,
     `SELECT unit_id, read_point_id, first_at, first_antenna, first_tag, last_at, role, direction,
        pass_started_at, pass_ordinal
-     FROM passages WHERE :keys`,
+     FROM passages FORCE INDEX (passages_unit) WHERE :keys`,
     'unit_id = ? AND first_at >= ?',
     starts.map(({ unitId, beforeAt }) => [unitId, new Date(beforeAt)]),
   );

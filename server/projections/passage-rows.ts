@@ -1,5 +1,5 @@
 import type { UnitRef } from '../domain/movements/configuration.js';
-import type { Evidence, ReadGroup, UsableRead } from '../domain/movements/evidence.js';
+import { packEvidence, unpackEvidence } from '../domain/movements/pack-evidence.js';
 import type { PassMember, Pass } from '../domain/movements/passes.js';
 import type { Visit } from '../domain/movements/visits.js';
 import type { SqlValue } from '../lib/bulk.js';
@@ -106,35 +106,4 @@ export function passValues(readPointId: number, pass: Pass): SqlValue[] {
 export function visitsOfRow(row: PassageRow): Visit[] {
   const unit: UnitRef = row.unit_id;
   return unpackEvidence(row.evidence).map((evidence) => ({ unit, evidence }));
-}
-
-/** One visit: its reads `[ms, antenna, tag]`, or groups `[antenna, tag, first ms, last ms, n]`. */
-type Packed = { r: [number, number, string][] } | { g: [number, string, number, number, number][] };
-
-/** Evidence as the `evidence` column keeps it: JSON, the keys short, the reads as tuples. */
-export function packEvidence(visits: readonly Evidence[]): string {
-  const packed = visits.map((visit): Packed =>
-    visit.reads
-      ? { r: visit.reads.map(({ at, antenna, tag }) => [at, antenna, tag]) }
-      : { g: visit.groups.map((g) => [g.antenna, g.tag, g.firstAt, g.lastAt, g.count]) },
-  );
-  return JSON.stringify(packed);
-}
-
-/** Evidence from the `evidence` column. */
-export function unpackEvidence(text: string): Evidence[] {
-  return (JSON.parse(text) as Packed[]).map((packed): Evidence => {
-    if ('r' in packed) {
-      const reads = packed.r.map(([at, antenna, tag]): UsableRead => ({ at, antenna, tag }));
-      return { reads };
-    }
-    const groups = packed.g.map(([antenna, tag, firstAt, lastAt, count]): ReadGroup => ({
-      antenna,
-      tag,
-      firstAt,
-      lastAt,
-      count,
-    }));
-    return { groups };
-  });
 }

@@ -65,7 +65,7 @@ async function writeDifferences(
 ): Promise<void> {
   const rows = await byKeys<Record<string, SqlValue>>(
     connection,
-    `SELECT * FROM ${table} WHERE :keys`,
+    `SELECT * FROM ${table} FORCE INDEX (PRIMARY) WHERE :keys`,
     `unit_id = ? AND ${orderedBy} >= ?`,
     units.map((unit) => [unit.start.unitId, new Date(unit.changeable.since)]),
   );

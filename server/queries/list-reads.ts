@@ -9,7 +9,7 @@ import {
   type PassageRow,
 } from './list-sightings.js';
 import type { HistoryOf } from './list-stays.js';
-import { evidenceRuns } from './passage-evidence.js';
+import { countReads, unpackEvidence } from '../domain/movements/pack-evidence.js';
 import { ask, joinSql, sql, type Sql } from './sql.js';
 import { all } from './unit-filters.js';
 
@@ -90,7 +90,7 @@ function ledgerSelect(
   { from, to, limit }: ReadsQuery,
   cursor: Cursor | null,
 ): Sql {
-  const runs = evidenceRuns(passage.evidence);
+  const runs = countReads(unpackEvidence(passage.evidence));
   const antennas = [...new Set(runs.map((run) => run.antenna))];
   const tags = [...new Set(runs.map((run) => run.tag))].map((tag) => Buffer.from(tag));
   const conditions = [

@@ -19,7 +19,7 @@ import { listStays } from '../queries/list-stays.js';
 import { loadAntennaSides } from '../queries/load-antennas.js';
 import { loadTags, tagSideOf } from '../queries/load-tags.js';
 import { loadUnit } from '../queries/load-unit.js';
-import { evidenceRuns } from '../queries/passage-evidence.js';
+import { countReads, unpackEvidence } from '../domain/movements/pack-evidence.js';
 import { notFound } from '../errors.js';
 
 interface UnitSchemas {
@@ -81,7 +81,9 @@ export function unitHandlers(context: Context, schemas: UnitSchemas) {
     const sides = await sidesFor(context, open.unitId, passes.flat());
     const data = passes.flatMap(([first, ...others]) => {
       if (!first) return [];
-      const runs = [first, ...others].flatMap((passage) => evidenceRuns(passage.evidence));
+      const runs = [first, ...others].flatMap((passage) =>
+        countReads(unpackEvidence(passage.evidence)),
+      );
       return [presentSighting([first, ...others], runs, sides)];
     });
     response.json({ data, next });

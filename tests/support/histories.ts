@@ -1,3 +1,4 @@
+import { packEvidence } from '../../server/domain/movements/pack-evidence.js';
 import type { Database } from '../../server/lib/database.js';
 import { FAR, NEVER_SEEN } from '../../server/lib/sentinels.js';
 import type { ReadPoint } from '../../server/models/read-point.js';
@@ -178,7 +179,7 @@ export async function buildPassage(
       direction,
       direction === 'unknown' ? null : 'antennas',
       direction === 'unknown' ? 'presence' : 'crossing',
-      JSON.stringify([{ r: [[at.getTime(), antenna, unit.unitKey]] }]),
+      packEvidence([{ reads: [{ at: at.getTime(), antenna, tag: unit.unitKey }] }]),
     ],
   );
 }
