@@ -10,6 +10,8 @@ export interface Freshness {
 }
 
 let current: Freshness = { link: 'polling', heardAt: Date.now(), projectorLagMs: 0 };
+/** What the link was before answers stopped coming. */
+let before: Freshness['link'] = 'polling';
 const listeners = new Set<() => void>();
 
 /** Notes what the link has just shown; whoever draws freshness is told. */
@@ -20,10 +22,13 @@ export function noteFreshness(change: Partial<Freshness>): void {
 
 /** An answer came, by whatever way. */
 export const noteAnswer = (): void =>
-  noteFreshness({ link: current.link === 'lost' ? 'polling' : current.link, heardAt: Date.now() });
+  noteFreshness({ link: current.link === 'lost' ? before : current.link, heardAt: Date.now() });
 
 /** A request got no answer at all. */
-export const noteNoAnswer = (): void => noteFreshness({ link: 'lost' });
+export function noteNoAnswer(): void {
+  if (current.link !== 'lost') before = current.link;
+  noteFreshness({ link: 'lost' });
+}
 
 const subscribe = (listener: () => void) => {
   listeners.add(listener);

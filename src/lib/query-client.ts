@@ -15,10 +15,12 @@ export function createQueryClient(): QueryClient {
     defaultOptions: {
       queries: {
         staleTime: 15_000,
+        // The browser's word for being offline is not asked: a request that fails says it better.
+        networkMode: 'always',
         refetchOnWindowFocus: true,
         retry: (failures, error) => !isFinal(error) && failures < 2,
       },
-      mutations: { retry: false },
+      mutations: { retry: false, networkMode: 'always' },
     },
   });
 }

@@ -27,6 +27,7 @@ export function drawRing(
   ring.style.width = `${size}px`;
   ring.style.height = `${size}px`;
   if (isChosen) ring.dataset.chosen = '';
+  if (site.onHand === null) frame.dataset.outside = '';
   frame.append(ring, labelOf(words, place));
   const target = Math.max(smallestTarget, size);
   return L.divIcon({ className: 'map-site', html: frame, iconSize: [target, target] });

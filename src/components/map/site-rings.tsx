@@ -30,12 +30,15 @@ export function SiteRings({ map, zoom, sites, routes, chosen, onChoose }: Props)
       const radius = radii[index] ?? 0;
       const marker = L.marker([site.latitude, site.longitude], {
         icon: drawRing(site, radius, places[index] ?? null, site.code === chosen),
-        keyboard: true,
+        keyboard: site.onHand !== null,
+        interactive: site.onHand !== null,
         riseOnHover: true,
       });
       marker.on('click', () => onChoose(site.code)).addTo(group);
       const element = marker.getElement();
-      element?.setAttribute('aria-pressed', String(site.code === chosen));
+      if (site.onHand !== null) {
+        element?.setAttribute('aria-pressed', String(site.code === chosen));
+      }
       element?.setAttribute('data-site', site.code);
       element?.addEventListener('keydown', (event) => {
         if (event.key !== 'Enter' && event.key !== ' ') return;

@@ -2,13 +2,13 @@ import { useEffect } from 'react';
 import { useQueryClient } from '@tanstack/react-query';
 import type { QueryClient } from '@tanstack/react-query';
 import { noteFreshness } from '../../lib/live';
-import { api } from '../../lib/paths';
-import type { ChangedEvent } from '../../lib/wire';
+import { openEventStream } from './event-stream';
 import { createThrottle } from './throttle';
 
 const pollEvery = 20_000;
 /** Lists of what may have moved; forms and the session are left alone. */
 const moving = ['equipment', 'fleet', 'map'];
+const all = [...moving, 'alerts', 'watches', 'unit'];
 
 /**
  * Keeps what is on screen true while it is drawn: renews what an event names, and asks again
@@ -20,52 +20,46 @@ export function useLiveUpdates(isSignedIn: boolean): void {
 }
 
 function follow(client: QueryClient): () => void {
+  const renew = (keys: readonly string[][]) => {
+    for (const queryKey of keys) void client.invalidateQueries({ queryKey });
+  };
   const units = new Set<string>();
-  const renewMoving = createThrottle(1500, () => {
-    const changed = [...units];
+  const changed = createThrottle(1500, () => {
+    renew([...moving.map((key) => [key]), ...[...units].map((unitId) => ['unit', unitId])]);
     units.clear();
-    renew(client, changed);
   });
-  const everything = createThrottle(3000, () => {
-    for (const key of [...moving, 'alerts', 'watches', 'unit'])
-      void client.invalidateQueries({ queryKey: [key] });
-  });
-  const renewAll = () => everything.ask();
+  const everything = createThrottle(3000, () => renew(all.map((key) => [key])));
   const heard = () => noteFreshness({ link: 'live', heardAt: Date.now() });
-  const source = new EventSource(api.events);
-  source.addEventListener('ready', () => {
-    heard();
-    renewAll();
+  let wasDown = false;
+  const stream = openEventStream({
+    onOpen: (isAnew) => {
+      heard();
+      if (isAnew || wasDown) everything.ask();
+      wasDown = false;
+    },
+    onChanged: (unitIds) => {
+      heard();
+      unitIds.forEach((unitId) => units.add(unitId));
+      changed.ask();
+    },
+    onAlerts: () => {
+      heard();
+      renew([['alerts'], ['watches']]);
+    },
+    onDown: () => {
+      wasDown = true;
+      noteFreshness({ link: 'polling' });
+    },
   });
-  source.addEventListener('changed', (event) => {
-    heard();
-    const { unitIds } = JSON.parse(event.data as string) as ChangedEvent;
-    unitIds.forEach((id) => units.add(id));
-    renewMoving.ask();
-  });
-  source.addEventListener('alerts', () => {
-    heard();
-    void client.invalidateQueries({ queryKey: ['alerts'] });
-  });
-  source.addEventListener('reset', () => {
-    heard();
-    renewAll();
-  });
-  source.addEventListener('error', () => noteFreshness({ link: 'polling' }));
   const poll = setInterval(() => {
-    if (source.readyState !== EventSource.OPEN) renewAll();
+    stream.revive();
     // Nothing shows whether a silent stream still lives; one small answer does.
-    else void client.invalidateQueries({ queryKey: ['alerts', 'count'] });
+    renew(stream.isOpen() ? [['alerts', 'count']] : all.map((key) => [key]));
   }, pollEvery);
   return () => {
-    source.close();
+    stream.close();
     clearInterval(poll);
-    renewMoving.stop();
+    changed.stop();
     everything.stop();
   };
-}
-
-function renew(client: QueryClient, unitIds: string[]): void {
-  for (const key of moving) void client.invalidateQueries({ queryKey: [key] });
-  for (const unitId of unitIds) void client.invalidateQueries({ queryKey: ['unit', unitId] });
 }

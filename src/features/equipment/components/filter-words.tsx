@@ -75,7 +75,7 @@ export function FilterWords({ filter, sites, onSearch }: Props) {
       <SearchWord key={filter.search ?? ''} text={filter.search ?? ''} onSearch={onSearch} />
       {isNarrowed ? (
         <Link className="ml-6" to={paths.fleet(filter.sort ? { sort: filter.sort } : {})}>
-          drop all filters
+          drop all
         </Link>
       ) : null}
     </div>

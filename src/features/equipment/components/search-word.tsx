@@ -24,7 +24,7 @@ export function SearchWord({ text, onSearch }: Props) {
       <label htmlFor={id}>with</label>
       <input
         id={id}
-        className="blank w-[120px]"
+        className="blank w-[112px]"
         placeholder="mark or number"
         aria-label="With mark or number"
         value={typed}
