@@ -21,7 +21,8 @@ export function sayDuration(minutes: number): string {
   return count(Math.floor(minutes / minutesADay), 'day');
 }
 
-const count = (n: number, noun: string): string => `${n} ${noun}${n === 1 ? '' : 's'}`;
+/** The number and its noun stay on one line. */
+const count = (n: number, noun: string): string => `${n}\u00a0${noun}${n === 1 ? '' : 's'}`;
 
 /** Minutes from an instant to now; never negative. */
 export const minutesSince = (instant: string, now: number): number =>

@@ -56,10 +56,10 @@ describe('a length of time', () => {
     expect(formatDuration(minutes)).toBe(words);
   });
 
-  test('is one noun in a sentence', () => {
-    expect(sayDuration(1)).toBe('1 minute');
-    expect(sayDuration(47 * 60)).toBe('47 hours');
-    expect(sayDuration(6.4 * 1440)).toBe('6 days');
+  test('is one noun in a sentence, never parted from its number', () => {
+    expect(sayDuration(1)).toBe('1\u00a0minute');
+    expect(sayDuration(47 * 60)).toBe('47\u00a0hours');
+    expect(sayDuration(6.4 * 1440)).toBe('6\u00a0days');
   });
 });
 

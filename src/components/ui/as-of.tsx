@@ -13,7 +13,7 @@ export function AsOf({ zone }: { zone: string }) {
     <p
       role="status"
       aria-live="off"
-      className={`mono ml-auto pb-[14px] text-note ${isStale ? 'font-medium text-ochre' : 'text-ink-soft'}`}
+      className={`mono ml-auto pb-[14px] text-right text-note whitespace-normal ${isStale ? 'font-medium text-ochre' : 'text-ink-soft'}`}
     >
       as of {formatClock(freshness.heardAt, zone)}, {sayLink(freshness)}
     </p>
