@@ -11,6 +11,9 @@ export const fleetSummary = z
     quiet: z.number().int(),
     pastLimit: z.number().int(),
     readLast24h: z.number().int(),
+    holds: z
+      .object({ cars: z.boolean(), boxes: z.boolean() })
+      .meta({ description: 'What the total is made of, for its noun.' }),
     oldestPastLimit: z
       .object({
         unitId: z.string(),

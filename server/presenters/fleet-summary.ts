@@ -21,6 +21,7 @@ export function presentFleetSummary(
     quiet: counts.quiet,
     pastLimit: counts.pastLimit,
     readLast24h: counts.readLast24h,
+    holds: counts.holds,
     oldestPastLimit: oldest && {
       unitId: oldest.identity.compact,
       display: oldest.identity.display,

@@ -1,3 +1,4 @@
+import type { FleetSummary } from '../contract/fleet.js';
 import type { Database } from '../lib/database.js';
 import { unitIdsWithin, type UnitSource } from './narrow-units.js';
 import { ask, sql, type Sql } from './sql.js';
@@ -46,6 +47,23 @@ export async function countFleet(
     readLast24h: 0,
   };
   return { ...counts, total: counts.onHand + counts.enRoute + counts.unseen };
+}
+
+/** Which kinds of things the actor has to do with: an owner of cars alone is told of cars. */
+export async function kindsHeld(
+  db: Database,
+  sources: readonly UnitSource[],
+): Promise<FleetSummary['holds']> {
+  const [source, ...others] = sources;
+  if (source?.table !== 'visible_units' || others.length > 0) return { cars: true, boxes: true };
+  const owned = (kinds: Sql) => sql`EXISTS (SELECT 1 FROM units
+    WHERE owner_id = ${source.organisationId} AND kind IN (${kinds}) AND registered = 1)`;
+  const [row] = await ask<{ cars: number; boxes: number }>(
+    db,
+    sql`SELECT ${owned(sql`'car', 'locomotive', 'endOfTrain', 'other'`)} AS cars,
+      ${owned(sql`'container', 'trailer', 'chassis', 'generatorSet'`)} AS boxes`,
+  );
+  return { cars: Boolean(row?.cars), boxes: Boolean(row?.boxes) };
 }
 
 /** Of the units past their limit the one that has stood longest; null when there is none. */

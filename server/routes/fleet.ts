@@ -5,7 +5,7 @@ import type { Operation } from '../lib/openapi/operation.js';
 import { actorOf, requireUser } from '../middleware/require-user.js';
 import { validate } from '../middleware/validate.js';
 import { presentFleetSummary } from '../presenters/fleet-summary.js';
-import { countFleet, findOldestPastLimit } from '../queries/get-fleet-summary.js';
+import { countFleet, findOldestPastLimit, kindsHeld } from '../queries/get-fleet-summary.js';
 import { loadIdentities } from '../queries/load-equipment.js';
 import { unitSourcesOf } from '../queries/narrow-units.js';
 
@@ -17,15 +17,16 @@ export function fleetRoutes(context: Context, projectorLagMs: () => Promise<numb
   router.get('/fleet/summary', requireUser(context), validate({}), async (request, response) => {
     const now = clock.now();
     const sources = unitSourcesOf(actorOf(request));
-    const [counts, oldest, lag] = await Promise.all([
+    const [counts, holds, oldest, lag] = await Promise.all([
       countFleet(db, sources, now),
+      kindsHeld(db, sources),
       findOldestPastLimit(db, sources, now),
       projectorLagMs(),
     ]);
     const identities = await loadIdentities(db, oldest ? [oldest.unit_id] : [], now);
     const identity = oldest && identities.get(oldest.unit_id)?.[0];
     const named = oldest && identity ? { ...oldest, identity } : null;
-    const data = presentFleetSummary(counts, named, { now, projectorLagMs: lag });
+    const data = presentFleetSummary({ ...counts, holds }, named, { now, projectorLagMs: lag });
     response.json({ data });
   });
 

@@ -56,6 +56,7 @@ describe('the summary', () => {
       quiet: 1,
       pastLimit: 2,
       readLast24h: 3,
+      holds: { cars: true, boxes: false },
       oldestPastLimit: {
         unitId: 'QTKX2',
         display: 'QTKX 2',
