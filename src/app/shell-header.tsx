@@ -57,7 +57,7 @@ function WhoPanel({ session, onSignOut }: Props) {
         <span className="mono text-note text-ink-soft">{user.timeZone}</span>
       </p>
       <DeviceSettings />
-      <ul className="flex flex-col gap-8 text-table">
+      <ul className="flex flex-col text-table">
         <li>
           <Link to={paths.watches}>What you asked to be told</Link>
         </li>

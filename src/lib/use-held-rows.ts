@@ -1,4 +1,4 @@
-import { useEffect, useMemo, useRef, useState } from 'react';
+import { useCallback, useEffect, useMemo, useRef, useState } from 'react';
 
 /** A row as drawn; `gone` means it has left the list and stays, struck, until the person lets go. */
 export interface HeldRow<Row> {
@@ -20,7 +20,7 @@ export interface HeldRows<Row> {
 
 /**
  * Live rows that do not move under pointer, focus or scroll: while held, each row's facts are
- * renewed in place and only their order waits. `keyOf` must be stable.
+ * renewed in place and only their order waits. `keyOf` must be stable; `show`, `hold` and `release` are.
  */
 export function useHeldRows<Row>(fresh: Row[], keyOf: (row: Row) => string): HeldRows<Row> {
   const [held, setHeld] = useState<Row[] | null>(null);
@@ -30,18 +30,16 @@ export function useHeldRows<Row>(fresh: Row[], keyOf: (row: Row) => string): Hel
     latest.current = fresh;
   }, [fresh]);
   const view = useMemo(() => arrange(fresh, held, keyOf), [fresh, held, keyOf]);
-  return {
-    ...view,
-    show: () => setHeld(reasons.current.size > 0 ? latest.current : null),
-    hold: (why) => {
-      if (reasons.current.size === 0) setHeld(latest.current);
-      reasons.current.add(why);
-    },
-    release: (why) => {
-      reasons.current.delete(why);
-      if (reasons.current.size === 0) setHeld(null);
-    },
-  };
+  const show = useCallback(() => setHeld(reasons.current.size > 0 ? latest.current : null), []);
+  const hold = useCallback((why: string) => {
+    if (reasons.current.size === 0) setHeld(latest.current);
+    reasons.current.add(why);
+  }, []);
+  const release = useCallback((why: string) => {
+    reasons.current.delete(why);
+    if (reasons.current.size === 0) setHeld(null);
+  }, []);
+  return { ...view, show, hold, release };
 }
 
 /** Pure part of `useHeldRows`: the rows to draw and how many have changed place. */

@@ -6,6 +6,7 @@ import { parseUnit } from '../../../server/domain/identifiers/parse-unit';
 import { paths } from '../../lib/paths';
 import type { LookUpHit } from '../../lib/wire';
 import { lookUpQuery } from './api/look-up';
+import { singleHit } from './single-hit';
 
 const none: LookUpHit[] = [];
 
@@ -47,8 +48,8 @@ export function useLookUp(onDone: () => void) {
     const text = typed.trim();
     if (text === '') return;
     const found = await client.fetchQuery(lookUpQuery(text)).catch(() => undefined);
-    const [only, ...others] = found?.hits ?? [];
-    if (only && others.length === 0) goTo(only);
+    const meant = singleHit(text, found?.hits ?? []);
+    if (meant) goTo(meant);
     else setOpen(true);
   };
   const onKeyDown = (event: KeyboardEvent) => {

@@ -1,4 +1,4 @@
-import { useMemo } from 'react';
+import { useEffect, useMemo } from 'react';
 import { useInfiniteQuery } from '@tanstack/react-query';
 import { EmptyNotice, ErrorNotice, LoadingRows } from '../../../components/ui/notice';
 import { LedgerTable } from '../../../components/ui/ledger-table';
@@ -7,6 +7,7 @@ import { StateMark } from '../../../components/ui/state-mark';
 import { paths } from '../../../lib/paths';
 import type { FleetFilter } from '../../../lib/paths';
 import { useHeldRows } from '../../../lib/use-held-rows';
+import type { HeldRows } from '../../../lib/use-held-rows';
 import { useMedia } from '../../../lib/use-media';
 import { useNow } from '../../../lib/use-now';
 import { formatInstant } from '../../../lib/times';
@@ -25,6 +26,9 @@ interface Props {
   dropFilters: React.ReactNode;
 }
 
+/** Pixels from the head of the list that count as reading further down. */
+const scrolledAway = 40;
+
 const keyOf = (row: EquipmentItem) => row.unitId;
 
 /** A car that moved between two pages while they were fetched stands in both: its first place counts. */
@@ -41,6 +45,7 @@ export function FleetTable({ filter, zone, scroller, onSort, dropFilters }: Prop
     [list.data],
   );
   const held = useHeldRows(fresh, keyOf);
+  useHoldWhileScrolled(scroller, held);
   const isNarrow = useMedia('(max-width: 559px)');
   const now = useNow();
   if (list.isPending) return <LoadingRows of="the list" rows={20} />;
@@ -88,6 +93,25 @@ export function FleetTable({ filter, zone, scroller, onSort, dropFilters }: Prop
       ) : null}
     </div>
   );
+}
+
+/** Rows also keep still while the list stands scrolled away from its head. */
+function useHoldWhileScrolled(
+  scroller: HTMLElement | null,
+  { hold, release }: HeldRows<EquipmentItem>,
+) {
+  useEffect(() => {
+    const target = scroller ?? window;
+    const look = () => {
+      const isAway = (scroller ? scroller.scrollTop : window.scrollY) > scrolledAway;
+      (isAway ? hold : release)('scroll');
+    };
+    target.addEventListener('scroll', look, { passive: true });
+    return () => {
+      target.removeEventListener('scroll', look);
+      release('scroll');
+    };
+  }, [scroller, hold, release]);
 }
 
 function ChangedLine({ changed, onShow }: { changed: number; onShow: () => void }) {
