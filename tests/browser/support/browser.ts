@@ -2,23 +2,29 @@ import AxeBuilder from '@axe-core/playwright';
 import { chromium, type Browser, type BrowserContextOptions, type Page } from 'playwright-core';
 import { expect } from 'vitest';
 
-/** Debian's Chromium; as root it runs without its sandbox. */
+/** Debian's Chromium, which finds no machine but this one; as root it runs without its sandbox. */
 export function openBrowser(): Promise<Browser> {
   return chromium.launch({
     executablePath: '/usr/bin/chromium',
-    args: process.getuid?.() === 0 ? ['--no-sandbox'] : [],
+    args: [
+      ...(process.getuid?.() === 0 ? ['--no-sandbox'] : []),
+      '--disable-dev-shm-usage',
+      '--no-first-run',
+      '--disable-background-networking',
+      '--host-resolver-rules=MAP * ~NOTFOUND, EXCLUDE 127.0.0.1',
+    ],
   });
 }
 
-/** A page with what went wrong on it; `noise` grows with errors on its console and in its scripts. */
+/** A page with what went wrong on it: errors on its console and in its scripts, requests elsewhere. */
 export interface WatchedPage {
   page: Page;
   noise: string[];
   close: () => Promise<void>;
 }
 
-/** Being signed out is asked for and answered with 401, which a browser always reports. */
-const asked = /status of 401/;
+/** Being signed out, and a car that one may not see: both are asked for, and a browser reports both. */
+const asked = /status of 40[14]/;
 
 /** Opens a page of its own cookie jar; addresses without host go to `address`. */
 export async function openPage(
@@ -32,17 +38,22 @@ export async function openPage(
     reducedMotion: 'reduce',
     ...options,
   });
-  const page = await context.newPage();
   const noise: string[] = [];
-  page.on('pageerror', (error) => noise.push(error.stack ?? error.message));
-  page.on('console', (line) => {
+  // What the policy forbids is said on the console, as an error, before anything is sent.
+  context.on('request', (request) => {
+    const url = new URL(request.url());
+    const isOwn = url.origin === address || ['data:', 'blob:', 'about:'].includes(url.protocol);
+    if (!isOwn) noise.push(`asked ${request.url()}`);
+  });
+  context.on('weberror', (error) => noise.push(error.error().stack ?? error.error().message));
+  context.on('console', (line) => {
     if (line.type() === 'error' && !asked.test(line.text())) noise.push(line.text());
   });
-  return { page, noise, close: () => context.close() };
+  return { page: await context.newPage(), noise, close: () => context.close() };
 }
 
 /** Fails with each finding of axe (WCAG 2.2 A and AA, best practice) and where it stands. */
-export async function expectNoAxeFindings(page: Page): Promise<void> {
+export async function expectNoAxeFindings(page: Page, where: string): Promise<void> {
   const { violations } = await new AxeBuilder({ page })
     .withTags(['wcag2a', 'wcag2aa', 'wcag21a', 'wcag21aa', 'wcag22aa', 'best-practice'])
     .analyze();
@@ -51,5 +62,5 @@ export async function expectNoAxeFindings(page: Page): Promise<void> {
       ({ target, failureSummary }) => `${id}: ${help} at ${target.join(' ')}; ${failureSummary}`,
     ),
   );
-  expect(findings).toEqual([]);
+  expect(findings, where).toEqual([]);
 }

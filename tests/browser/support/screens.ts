@@ -58,3 +58,15 @@ export async function askToBeTold(page: Page, asked: AskedWatch): Promise<void> 
   await dialog.getByRole('button', { name: 'Tell me', exact: true }).click();
   await dialog.waitFor({ state: 'detached' });
 }
+
+/** The page's opening sentence, once it says this. */
+export const heading = (page: Page, name: RegExp): Locator =>
+  page.getByRole('heading', { level: 1, name });
+
+/** The row of the alerts about a car that also says this. */
+export const alertRow = (page: Page, display: string, says: string): Locator =>
+  page
+    .getByRole('table', { name: 'Alerts' })
+    .getByRole('row')
+    .filter({ hasText: display })
+    .filter({ hasText: says });
