@@ -53,8 +53,11 @@ export function formatInstant(instant: string, zone: string, now: number): strin
   const at = Date.parse(instant);
   const parts = partsOf(at, zone);
   const clock = `${parts.hour}:${parts.minute}`;
-  const near = Math.abs(now - at) < weekMilliseconds - hourMilliseconds;
-  const otherYear = partsOf(now, zone).year === parts.year ? '' : ` ${parts.year}`;
+  const today = partsOf(now, zone);
+  // Last Tuesday is not called Tuesday on a Tuesday.
+  const isOtherToday = today.weekday === parts.weekday && today.day !== parts.day;
+  const near = Math.abs(now - at) < weekMilliseconds - hourMilliseconds && !isOtherToday;
+  const otherYear = today.year === parts.year ? '' : ` ${parts.year}`;
   const day = near ? parts.weekday : `${parts.day} ${parts.month}${otherYear}`;
   const twice = isRepeated(at, zone, parts) ? ` ${parts.timeZoneName}` : '';
   return `${day} ${clock}${twice}`;

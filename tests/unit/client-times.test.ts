@@ -20,6 +20,11 @@ describe('an instant on screen', () => {
     expect(formatInstant('2026-11-24T13:41:00.000Z', chicago, now)).toBe('24 Nov 07:41');
   });
 
+  test('has its date when its weekday is today’s and it was not today', () => {
+    expect(formatInstant('2026-11-25T00:19:00.000Z', chicago, now)).toBe('24 Nov 18:19');
+    expect(formatInstant('2026-12-01T13:03:00.000Z', chicago, now)).toBe('Tue 07:03');
+  });
+
   test('has its year when that is another one', () => {
     expect(formatInstant('2025-12-31T18:00:00.000Z', chicago, now)).toBe('31 Dec 2025 12:00');
   });
