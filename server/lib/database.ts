@@ -1,6 +1,7 @@
 import '../config/utc.js';
 import mariadb, { type Pool, type PoolConnection } from 'mariadb';
 import { Sequelize, Transaction } from 'sequelize';
+import throwOnOmittedAttributes from 'sequelize-strict-attributes';
 
 /** Both ways to the one database: Sequelize for records, the bare pool for bulk SQL. */
 export interface Database {
@@ -56,6 +57,7 @@ export function openDatabase(url: string, options: { connections?: number } = {}
     pool: { max: connections },
     define: { underscored: true, timestamps: false, freezeTableName: true },
   });
+  throwOnOmittedAttributes(sequelize);
   return {
     sequelize,
     pool,
