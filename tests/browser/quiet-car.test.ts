@@ -2,14 +2,7 @@ import { expect, test } from 'vitest';
 import { buildPerson, PASSWORD } from '../support/factories.js';
 import { linkIn } from './support/mail-link.js';
 import { buildCars, buildYards, cross } from './support/railway.js';
-import {
-  alertRow,
-  askToBeTold,
-  fillSignIn,
-  heading,
-  lookUp,
-  signIn,
-} from './support/screens.js';
+import { alertRow, askToBeTold, fillSignIn, heading, lookUp, signIn } from './support/screens.js';
 import { usePortal } from './support/use-portal.js';
 
 const { db, portal, open } = usePortal(75);

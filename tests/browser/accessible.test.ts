@@ -1,0 +1,87 @@
+import type { Page } from 'playwright-core';
+import { expect, test } from 'vitest';
+import { buildPerson, PASSWORD } from '../support/factories.js';
+import { buildWatch } from '../support/watches.js';
+import { expectNoAxeFindings } from './support/browser.js';
+import { buildCars, buildYards, cross } from './support/railway.js';
+import { alertRow, heading, ledgerRows, signIn } from './support/screens.js';
+import { usePortal } from './support/use-portal.js';
+
+const { db, portal, open } = usePortal(100);
+const numbers = Array.from({ length: 32 }, (_, index) => index + 1);
+
+/** Looks at the page as it stands in both widths, on light and dark paper, and for sideways scrolling. */
+async function expectAccessible(page: Page, what: string): Promise<void> {
+  for (const width of [1440, 360]) {
+    await page.setViewportSize({ width, height: 900 });
+    await page.emulateMedia({ colorScheme: 'light' });
+    await expectNoAxeFindings(page, `${what}, ${width} px, light`);
+    await page.emulateMedia({ colorScheme: 'dark' });
+    await expectNoAxeFindings(page, `${what}, ${width} px, dark`, 'colours');
+    const across = await page.evaluate(() => document.documentElement.scrollWidth);
+    expect(across, `${what} in ${width} px`).toBeLessThanOrEqual(width);
+  }
+  await page.setViewportSize({ width: 1440, height: 900 });
+}
+
+/** A fleet with a quiet car, one past its limit, a watch and its alerts; its owner is signed in. */
+async function signedIn(): Promise<Page> {
+  const { alder, cairn } = await buildYards(db, portal());
+  const organisation = await buildCars(db, numbers);
+  const owner = await buildPerson(db, { roles: ['owner'], organisation });
+  await cross(portal(), alder, [1], 'in');
+  await cross(portal(), cairn, [2], 'in');
+  await portal().later(1);
+  await cross(portal(), alder, [1], 'out');
+  await buildWatch(db, owner, { name: 'Gone quiet', createdAt: portal().clock.now() });
+  await portal().later(96);
+  await cross(portal(), alder, numbers.slice(2), 'in');
+  const page = await open();
+  await signIn(page, owner.email, PASSWORD);
+  return page;
+}
+
+test('the sign-in page can be used by everyone', async () => {
+  const page = await open();
+  await page.goto('/sign-in');
+  await page.getByRole('heading', { name: 'Sign in' }).waitFor();
+  await expectAccessible(page, 'sign-in');
+  await page.getByRole('button', { name: 'Sign in' }).click();
+  await page.getByText('Your password is wanted here.').waitFor();
+  await expectAccessible(page, 'sign-in with faults');
+});
+
+test('Fleet can be used by everyone', async () => {
+  const page = await signedIn();
+  await page.locator('.map-site[data-site="ALDER"]').waitFor();
+  await ledgerRows(page).first().waitFor();
+  await expectAccessible(page, 'Fleet');
+  await page.goto('/fleet?search=nothing');
+  await page.getByText('Nothing is left under these filters.').waitFor();
+  await expectAccessible(page, 'Fleet filtered to nothing');
+});
+
+test("a car's page and the dialog of a watch can be used by everyone", async () => {
+  const page = await signedIn();
+  await page.goto('/equipment/QTKX1');
+  await heading(page, /quiet/).waitFor();
+  await page.getByRole('table', { name: 'Passes it was read in' }).waitFor();
+  await page.getByRole('table', { name: 'Stays and legs' }).waitFor();
+  await expectAccessible(page, 'a car');
+  await page.getByRole('button', { name: /^Tell me when/ }).click();
+  await page.getByText(/^It covers/).waitFor();
+  await expectAccessible(page, 'the dialog of a watch');
+});
+
+test('Alerts and watches can be used by everyone', async () => {
+  const page = await signedIn();
+  await page.goto('/alerts');
+  await alertRow(page, 'QTKX 1', 'Quiet since Alder Bend Yard').waitFor();
+  await expectAccessible(page, 'Alerts');
+  await page.goto('/watches');
+  await page.getByText('Gone quiet').waitFor();
+  await expectAccessible(page, 'watches');
+  await page.getByRole('button', { name: /^Change/ }).click();
+  await page.getByText(/^It covers/).waitFor();
+  await expectAccessible(page, 'the dialog of a change');
+});
