@@ -55,13 +55,18 @@ export function placesOf(vehicles: Vehicle[]): number[] {
   });
 }
 
-/** Milliseconds of the epoch at which each vehicle's middle first is at the read point's zero. */
+/**
+ * When each vehicle's middle goes over the read point for good, in milliseconds: of a train that
+ * stops, backs over it and goes on, the last time where it leaves a site, else the first.
+ */
 export function momentsOf(pass: Pass): number[] {
   const places = placesOf(pass.vehicles);
+  const leaves = pass.purpose === 'depart' || pass.purpose === 'sortOut';
   return pass.vehicles.map(({ unit }, index) => {
     const middle = (places[index] ?? 0) + unit.lengthDm / 20;
-    const [first] = crossings(pass.motion, middle);
-    return pass.at + Math.round((first?.at ?? 0) * 1000);
+    const moments = crossings(pass.motion, middle);
+    const decisive = leaves ? moments.at(-1) : moments[0];
+    return pass.at + Math.round((decisive?.at ?? 0) * 1000);
   });
 }
 

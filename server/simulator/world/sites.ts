@@ -39,5 +39,5 @@ export const sites: DemoSite[] = [
   site('HOLLIN', 'Hollin Shop', 'shop', [43.32, -92.86], 336),
   site('WICKETT', 'Wickett Line', 'line', [44.6, -91.82], 96),
   site('SEDGE', 'Sedge Crossing', 'line', [46.52, -94.02], 96),
-  site('MARTEN', 'Marten Falls Line', 'line', [46.72, -89.75], 96, 'America/Detroit'),
+  site('MARTEN', 'Marten Falls Line', 'line', [46.05, -89.95], 96, 'America/Detroit'),
 ];
