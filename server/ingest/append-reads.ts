@@ -4,7 +4,8 @@ import type { SoundRead } from './judge-read.js';
 import { sqlBytes, sqlCode, sqlInstant } from './sql-literals.js';
 
 /** A sound read with the door's verdict. */
-export interface DoorRead extends SoundRead {
+export interface DoorRead {
+  read: SoundRead;
   hold: HoldCode | null;
 }
 
@@ -12,7 +13,7 @@ export interface Batch {
   siteId: number;
   receivedAt: Date;
   configVersion: number;
-  /** Sound reads in any order; each `index` once. */
+  /** Sound reads in any order; each index once. */
   reads: DoorRead[];
 }
 
@@ -41,31 +42,31 @@ async function insertReads(
   batchId: number,
   { siteId, receivedAt, configVersion, reads }: Batch,
 ): Promise<DoorRead[]> {
-  const rows = reads.toSorted(byNaturalKey);
-  const shared = `${configVersion},${sqlInstant(receivedAt.getTime())}`;
-  const values = rows.map(({ index, antenna, tag, readAtMs, rssi, count, hold }) => {
-    const facts = `${sqlBytes(tag.value)},${sqlInstant(readAtMs)},${rssi},${count}`;
-    return `(${batchId},${index},${siteId},${antenna},${facts},${sqlCode(hold)},${shared})`;
+  const shared = `(${batchId},${siteId},${configVersion},${sqlInstant(receivedAt.getTime())}`;
+  const values = reads.toSorted(byNaturalKey).map(({ read, hold }) => {
+    const { index, antenna, tag, readAtMs, rssi, count } = read;
+    const key = `${index},${antenna},${sqlBytes(tag.value)},${sqlInstant(readAtMs)}`;
+    return `${shared},${key},${rssi},${count},${sqlCode(hold)})`;
   });
   // Setting a column to itself makes a repeat count 0 rows and keeps the first read as it came;
   // unlike IGNORE it lets every other fault through.
   const result = await connection.query<UpsertResult>(
-    `INSERT INTO \`reads\` (batch_id, seq, site_id, antenna_no, tag, read_at, rssi, read_count,
-       hold_code, config_version, received_at)
+    `INSERT INTO \`reads\` (batch_id, site_id, config_version, received_at, seq, antenna_no, tag,
+       read_at, rssi, read_count, hold_code)
      VALUES ${values.join()}
      ON DUPLICATE KEY UPDATE antenna_no = \`reads\`.antenna_no`,
   );
-  if (result.affectedRows === rows.length) return reads;
+  if (result.affectedRows === reads.length) return reads;
   const present = await connection.query<{ seq: number }[]>(
     'SELECT seq FROM `reads` WHERE batch_id = ?',
     [batchId],
   );
   const seqs = new Set(present.map((row) => row.seq));
-  return reads.filter((read) => seqs.has(read.index));
+  return reads.filter(({ read }) => seqs.has(read.index));
 }
 
 /** One order for all writers, so that two of them never wait for each other in a circle. */
-function byNaturalKey(a: DoorRead, b: DoorRead): number {
+function byNaturalKey({ read: a }: DoorRead, { read: b }: DoorRead): number {
   if (a.antenna !== b.antenna) return a.antenna - b.antenna;
   if (a.readAtMs !== b.readAtMs) return a.readAtMs - b.readAtMs;
   if (a.tag.value === b.tag.value) return a.index - b.index;
@@ -78,9 +79,9 @@ async function insertHeld(
   { siteId, configVersion }: Batch,
   stored: DoorRead[],
 ): Promise<void> {
-  const held = stored.filter((read) => read.hold !== null);
+  const held = stored.filter(({ hold }) => hold !== null);
   if (held.length === 0) return;
-  const values = held.map(({ index, readAtMs, tag, hold }) => {
+  const values = held.map(({ read: { index, readAtMs, tag }, hold }) => {
     const facts = `${sqlInstant(readAtMs)},${siteId},${sqlBytes(tag.value)},${sqlCode(hold)}`;
     return `(${batchId},${index},${facts},${configVersion})`;
   });

@@ -24,7 +24,7 @@ export interface IngestInput {
 export async function ingestReads(db: Database, input: IngestInput): Promise<IngestAnswer> {
   const judged = input.reads.map(judgeRead);
   const sound = judged.filter((read) => 'tag' in read);
-  const rejected = judged.filter((read) => 'code' in read);
+  const rejected = sound.length < judged.length ? judged.filter((read) => 'code' in read) : [];
   if (sound.length === 0) return answer(input.reads.length, rejected, []);
   const stored = await asUnavailable(() =>
     withTransaction(db.pool, (connection) => append(db, connection, input, sound)),
@@ -49,12 +49,12 @@ async function append(
     siteId: site.id,
     receivedAt,
     configVersion: door.version,
-    reads: sound.map((read) => ({ ...read, hold: holdOf(read, sight) })),
+    reads: sound.map((read) => ({ read, hold: holdOf(read, sight) })),
   });
 }
 
 function answer(total: number, rejected: RejectedRead[], stored: DoorRead[]): IngestAnswer {
-  const held = stored.flatMap(({ index, hold }) => (hold ? [heldProblem(index, hold)] : []));
+  const held = stored.flatMap(({ read, hold }) => (hold ? [heldProblem(read.index, hold)] : []));
   return {
     accepted: stored.length - held.length,
     duplicates: total - rejected.length - stored.length,

@@ -34,18 +34,21 @@ export function judgeRead(raw: unknown, index: number): SoundRead | RejectedRead
   if (antenna == null) return reject(index, 'missing-antenna', 'antenna is missing.');
   const trimmed = typeof tag === 'string' ? tag.trim() : tag;
   if (trimmed == null || trimmed === '') return reject(index, 'missing-tag', 'tag is missing.');
-  if (typeof trimmed === 'string' && isTooLong(trimmed)) {
+  // Each tag is read several times by several antennas: its text is looked through once.
+  const known = resolved.get(trimmed as string);
+  if (!known && typeof trimmed === 'string' && isTooLong(trimmed)) {
     return reject(index, 'tag-too-long', `tag has more than ${INGEST_BOUNDS.tagBytes} bytes.`);
   }
   if (readAt == null) return reject(index, 'missing-time', 'readAt is missing.');
   const readAtMs = typeof readAt === 'string' ? parseInstant(readAt) : null;
   if (readAtMs === null) return reject(index, 'invalid-time', INVALID_TIME);
-  const fault = faultOfValues(antenna, trimmed, rssi, count);
+  const fault =
+    faultOfAntenna(antenna) ?? (known ? null : faultOfTag(trimmed)) ?? faultOfExtras(rssi, count);
   if (fault !== null) return reject(index, 'bad-value', fault);
   return {
     index,
     antenna: antenna as number,
-    tag: resolveOnce(trimmed as string),
+    tag: known ?? resolveNew(trimmed as string, tag as string),
     readAtMs,
     rssi: (rssi ?? null) as number | null,
     count: (count ?? null) as number | null,
@@ -59,13 +62,11 @@ function reject(index: number, code: RejectCode, detail: string): RejectedRead {
 const MOST_RESOLVED = 20_000;
 const resolved = new Map<string, ResolvedTag>();
 
-/** Each tag is read several times by several antennas: what it says is worked out once. */
-function resolveOnce(text: string): ResolvedTag {
-  const known = resolved.get(text);
-  if (known) return known;
+function resolveNew(trimmed: string, sent: string): ResolvedTag {
+  const tag = resolveTag(trimmed);
   if (resolved.size >= MOST_RESOLVED) resolved.clear();
-  const tag = resolveTag(text);
-  resolved.set(text, tag);
+  // A text cut out of a long one keeps all of it in memory.
+  if (sent.length <= INGEST_BOUNDS.tagBytes) resolved.set(trimmed, tag);
   return tag;
 }
 
@@ -79,10 +80,16 @@ function isTooLong(text: string): boolean {
   );
 }
 
-function faultOfValues(antenna: unknown, tag: unknown, rssi: unknown, count: unknown) {
-  if (!isWholeNumber(antenna, 1, 255)) return 'antenna must be a whole number from 1 to 255.';
+function faultOfAntenna(antenna: unknown): string | null {
+  return isWholeNumber(antenna, 1, 255) ? null : 'antenna must be a whole number from 1 to 255.';
+}
+
+function faultOfTag(tag: unknown): string | null {
   if (typeof tag !== 'string') return 'tag must be text.';
-  if (/\p{Surrogate}/u.test(tag)) return 'tag holds half a character.';
+  return /\p{Surrogate}/u.test(tag) ? 'tag holds half a character.' : null;
+}
+
+function faultOfExtras(rssi: unknown, count: unknown): string | null {
   if (rssi != null && !(typeof rssi === 'number' && Math.abs(rssi) <= MOST_RSSI)) {
     return `rssi must be a number from -${MOST_RSSI} to ${MOST_RSSI}.`;
   }

@@ -23,8 +23,13 @@ export function parseInstant(text: string): number | null {
   return ms >= EARLIEST && ms < END ? ms : null;
 }
 
+const ZERO = 48;
+
+/** The number that the digits from `from` to before `to` make; without cutting the text apart. */
 function digits(text: string, from: number, to: number): number {
-  return Number(text.slice(from, to));
+  let value = 0;
+  for (let at = from; at < to; at += 1) value = value * 10 + text.charCodeAt(at) - ZERO;
+  return value;
 }
 
 const DAYS = [31, 28, 31, 30, 31, 30, 31, 31, 30, 31, 30, 31];
@@ -36,14 +41,21 @@ function daysOf(year: number, month: number): number {
 
 /** Whole milliseconds of the fraction that may follow the seconds. */
 function fractionOf(text: string): number {
-  const fraction = /^\.(\d{1,3})/.exec(text.slice(19, 23))?.[1] ?? '';
-  return Number(fraction.padEnd(3, '0'));
+  if (text[19] !== '.') return 0;
+  let end = 20;
+  while (end < 23 && isDigit(text.charCodeAt(end))) end += 1;
+  return digits(text, 20, end) * 10 ** (23 - end);
+}
+
+function isDigit(code: number): boolean {
+  return code >= ZERO && code < ZERO + 10;
 }
 
 /** Minutes east of UTC; null where no clock can be. */
 function offsetOf(text: string): number | null {
-  if (/[Zz]$/.test(text)) return 0;
-  const [hours, minutes] = [Number(text.slice(-5, -3)), Number(text.slice(-2))];
+  const end = text.length;
+  if (text[end - 1] === 'Z' || text[end - 1] === 'z') return 0;
+  const [hours, minutes] = [digits(text, end - 5, end - 3), digits(text, end - 2, end)];
   if (hours > 23 || minutes > 59) return null;
-  return (hours * 60 + minutes) * (text.at(-6) === '-' ? -1 : 1);
+  return (hours * 60 + minutes) * (text[end - 6] === '-' ? -1 : 1);
 }

@@ -7,9 +7,19 @@ export function sqlBytes(text: string): string {
   return `X'${Buffer.from(text).toString('hex')}'`;
 }
 
+const MILLISECONDS = Array.from({ length: 1000 }, (_, ms) => String(ms).padStart(3, '0'));
+let lastSecond = NaN;
+let lastSecondText = '';
+
 /** A UTC instant for a DATETIME(3); the host's own time zone plays no part. */
 export function sqlInstant(ms: number): string {
-  return `'${new Date(ms).toISOString().slice(0, 23)}'`;
+  const second = Math.floor(ms / 1000);
+  // Reads come in the order of time: most of them share their second with the one before.
+  if (second !== lastSecond) {
+    lastSecondText = new Date(second * 1000).toISOString().slice(0, 19);
+    lastSecond = second;
+  }
+  return `'${lastSecondText}.${MILLISECONDS[ms - second * 1000]}'`;
 }
 
 /** One of our own codes, or NULL. Throws for anything that is not lower case and hyphens. */
