@@ -118,7 +118,7 @@ function UnitDocument({ answer: { data: unit, can }, session }: DocumentProps) {
           <UnitJourney unitId={unit.unitId} zone={zone} now={now} from={span.from} />
         </UnitSection>
         <UnitSection id="miles" heading="Miles">
-          <UnitMiles unitId={unit.unitId} />
+          <UnitMiles unitId={unit.unitId} kind={unit.kind} />
         </UnitSection>
         <UnitSection id="tags" heading="Tags">
           <UnitTags unit={unit} zone={zone} now={now} />

@@ -4,6 +4,15 @@ import type { LegView, StayView } from '../../lib/wire';
 export type JourneyLine =
   { kind: 'stay'; id: string; stay: StayView } | { kind: 'leg'; id: string; leg: LegView };
 
+const ridingKinds = new Set(['container', 'trailer', 'chassis', 'generatorSet']);
+
+/** True of what goes by rail on a car: its miles are those of the cars under it. */
+export const rides = (kind: string): boolean => ridingKinds.has(kind);
+
+/** Out and back unseen, at the same site: nobody knows of a way between. */
+const goesNowhere = ({ from, to, railMetres, minutes }: LegView): boolean =>
+  from.code === to.code && railMetres === 0 && minutes === 0;
+
 /** Stays and legs in one row of time, newest first. */
 export function journeyLines(stays: StayView[], legs: LegView[]): JourneyLine[] {
   const lines: (JourneyLine & { at: string })[] = [
@@ -13,12 +22,14 @@ export function journeyLines(stays: StayView[], legs: LegView[]): JourneyLine[] 
       stay,
       at: stay.arrivedAt ?? stay.firstSeenAt,
     })),
-    ...legs.map((leg): JourneyLine & { at: string } => ({
-      kind: 'leg',
-      id: `leg-${leg.from.code}-${leg.departedAt}`,
-      leg,
-      at: leg.departedAt,
-    })),
+    ...legs
+      .filter((leg) => !goesNowhere(leg))
+      .map((leg): JourneyLine & { at: string } => ({
+        kind: 'leg',
+        id: `leg-${leg.from.code}-${leg.departedAt}`,
+        leg,
+        at: leg.departedAt,
+      })),
   ];
   return lines.sort((a, b) => Date.parse(b.at) - Date.parse(a.at));
 }

@@ -5,7 +5,7 @@ import { distanceHeading, formatDistance } from '../../../lib/distances';
 import { usePreferences } from '../../../lib/preferences';
 import { counted } from '../../../lib/words';
 import { movementsQuery } from '../api/movements';
-import { metresByMonth } from '../journey';
+import { metresByMonth, rides } from '../journey';
 
 const monthName = new Intl.DateTimeFormat('en-US', {
   month: 'long',
@@ -13,8 +13,19 @@ const monthName = new Intl.DateTimeFormat('en-US', {
   timeZone: 'UTC',
 });
 
-/** Rail miles by month of arrival, all that is kept. */
-export function UnitMiles({ unitId }: { unitId: string }) {
+/** Rail miles by month of arrival, all that is kept; of what rides, why there are none yet. */
+export function UnitMiles({ unitId, kind }: { unitId: string; kind: string }) {
+  return rides(kind) ? (
+    <p>
+      Not counted yet. The miles of a box are those of the cars it rides on, and which cars those
+      were is not worked out yet.
+    </p>
+  ) : (
+    <Miles unitId={unitId} />
+  );
+}
+
+function Miles({ unitId }: { unitId: string }) {
   const movements = useQuery(movementsQuery(unitId, null));
   const { distance } = usePreferences();
   if (movements.isPending) return <LoadingRows of="the miles" rows={3} />;
