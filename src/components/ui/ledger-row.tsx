@@ -27,7 +27,7 @@ export function LedgerRow<Row>({ index, entry, table, isCurrent, measure }: Prop
           <RowLink to={table.linkOf?.(row)} isCurrent={isCurrent} block>
             {table.narrow(row)}
           </RowLink>
-          {table.narrowAct?.(row)}
+          {table.narrowAct ? <div className="acts">{table.narrowAct(row)}</div> : null}
         </td>
       ) : (
         table.columns.map((column, place) => (
