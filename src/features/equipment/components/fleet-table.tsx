@@ -46,6 +46,11 @@ export function FleetTable({ filter, zone, scroller, onSort, dropFilters }: Prop
   );
   const held = useHeldRows(fresh, keyOf);
   useHoldWhileScrolled(scroller, held);
+  const show = () => {
+    // The word that was pressed goes away, and what goes away with the focus on it never loses it.
+    held.release('focus');
+    held.show();
+  };
   const isNarrow = useMedia('(max-width: 559px)');
   const now = useNow();
   if (list.isPending) return <LoadingRows of="the list" rows={20} />;
@@ -82,7 +87,7 @@ export function FleetTable({ filter, zone, scroller, onSort, dropFilters }: Prop
           if (list.hasNextPage && !list.isFetching) void list.fetchNextPage();
         }}
       />
-      <ChangedLine changed={held.changed} onShow={held.show} />
+      <ChangedLine changed={held.changed} onShow={show} />
       {list.isFetchingNextPage ? <LoadingRows of="further rows" rows={5} /> : null}
       {list.isError ? (
         <ErrorNotice
