@@ -3,7 +3,7 @@ import { Counted, Sentence } from '../../../components/ui/sentence';
 import { sayDuration } from '../../../lib/durations';
 import { formatClock } from '../../../lib/times';
 import { paths } from '../../../lib/paths';
-import { counted } from '../../../lib/words';
+import { counted, sayKind } from '../../../lib/words';
 import type { FleetSummary } from '../../../lib/wire';
 
 interface Props {
@@ -30,13 +30,18 @@ export function FleetSentence({ summary, isOwner, pastSince }: Props) {
         {summary.enRoute === 0 ? (was ? 'none' : 'None') : summary.enRoute.toLocaleString('en-US')}
       </Counted>{' '}
       of {isOwner ? 'your ' : ''}
-      <Counted to={paths.fleet()}>
-        {counted(summary.total, 'car or box', 'cars and boxes')}
-      </Counted>{' '}
-      {tense(summary.enRoute, was)} moving. <Wanting summary={summary} was={was} />
+      <Counted to={paths.fleet()}>{counted(summary.total, ...nounOf(summary))}</Counted>{' '}
+      {tense(summary.total === 1 ? 1 : summary.enRoute, was)} moving.{' '}
+      <Wanting summary={summary} was={was} />
     </Sentence>
   );
 }
+
+/** Who has only cars, or only boxes, is told of them. */
+const nounOf = ({ holds }: FleetSummary): [one: string, many: string] =>
+  holds.cars === holds.boxes
+    ? ['car or box', 'cars and boxes']
+    : [sayKind(holds.cars ? 'car' : 'container'), sayKind(holds.cars ? 'car' : 'container', 2)];
 
 const tense = (n: number, was: boolean): string =>
   was ? (n === 1 ? 'was' : 'were') : n === 1 ? 'is' : 'are';

@@ -16,7 +16,7 @@ export function journeyColumns(
 ): Column<JourneyLine>[] {
   const name = zoneName(zone, now);
   return [
-    { id: 'where', heading: 'Where', cell: (line) => <Where line={line} /> },
+    { id: 'where', heading: 'Where', wraps: true, cell: (line) => <Where line={line} /> },
     {
       id: 'from',
       heading: `From, ${name}`,
@@ -117,8 +117,11 @@ function sayFor(line: JourneyLine): string {
   return minutes < 0 ? 'clocks differ' : formatDuration(minutes);
 }
 
+/** Nothing where no miles are counted: a box rides, and on what is not worked out yet. */
 const sayMiles = (leg: LegView, distance: Preferences['distance']): string =>
-  `${leg.estimated ? 'about ' : ''}${formatDistance(leg.railMetres, distance)}`;
+  leg.railMetres === 0
+    ? ''
+    : `${leg.estimated ? 'about ' : ''}${formatDistance(leg.railMetres, distance)}`;
 
 /** How both ends are known: one phrase when they are known alike. */
 function sayHow(line: JourneyLine, zone: string, now: number): string {
@@ -139,6 +142,13 @@ const isReckoned = ({ arrivalBasis, departureBasis, provisional }: StayView): bo
   arrivalBasis === 'inferred' ||
   arrivalBasis === 'unknown' ||
   departureBasis === 'inferred';
+
+const sayStay = (stay: StayView): string =>
+  isReckoned(stay)
+    ? 'a stay, partly reckoned'
+    : stay.departedAt
+      ? 'a stay, read at both ends'
+      : 'a stay, read as it began';
 
 /** A stay as a bar on a line, a leg as a thin stroke; hollow where an end is reckoned or provisional. */
 export function JourneyMark({ line }: { line: JourneyLine }) {
@@ -162,7 +172,7 @@ export function JourneyMark({ line }: { line: JourneyLine }) {
       height="14"
       viewBox="0 0 30 14"
       role="img"
-      aria-label={hollow ? 'a stay, partly reckoned' : 'a stay, read at both ends'}
+      aria-label={sayStay(line.stay)}
       className={`stroke-ink ${hollow ? 'fill-transparent' : 'fill-ink'}`}
     >
       <path d="M6.5 3h17v7h-17z" />
@@ -185,7 +195,9 @@ export function NarrowJourney({ line, zone, now, distance }: NarrowProps) {
         </span>
         <span className="flex-none">
           {sayFor(line)}
-          {line.kind === 'leg' ? `, ${sayMiles(line.leg, distance)}` : ''}
+          {line.kind === 'leg' && line.leg.railMetres > 0
+            ? `, ${sayMiles(line.leg, distance)}`
+            : ''}
         </span>
       </span>
       {line.kind === 'stay' ? (
