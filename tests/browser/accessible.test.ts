@@ -79,7 +79,7 @@ test('Alerts and watches can be used by everyone', async () => {
   await alertRow(page, 'QTKX 1', 'Quiet since Alder Bend Yard').waitFor();
   await expectAccessible(page, 'Alerts');
   await page.goto('/watches');
-  await page.getByText('Gone quiet').waitFor();
+  await page.getByRole('cell', { name: 'Gone quiet', exact: true }).waitFor();
   await expectAccessible(page, 'watches');
   await page.getByRole('button', { name: /^Change/ }).click();
   await page.getByText(/^It covers/).waitFor();
