@@ -33,7 +33,7 @@ export const notFound = (detail = 'There is nothing here that you may see.') =>
 export const timedOut = (detail: string) => new Problem(408, 'The request came too slowly', detail);
 
 export const conflict = (detail: string, errors: ProblemFault[] = []) =>
-  new Problem(409, 'It has changed meanwhile', detail, errors);
+  new Problem(409, 'Not as things stand', detail, errors);
 
 export const tooLarge = (detail: string) => new Problem(413, 'Too large', detail);
 

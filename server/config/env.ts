@@ -44,7 +44,7 @@ export interface Env {
   sessionSecret: string;
   /** null: /metrics does not exist. */
   metricsToken: string | null;
-  /** Months that raw reads are kept. */
+  /** Months back that a read is taken up; an older one is set aside. */
   retainMonths: number;
 }
 

@@ -13,7 +13,7 @@ import {
 export const unitStates = ['onHand', 'enRoute', 'unseen'] as const;
 export type UnitState = (typeof unitStates)[number];
 
-/** The orders a list of equipment can be had in; each has its own index or bounded set. */
+/** The orders a list of equipment can be had in. */
 export const equipmentSorts = ['attention', 'lastSeen', '-lastSeen', 'dwell', 'unit'] as const;
 export type EquipmentSort = (typeof equipmentSorts)[number];
 

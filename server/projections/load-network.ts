@@ -24,7 +24,7 @@ export async function configurationVersion(pool: Pick<Pool, 'query'>): Promise<n
   return rows[0]?.version ?? 0;
 }
 
-/** Reads the whole configuration; 100,000 units take well under a second. */
+/** Reads the whole configuration: every unit, tag and identity, so not for each request. */
 export async function loadNetwork(pool: Pick<Pool, 'query'>): Promise<LoadedNetwork> {
   const version = await configurationVersion(pool);
   const units = await pool.query<UnitRow[]>('SELECT id, kind, registered, group_code FROM units');

@@ -4,7 +4,7 @@ import type { Delivery } from '../mail/transport.js';
 import type { ClaimedMail } from './claim-mail.js';
 import type { StartedAttempt } from './start-attempt.js';
 
-/** Over about five hours; then the mail is given up. */
+/** Over about four hours; then the mail is given up. */
 export const MOST_TRIES = 12;
 const FIRST_WAIT_MS = 15_000;
 const LONGEST_WAIT_MS = 3_600_000;

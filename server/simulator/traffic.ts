@@ -51,7 +51,7 @@ const AHEAD_MS = 60_000;
 
 /**
  * The traffic of the invented region: a pure function of the seed and the span. The plan is run
- * forward from a fixed Monday, which takes milliseconds a month, so that a car leaves where it
+ * forward from a fixed Monday, about a sixth of a second a month, so that a car leaves where it
  * arrived whatever is asked for; only passes of the span are turned into reads. One generator
  * keeps its place, so that asking on and on, second by second, costs only what is new.
  */

@@ -34,7 +34,7 @@ function edge(from: string, to: string, railMetres: number, line: string): DemoE
   return { from, to, railMetres, kind: 'rail', line };
 }
 
-/** About 1,470 rail miles; each a little longer than the great circle between its ends. */
+/** About 1,450 rail miles; each a little longer than the great circle between its ends. */
 export const edges: DemoEdge[] = [
   edge('SEDGE', 'CAIRN', 144_700, 'North Line'),
   edge('SEDGE', 'MILLRACE', 150_200, 'North Line'),
