@@ -10,7 +10,9 @@ import { configurationVersion, loadNetwork, type LoadedNetwork } from './load-ne
 import { takeWork } from './take-work.js';
 
 const LEASE = 'projector';
-const RENEW_MS = 10_000;
+/** What a killed worker's successor waits at most. */
+const LEASE_SECONDS = 12;
+const RENEW_MS = 4_000;
 /** Reads a portion holds at most, about. */
 const MOST_READS = 20_000;
 const MOST_UNITS = 4_000;
@@ -106,7 +108,7 @@ export class Projector {
   private async holdLease(): Promise<Lease | null> {
     const now = performance.now();
     if (!this.lease || now - this.lease.takenAt > RENEW_MS) {
-      const lease = await takeLease(this.context.db, LEASE, this.holder);
+      const lease = await takeLease(this.context.db, LEASE, this.holder, LEASE_SECONDS);
       this.lease = lease && { lease, takenAt: now };
     }
     return this.lease?.lease ?? null;
@@ -127,7 +129,7 @@ export class Projector {
     const loaded = await this.network();
     const usable = await resolveReads(db, loaded, work.reads);
     await withTransaction(db.pool, async (connection) => {
-      await keepLease(connection, lease);
+      await keepLease(connection, lease, LEASE_SECONDS);
       const dirty = await foldReads(connection, loaded, work, usable);
       const rows = [...dirty].map(([unitId, at]) => [unitId, new Date(at)]);
       await insertRows(connection, 'dirty_units', ['unit_id', 'from_at'], rows, [
@@ -142,7 +144,7 @@ export class Projector {
     const { db, liveEvents } = this.context;
     const { network } = await this.network();
     const units = await withTransaction(db.pool, async (connection) => {
-      await keepLease(connection, lease);
+      await keepLease(connection, lease, LEASE_SECONDS);
       return foldUnits(connection, network, MOST_UNITS);
     });
     if (units.length) liveEvents.publish({ unitIds: units });
