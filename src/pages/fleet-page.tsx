@@ -81,6 +81,7 @@ function Opening() {
     <FleetSentence
       summary={summary.data}
       isOwner={session?.user.roles.includes('owner') ?? false}
+      seesAllSites={session?.user.roles.includes('administrator') ?? false}
       pastSince={isPast ? { at: Date.parse(summary.data.asOf), zone } : null}
     />
   );

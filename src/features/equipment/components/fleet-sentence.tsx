@@ -9,12 +9,13 @@ import type { FleetSummary } from '../../../lib/wire';
 interface Props {
   summary: FleetSummary;
   isOwner: boolean;
+  seesAllSites: boolean;
   /** Set once the counts are over five minutes old: the sentence goes into the past. */
   pastSince: { at: number; zone: string } | null;
 }
 
-/** What is moving, quiet and past its limit; each number leads to its rows. */
-export function FleetSentence({ summary, isOwner, pastSince }: Props) {
+/** What is moving or stands, is quiet and past its limit; each number leads to its rows. */
+export function FleetSentence({ summary, isOwner, seesAllSites, pastSince }: Props) {
   const was = pastSince !== null;
   if (summary.total === 0) {
     return (
@@ -26,14 +27,45 @@ export function FleetSentence({ summary, isOwner, pastSince }: Props) {
   return (
     <Sentence under={<Heard summary={summary} />}>
       {pastSince ? `At ${formatClock(pastSince.at, pastSince.zone)}, ` : null}
-      <Counted to={paths.fleet({ state: 'enRoute' })}>
-        {summary.enRoute === 0 ? (was ? 'none' : 'None') : summary.enRoute.toLocaleString('en-US')}
-      </Counted>{' '}
-      of {isOwner ? 'your ' : ''}
-      <Counted to={paths.fleet()}>{counted(summary.total, ...nounOf(summary))}</Counted>{' '}
-      {tense(summary.total === 1 ? 1 : summary.enRoute, was)} moving.{' '}
+      {isOwner ? (
+        <Moving summary={summary} was={was} />
+      ) : (
+        <Standing summary={summary} was={was} allSites={seesAllSites} />
+      )}{' '}
       <Wanting summary={summary} was={was} />
     </Sentence>
+  );
+}
+
+interface PartProps {
+  summary: FleetSummary;
+  was: boolean;
+}
+
+function Moving({ summary, was }: PartProps) {
+  const { enRoute, total } = summary;
+  return (
+    <>
+      <Counted to={paths.fleet({ state: 'enRoute' })}>
+        {enRoute === 0 ? (was ? 'none' : 'None') : enRoute.toLocaleString('en-US')}
+      </Counted>{' '}
+      of your <Counted to={paths.fleet()}>{counted(total, ...nounOf(summary))}</Counted>{' '}
+      {tense(total === 1 ? 1 : enRoute, was)} moving.
+    </>
+  );
+}
+
+/** Who works at sites is told what stands there: much of what left is a stranger's, and gone. */
+function Standing({ summary, was, allSites }: PartProps & { allSites: boolean }) {
+  const { onHand } = summary;
+  const count = onHand === 0 ? (was ? 'no car or box' : 'No car or box') : null;
+  return (
+    <>
+      <Counted to={paths.fleet({ state: 'onHand' })}>
+        {count ?? counted(onHand, ...nounOf(summary))}
+      </Counted>{' '}
+      {was ? 'stood' : onHand < 2 ? 'stands' : 'stand'} at {allSites ? 'the' : 'your'} sites.
+    </>
   );
 }
 
