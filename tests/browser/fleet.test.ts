@@ -2,10 +2,12 @@ import type { Page } from 'playwright-core';
 import { expect, test } from 'vitest';
 import { buildPerson, PASSWORD } from '../support/factories.js';
 import { buildCars, buildYards, cross, type Yard } from './support/railway.js';
-import { ledgerRows, signIn } from './support/screens.js';
+import { ledgerRows, signIn, soon } from './support/screens.js';
 import { usePortal } from './support/use-portal.js';
 
 const { db, portal, open } = usePortal(100);
+/** A page without an event stream asks every twenty seconds. */
+const WITHOUT_POLLING_MS = 10_000;
 const numbers = (from: number, to: number) =>
   Array.from({ length: to - from + 1 }, (_, index) => from + index);
 
@@ -38,9 +40,7 @@ const carsOf = async (page: Page) =>
     Number(text.replace('QTKX ', '')),
   );
 const expectCars = (page: Page, cars: number[]) =>
-  expect
-    .poll(async () => (await carsOf(page)).sort((one, other) => one - other), { timeout: 15_000 })
-    .toEqual(cars);
+  soon(async () => (await carsOf(page)).sort((one, other) => one - other)).toEqual(cars);
 
 test('each number of the sentence shows me its cars, and what I chose survives reload and going back', async () => {
   const { page } = await fleet();
@@ -60,7 +60,7 @@ test('each number of the sentence shows me its cars, and what I chose survives r
   await expectCars(page, [1]);
   expect(where(page)).toBe('/fleet?quiet=true');
   await page.getByRole('link', { name: 'drop all' }).click();
-  await expect.poll(() => where(page)).toBe('/fleet');
+  await soon(() => where(page)).toBe('/fleet');
 });
 
 test('the map and the table say the same', async () => {
@@ -75,7 +75,7 @@ test('the map and the table say the same', async () => {
   await ring('CAIRN').click();
   await expectCars(page, [2, 3, ...numbers(21, 34)]);
   await ring('CAIRN').click();
-  await expect.poll(() => where(page)).toBe('/fleet?state=onHand');
+  await soon(() => where(page)).toBe('/fleet?state=onHand');
 });
 
 test('a car that is read moves before my eyes, but nothing moves under my hand', async () => {
@@ -84,11 +84,11 @@ test('a car that is read moves before my eyes, but nothing moves under my hand',
   const row = (number: number) =>
     ledgerRows(page).filter({ has: page.getByText(`QTKX ${number}`, { exact: true }) });
   await row(4).getByText('From Alder Bend Yard').waitFor();
-  await expect.poll(() => carsOf(page)).toEqual([7, 6, 5, 4, 1]);
+  await soon(() => carsOf(page)).toEqual([7, 6, 5, 4, 1]);
   await page.evaluate(() => Object.assign(window, { sameDocument: true }));
 
   await cross(portal(), cairn, [4], 'in');
-  await expect.poll(() => carsOf(page), { timeout: 5_000 }).toEqual([7, 6, 5, 1]);
+  await soon(() => carsOf(page), WITHOUT_POLLING_MS).toEqual([7, 6, 5, 1]);
   const moving = page.getByRole('heading', { level: 1, name: /^4 of your/ });
   await moving.waitFor();
 
@@ -99,7 +99,7 @@ test('a car that is read moves before my eyes, but nothing moves under my hand',
   expect(await carsOf(page)).toEqual([7, 6, 5, 1]);
   expect(await row(7).getAttribute('data-gone')).toBe('true');
   await page.getByRole('button', { name: 'show' }).click();
-  await expect.poll(() => carsOf(page)).toEqual([8, 6, 5, 1]);
+  await soon(() => carsOf(page)).toEqual([8, 6, 5, 1]);
 
   await page.locator('body').click({ position: { x: 4, y: 500 } });
   await ledgerRows(page).nth(1).hover();
@@ -107,6 +107,6 @@ test('a car that is read moves before my eyes, but nothing moves under my hand',
   await page.getByText('1 changed, show').waitFor();
   expect(await carsOf(page)).toEqual([8, 6, 5, 1]);
   await page.mouse.move(10, 500);
-  await expect.poll(() => carsOf(page)).toEqual([9, 8, 6, 5, 1]);
+  await soon(() => carsOf(page)).toEqual([9, 8, 6, 5, 1]);
   expect(await page.evaluate(() => 'sameDocument' in window)).toBe(true);
 });

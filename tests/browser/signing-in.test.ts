@@ -2,7 +2,7 @@ import type { Page } from 'playwright-core';
 import { expect, test } from 'vitest';
 import { buildPerson, PASSWORD } from '../support/factories.js';
 import { buildCars, buildYards, cross } from './support/railway.js';
-import { heading, ledgerRows, lookUp, lookUpAnswers, signIn } from './support/screens.js';
+import { heading, ledgerRows, lookUp, lookUpAnswers, signIn, soon } from './support/screens.js';
 import { usePortal } from './support/use-portal.js';
 
 const { db, portal, open } = usePortal(15);
@@ -38,7 +38,7 @@ test('I sign in, look a car up, open it and ask to be told, without touching the
   await page.keyboard.press('/');
   await page.keyboard.type('4012');
   const answers = page.getByRole('listbox', { name: 'What was found' }).getByRole('option');
-  await expect.poll(() => answers.count()).toBe(2);
+  await soon(() => answers.count()).toBe(2);
   await page.keyboard.press('ArrowDown');
   await page.keyboard.press('ArrowDown');
   const chosen = (await answers.and(page.locator('[aria-selected=true]')).innerText()).split('\n');

@@ -10,6 +10,7 @@ import {
   ledgerRows,
   lookUp,
   signIn,
+  soon,
 } from './support/screens.js';
 import { usePortal } from './support/use-portal.js';
 
@@ -70,7 +71,7 @@ test('I am told by mail when anything stands over 48 h at my yard, and no longer
 
   const page = await open();
   await signIn(page, dispatcher.email, PASSWORD);
-  await expect.poll(() => ledgerRows(page).count()).toBe(3);
+  await soon(() => ledgerRows(page).count()).toBe(3);
   const name = 'Standing too long';
   await askToBeTold(page, { name, hours: 48, sites: ['Alder Bend Yard'] });
   await page.getByText('You will be told.').waitFor();

@@ -23,8 +23,10 @@ export interface WatchedPage {
   close: () => Promise<void>;
 }
 
-/** Being signed out, and a car that one may not see: both are asked for, and a browser reports both. */
-const asked = /status of 40[14]/;
+/** Asking who is signed in, and for a car that one may not see: a browser reports these answers. */
+const isAnswer = (text: string, url: string): boolean =>
+  (text.includes('status of 401') && /\/api\//.test(url)) ||
+  (text.includes('status of 404') && /\/api\/equipment\//.test(url));
 
 /** Opens a page of its own cookie jar; addresses without host go to `address`. */
 export async function openPage(
@@ -47,7 +49,8 @@ export async function openPage(
   });
   context.on('weberror', (error) => noise.push(error.error().stack ?? error.error().message));
   context.on('console', (line) => {
-    if (line.type() === 'error' && !asked.test(line.text())) noise.push(line.text());
+    const { url } = line.location();
+    if (line.type() === 'error' && !isAnswer(line.text(), url)) noise.push(`${line.text()} ${url}`);
   });
   return { page: await context.newPage(), noise, close: () => context.close() };
 }

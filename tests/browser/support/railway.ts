@@ -13,6 +13,7 @@ import {
 } from '../../support/factories.js';
 import { carTag } from '../../support/ingest.js';
 import type { Portal } from './portal.js';
+import { soon } from './screens.js';
 
 /** A yard with one lead, where a reader sees cars come in and go out. */
 export interface Yard {
@@ -100,7 +101,7 @@ export async function cross(
     body: JSON.stringify({ site: yard.site.code, reads }),
   });
   expect(await response.json()).toMatchObject({ accepted: reads.length, problems: [] });
-  await expect.poll(() => lagOf(portal), { timeout: 15_000, interval: 50 }).toBe(0);
+  await soon(() => lagOf(portal)).toBe(0);
 }
 
 async function lagOf({ address }: Portal): Promise<number> {

@@ -1,11 +1,12 @@
 import type { Locator, Page } from 'playwright-core';
+import { expect } from 'vitest';
 
 /** Signs in on the sign-in page and waits for the first screen. */
 export async function signIn(page: Page, email: string, password: string): Promise<void> {
   await page.goto('/sign-in');
   await fillSignIn(page, email, password);
   await page
-    .getByRole('heading', { level: 1, name: /moving|register yet|been read yet/ })
+    .getByRole('heading', { level: 1, name: /moving|stands? at|register yet|been read yet/ })
     .waitFor();
 }
 
@@ -70,3 +71,7 @@ export const alertRow = (page: Page, display: string, says: string): Locator =>
     .getByRole('row')
     .filter({ hasText: display })
     .filter({ hasText: says });
+
+/** Waits until what is read comes to what is then expected of it. */
+export const soon = <Value>(read: () => Value | Promise<Value>, timeout = 15_000) =>
+  expect.poll(read, { timeout, interval: 50 });
