@@ -41,7 +41,7 @@ export function FilterWords({ filter, sites, onSearch }: Props) {
   }));
   const isNarrowed = Object.keys(without(filter, 'sort')).length > 0;
   return (
-    <div className="flex flex-wrap items-baseline gap-x-6 gap-y-4 font-condensed text-table">
+    <div className="flex flex-wrap items-baseline gap-x-6 gap-y-8 font-condensed text-table">
       <Word label="State" choices={states} value={stateOf(filter)} />
       <Word
         label="Kind"

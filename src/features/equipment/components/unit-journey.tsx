@@ -70,7 +70,7 @@ export function useJourneySpan(now: number) {
   const [anchor] = useState(now);
   const from = days === null ? null : new Date(anchor - days * 86_400_000).toISOString();
   const choice = (
-    <span className="flex gap-12">
+    <span className="flex gap-12 pt-8">
       {[30, 90, null].map((span) => (
         <button
           key={String(span)}
