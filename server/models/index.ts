@@ -89,5 +89,8 @@ function bindModels(sequelize: Sequelize) {
   models.Alert.belongsTo(models.Watch, { as: 'watch', foreignKey: 'watchId' });
   models.OutboxMail.belongsTo(models.Watch, { as: 'watch', foreignKey: 'watchId' });
   models.OutboxMail.hasMany(models.MailAttempt, { as: 'attempts', foreignKey: 'outboxId' });
+  // Sequelize looks at the first instance of a model for class fields that hide its attributes. On
+  // one that a query loaded in part it would take the guards of the omitted ones for such fields.
+  for (const model of Object.values(models)) model.build();
   return models;
 }
