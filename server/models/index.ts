@@ -1,4 +1,4 @@
-import type { Sequelize } from 'sequelize';
+import type { Model, ModelStatic, Sequelize } from 'sequelize';
 import { initAlert } from './alert.js';
 import { initAntenna } from './antenna.js';
 import { initIdentity } from './identity.js';
@@ -91,6 +91,6 @@ function bindModels(sequelize: Sequelize) {
   models.OutboxMail.hasMany(models.MailAttempt, { as: 'attempts', foreignKey: 'outboxId' });
   // Sequelize looks at the first instance of a model for class fields that hide its attributes. On
   // one that a query loaded in part it would take the guards of the omitted ones for such fields.
-  for (const model of Object.values(models)) model.build();
+  for (const model of Object.values<ModelStatic<Model>>(models)) model.build();
   return models;
 }

@@ -224,7 +224,12 @@ describe('what the running projections build on', () => {
         const { world, ledger } = day(kind, seed, 0.05);
         const network = new Network(world.configuration);
         for (const sightings of sightingsOf(historyOf(ledger, world.configuration)).values()) {
-          const whole = foldHistory(network, { kind: 'car', registered: true }, nothingKnown(), sightings);
+          const whole = foldHistory(
+            network,
+            { kind: 'car', registered: true },
+            nothingKnown(),
+            sightings,
+          );
           for (const { beforeAt, state } of whole.checkpoints) {
             const rest = sightings.filter(({ firstAt }) => firstAt >= beforeAt);
             const part = foldHistory(network, { kind: 'car', registered: true }, state, rest);
