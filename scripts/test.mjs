@@ -67,7 +67,6 @@ async function runTests() {
   const place = mkdtempSync(path.join(os.tmpdir(), 'fishplate-results-'));
   const file = path.join(place, 'results.json');
   const parameters = ['run', '--reporter=default', '--reporter=json', `--outputFile.json=${file}`];
-  if (long) parameters.push('--mode', 'long');
   try {
     const code = await runVitest(parameters);
     addResults(JSON.parse(readFileSync(file, 'utf8')), code);
@@ -96,7 +95,7 @@ function runVitest(parameters) {
     const program = path.join(root, 'node_modules/.bin/vitest');
     const child = spawn(process.execPath, [program, ...parameters], {
       cwd: root,
-      env,
+      env: { ...env, ...(long && { TEST_MODE: 'long' }) },
       stdio: ['ignore', 'inherit', 'inherit'],
       detached: true,
     });

@@ -7,7 +7,7 @@ import { dumpOf, rowsOf } from '../support/dump-history.js';
 import { RunningHistory } from '../support/running-history.js';
 import { SeededRandom } from '../support/seeded-random.js';
 
-const CASES = import.meta.env.MODE === 'long' ? 2_000 : 200;
+const CASES = import.meta.env.TEST_MODE === 'long' ? 2_000 : 200;
 const READS = 300;
 const FIRST_SEED = 20_260_301;
 
