@@ -1,11 +1,10 @@
 import type { PoolConnection } from 'mariadb';
 import type { Network, ReadPointConfiguration } from '../domain/movements/configuration.js';
-import type { WheelRecord } from '../domain/movements/own-direction.js';
 import type { Pass } from '../domain/movements/passes.js';
-import { hasSeveralOffsets } from '../domain/movements/passages.js';
 import { refoldPoint, type PassStart, type Refolded } from '../domain/movements/refold-point.js';
 import type { Visit } from '../domain/movements/visits.js';
 import { byKeys, insertRows, type SqlValue } from '../lib/bulk.js';
+import { loadWheels, loadWindow, startOf, startOfWindow, type Window } from './point-window.js';
 import { isSame } from './same-row.js';
 import {
   PASSAGE_COLUMNS,
@@ -29,18 +28,8 @@ export interface FreshFacts {
 export type DirtyUnits = Map<number, number>;
 
 const MINUTE_MS = 60_000;
-const LONGEST_STOP_MS = 30 * MINUTE_MS;
 const FIRST_REACH_MS = 10 * MINUTE_MS;
 const REACH_GROWTH = 8;
-const WHEEL_REACH_MS = 10_000;
-
-interface Window {
-  from: PassStart | null;
-  passages: PassageRow[];
-  passes: PassRow[];
-  /** Nothing is stored behind it. */
-  complete: boolean;
-}
 
 /** Folds new facts into a read point's passages and passes, and marks the units it changed. */
 export async function foldPoint(
@@ -60,62 +49,6 @@ export async function foldPoint(
     await writePasses(connection, point.id, window, refolded);
     return;
   }
-}
-
-/** The last clean start before anything that the facts can touch; null: from the very beginning. */
-async function startOfWindow(
-  connection: PoolConnection,
-  network: Network,
-  point: ReadPointConfiguration,
-  since: number,
-): Promise<PassStart | null> {
-  const touching = await firstAtOf(
-    connection,
-    'SELECT MIN(first_at) AS at FROM passages WHERE read_point_id = ? AND last_at >= ? AND first_at < ?',
-    [point.id, new Date(since - point.visitGapSeconds * 1000), new Date(since)],
-  );
-  const before = hasSeveralOffsets(network, point)
-    ? await firstAtOf(
-        connection,
-        `SELECT MAX(first_at) AS at FROM passages
-         WHERE read_point_id = ? AND first_at < ? AND first_at >= ?`,
-        [point.id, new Date(since), new Date(since - LONGEST_STOP_MS)],
-      )
-    : null;
-  const earliest = Math.min(since, touching ?? since, before ?? since);
-  const [start] = await connection.query<PassRow[]>(
-    `SELECT * FROM passes WHERE read_point_id = ? AND clean_start = 1 AND started_at < ?
-     ORDER BY started_at DESC LIMIT 1`,
-    [point.id, new Date(earliest)],
-  );
-  return start ? startOf(start) : null;
-}
-
-async function firstAtOf(connection: PoolConnection, sql: string, values: SqlValue[]) {
-  const [row] = await connection.query<{ at: Date | null }[]>(sql, values);
-  return row?.at?.getTime() ?? null;
-}
-
-async function loadWindow(
-  connection: PoolConnection,
-  readPointId: number,
-  from: PassStart | null,
-  until: number,
-): Promise<Window> {
-  const span = [readPointId, new Date(from?.startedAt ?? 0), new Date(until)];
-  const passages = await connection.query<PassageRow[]>(
-    'SELECT * FROM passages WHERE read_point_id = ? AND first_at >= ? AND first_at <= ?',
-    span,
-  );
-  const passes = await connection.query<PassRow[]>(
-    'SELECT * FROM passes WHERE read_point_id = ? AND started_at >= ? AND started_at <= ?',
-    span,
-  );
-  const [later] = await connection.query<unknown[]>(
-    'SELECT 1 FROM passages WHERE read_point_id = ? AND first_at > ? LIMIT 1',
-    [readPointId, new Date(until)],
-  );
-  return { from, passages, passes, complete: !later };
 }
 
 async function refold(
@@ -140,34 +73,6 @@ async function refold(
       starts: window.passes.map(startOf),
     },
   );
-}
-
-async function loadWheels(
-  connection: PoolConnection,
-  readPointId: number,
-  since: number,
-  until: number,
-): Promise<WheelRecord[]> {
-  const rows = await connection.query<WheelRow[]>(
-    `SELECT started_at, ended_at, direction, speed_kmh, axles FROM wheel_records
-     WHERE read_point_id = ? AND ended_at >= ? AND started_at <= ?`,
-    [readPointId, new Date(since - WHEEL_REACH_MS), new Date(until + WHEEL_REACH_MS)],
-  );
-  return rows.map((row) => ({
-    startedAt: row.started_at.getTime(),
-    endedAt: row.ended_at.getTime(),
-    direction: row.direction,
-    speedKmh: row.speed_kmh,
-    axles: row.axles,
-  }));
-}
-
-interface WheelRow {
-  started_at: Date;
-  ended_at: Date;
-  direction: WheelRecord['direction'];
-  speed_kmh: number | null;
-  axles: number;
 }
 
 async function writePassages(
@@ -234,15 +139,6 @@ async function writePasses(
 
 function passKey({ startedAt, ordinal }: Pick<Pass, 'startedAt' | 'ordinal'>): string {
   return `${startedAt} ${ordinal}`;
-}
-
-function startOf(row: PassRow): PassStart {
-  return {
-    startedAt: row.started_at.getTime(),
-    ordinal: row.ordinal,
-    reversal: Boolean(row.reversal),
-    cleanStart: Boolean(row.clean_start),
-  };
 }
 
 function isBefore(startedAt: Date, ordinal: number, settledAt: PassStart | null): boolean {
