@@ -4,6 +4,7 @@ import type { UnitSource } from './narrow-units.js';
 import { conditionOf } from './narrow-units.js';
 import { ask, joinSql, sql, word, type Sql } from './sql.js';
 import { all } from './unit-filters.js';
+import type { EdgeRecord } from '../presenters/map.js';
 
 type Box = NonNullable<MapQuery['bbox']>;
 
@@ -16,20 +17,7 @@ export interface MapSiteRow {
   longitude: number;
 }
 
-export interface MapEdgeRow {
-  id: number;
-  line: string;
-  kind: string;
-  rail_metres: number;
-  from_code: string;
-  from_name: string;
-  from_latitude: number;
-  from_longitude: number;
-  to_code: string;
-  to_name: string;
-  to_latitude: number;
-  to_longitude: number;
-}
+export type MapEdgeRow = EdgeRecord;
 
 export interface MapCountRow {
   site_id: number;

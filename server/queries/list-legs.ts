@@ -2,18 +2,11 @@ import type { Database } from '../lib/database.js';
 import type { HistoryOf, StayRow } from './list-stays.js';
 import { ask, sql, type Sql } from './sql.js';
 import { all } from './unit-filters.js';
+import type { LegRecord } from '../presenters/movements.js';
 
-export interface LegRow {
+export interface LegRow extends LegRecord {
   to_first_seen_at: Date;
   to_site_id: number;
-  from_code: string;
-  from_name: string;
-  to_code: string;
-  to_name: string;
-  departed_at: Date;
-  arrived_at: Date | null;
-  rail_metres: number;
-  estimated: number;
 }
 
 interface Span {

@@ -6,25 +6,11 @@ import { readPointOfSites } from './find-openable-units.js';
 import type { HistoryOf } from './list-stays.js';
 import { ask, sql, type Sql } from './sql.js';
 import { all } from './unit-filters.js';
+import type { PassageRecord } from '../presenters/sighting.js';
 
 /** One passage of the unit with the names of where it was. `evidence` is JSON. */
-export interface PassageRow {
+export interface PassageRow extends PassageRecord {
   read_point_id: number;
-  site_id: number;
-  site_code: string;
-  site_name: string;
-  read_point_code: string;
-  read_point_name: string;
-  read_point_track: string | null;
-  first_at: Date;
-  last_at: Date;
-  pass_started_at: Date;
-  pass_ordinal: number;
-  direction: string;
-  direction_basis: string | null;
-  role: string;
-  speed_kmh: number | null;
-  read_count: number;
   evidence: string;
 }
 

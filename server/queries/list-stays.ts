@@ -4,6 +4,7 @@ import { pageFrom, readCursor } from '../lib/cursor.js';
 import type { Database } from '../lib/database.js';
 import { ask, sql, type Sql } from './sql.js';
 import { all } from './unit-filters.js';
+import type { StayRecord } from '../presenters/movements.js';
 
 /** Whose history is asked for; `siteIds` null: all of it, else what happened at these sites. */
 export interface HistoryOf {
@@ -11,25 +12,8 @@ export interface HistoryOf {
   siteIds: number[] | null;
 }
 
-export interface StayRow {
+export interface StayRow extends StayRecord {
   site_id: number;
-  site_code: string;
-  site_name: string;
-  first_seen_at: Date;
-  last_seen_at: Date;
-  track: string | null;
-  arrived_at: Date | null;
-  arrival_basis: string;
-  arrival_earliest: Date | null;
-  arrival_latest: Date | null;
-  arrival_final_at: Date | null;
-  departed_at: Date | null;
-  departure_basis: string | null;
-  departure_earliest: Date | null;
-  departure_latest: Date | null;
-  departure_final_at: Date | null;
-  excursions: number;
-  out_of_dwell: number;
 }
 
 const cursorSchema = z.object({ seen: z.number().min(0).max(8.64e15), site: z.int() });

@@ -1,37 +1,13 @@
 import type { Database } from '../lib/database.js';
 import { ask, sql, type Sql } from './sql.js';
+import type { EquipmentRecord } from '../presenters/equipment.js';
 
 /** What the list and the unit page need of one unit; names as in the tables. */
-export interface EquipmentRow {
+export interface EquipmentRow extends EquipmentRecord {
   unit_id: number;
-  kind: string;
-  car_type: string | null;
-  registered: number;
   length_dm: number | null;
   axles: number | null;
-  owner_id: number | null;
-  owner_code: string | null;
-  owner_name: string | null;
-  at: Date;
-  state: string;
-  track: string | null;
-  direction: string | null;
-  basis: string | null;
-  pass_started_at: Date | null;
-  pass_ordinal: number | null;
-  arrived_at: Date | null;
-  stay_first_seen_at: Date | null;
-  quiet_at: Date;
-  limit_at: Date;
   site_id: number | null;
-  site_code: string | null;
-  site_name: string | null;
-  latitude: number | null;
-  longitude: number | null;
-  dwell_limit_hours: number | null;
-  read_point_code: string | null;
-  read_point_name: string | null;
-  read_point_site_code: string | null;
 }
 
 export interface IdentityRow {
