@@ -8,8 +8,5 @@ export type EventName = (typeof eventNames)[number];
 export const changedEvent = z.object({ unitIds: z.array(z.string()) });
 export type ChangedEvent = z.infer<typeof changedEvent>;
 
-/** Data of `ready`, `alerts` and `reset`: nothing. */
-export const bareEvent = z.object({});
-
 /** A comment goes out this often, so that a dead line is noticed. */
 export const HEARTBEAT_MS = 15_000;

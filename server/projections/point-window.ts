@@ -1,6 +1,10 @@
 import type { PoolConnection } from 'mariadb';
-import type { Network, ReadPointConfiguration } from '../domain/movements/configuration.js';
-import type { WheelRecord } from '../domain/movements/own-direction.js';
+import {
+  LONGEST_STOP_MS,
+  type Network,
+  type ReadPointConfiguration,
+} from '../domain/movements/configuration.js';
+import { WHEEL_REACH_MS, type WheelRecord } from '../domain/movements/own-direction.js';
 import { hasSeveralOffsets } from '../domain/movements/passages.js';
 import type { PassStart } from '../domain/movements/refold-point.js';
 import type { SqlValue } from '../lib/bulk.js';
@@ -14,9 +18,6 @@ export interface Window {
   /** Nothing is stored behind it. */
   complete: boolean;
 }
-
-const LONGEST_STOP_MS = 30 * 60_000;
-const WHEEL_REACH_MS = 10_000;
 
 /** The last clean start before anything that the facts can touch; null: from the very beginning. */
 export async function startOfWindow(

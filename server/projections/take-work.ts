@@ -1,4 +1,5 @@
 import type { Pool } from 'mariadb';
+import { WHEEL_REACH_MS } from '../domain/movements/own-direction.js';
 import type { LedgerRead } from '../domain/movements/resolve-read.js';
 
 /** Some of the queue, ready to fold: whole batches in the order they were taken in. */
@@ -26,7 +27,6 @@ interface ReadRow {
 }
 
 const MOST_BATCHES = 500;
-const WHEEL_REACH_MS = 10_000;
 
 /**
  * The head of the queue up to about `mostReads` reads (one batch at least), or null when it is

@@ -96,6 +96,3 @@ export function isSameDay(one: string, other: string, zone: string): boolean {
   const b = partsOf(Date.parse(other), zone);
   return a.day === b.day && a.month === b.month && a.year === b.year;
 }
-
-/** The browser's own zone, for a person who has set none. */
-export const deviceZone = (): string => Intl.DateTimeFormat().resolvedOptions().timeZone;

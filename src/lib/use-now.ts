@@ -29,11 +29,7 @@ function createClock(everyMilliseconds: number): Clock {
   };
 }
 
-const seconds = createClock(1000);
 const minutes = createClock(20_000);
-
-/** Now, drawn again each second. For the one "as of" line only. */
-export const useSecond = (): number => useSyncExternalStore(seconds.subscribe, seconds.read);
 
 /** Now, good to twenty seconds: for durations. */
 export const useNow = (): number => useSyncExternalStore(minutes.subscribe, minutes.read);

@@ -1,4 +1,5 @@
 import {
+  LONGEST_STOP_MS,
   Network,
   type Configuration,
   type UnitRef,
@@ -14,6 +15,7 @@ import {
   type Ledger,
   type UnitSighting,
 } from '../../server/domain/movements/history-of.js';
+import { WHEEL_REACH_MS } from '../../server/domain/movements/own-direction.js';
 import { hasSeveralOffsets } from '../../server/domain/movements/passages.js';
 import type { Pass } from '../../server/domain/movements/passes.js';
 import { refoldPoint } from '../../server/domain/movements/refold-point.js';
@@ -21,9 +23,6 @@ import { resolveRead } from '../../server/domain/movements/resolve-read.js';
 import { visitsOf, type Visit } from '../../server/domain/movements/visits.js';
 
 type Wheel = Ledger['wheels'][number];
-
-const WHEEL_REACH_MS = 10_000;
-const LONGEST_STOP_MS = 30 * 60_000;
 
 /**
  * History kept up portion by portion in memory, with the stretches of read points and the

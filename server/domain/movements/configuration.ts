@@ -69,6 +69,9 @@ export interface Configuration {
 /** Speed that fills in a departure or arrival nobody saw. */
 export const REFERENCE_SPEED_KMH = 30;
 
+/** A train that stops over a reader goes on within this; a longer gap parts everything. */
+export const LONGEST_STOP_MS = 30 * 60_000;
+
 /** A car that is not on hand is quiet after this long without a read. */
 export const QUIET_HOURS = 72;
 

@@ -1,4 +1,4 @@
-import type { Direction, Network, Place } from './configuration.js';
+import { LONGEST_STOP_MS, type Direction, type Network, type Place } from './configuration.js';
 import { arrive, bePresent, leave, moveWithin, passOnLine, type Step } from './fold-rules.js';
 import type { FoldRows, FoldState } from './fold-state.js';
 import type { PassageRole } from './passes.js';
@@ -20,7 +20,6 @@ export interface FoldStep {
 
 const MINUTE_MS = 60_000;
 const HOUR_MS = 60 * MINUTE_MS;
-const LONGEST_STOP_MS = 30 * MINUTE_MS;
 const LONG_PASSAGE_MS = 2 * MINUTE_MS;
 
 /**

@@ -1,4 +1,4 @@
-import { median, pairSlopes } from '../statistics/theil-sen.js';
+import { theilSenSlope } from '../statistics/theil-sen.js';
 import type { AntennaConfiguration, Direction } from './configuration.js';
 import { groupsOf, type Evidence, type UsableRead } from './evidence.js';
 
@@ -26,6 +26,7 @@ export interface OwnMovement {
 /** Looks up the antenna of a number at the read point's site. */
 export type AntennaOf = (number: number) => AntennaConfiguration | undefined;
 
+/** A wheel record also covers what was read this long before or after it. */
 export const WHEEL_REACH_MS = 10_000;
 const AWAY_MS = 10_000;
 const FASTEST_KMH = 300;
@@ -90,7 +91,7 @@ function slowness(visits: readonly Evidence[], antennaOf: AntennaOf): number | n
     const key = `${antenna.side} ${group.tag}`;
     points.set(key, [...(points.get(key) ?? []), point]);
   }
-  return median([...points.values()].flatMap(pairSlopes));
+  return theilSenSlope(...points.values());
 }
 
 /**

@@ -1,6 +1,11 @@
 import type { EquipmentKind } from '../identifiers/equipment-groups.js';
 import { resolveTag } from '../identifiers/resolve-tag.js';
-import type { Network, ReadPointConfiguration, UnitRef } from './configuration.js';
+import {
+  LONGEST_STOP_MS,
+  type Network,
+  type ReadPointConfiguration,
+  type UnitRef,
+} from './configuration.js';
 import {
   firstRead,
   groupsOf,
@@ -37,8 +42,6 @@ export interface PointRules {
   /** Wheel records of this read point near the visits, in any order. */
   wheels: readonly WheelRecord[];
 }
-
-const LONGEST_STOP_MS = 30 * 60_000;
 
 /**
  * Passages of one read point from all visits there (in any order): consecutive visits of one unit

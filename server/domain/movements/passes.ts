@@ -1,5 +1,5 @@
 import { median } from '../statistics/theil-sen.js';
-import type { Direction } from './configuration.js';
+import { LONGEST_STOP_MS, type Direction } from './configuration.js';
 import { hasSeveralOffsets, type Passage, type PointRules } from './passages.js';
 
 /** What a passage is in its pass. */
@@ -36,7 +36,6 @@ interface Draft {
   cleanStart: boolean;
 }
 
-const LONGEST_STOP_MS = 30 * 60_000;
 const STANDING_MS = 60_000;
 const SLOW_KMH = 8;
 const AFTER_END_OF_TRAIN_MS = 20_000;

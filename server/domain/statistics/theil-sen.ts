@@ -5,7 +5,7 @@ export interface Point {
 }
 
 /** Slopes of all pairs of points with different `x`. */
-export function pairSlopes(points: readonly Point[]): number[] {
+function pairSlopes(points: readonly Point[]): number[] {
   const slopes: number[] = [];
   points.forEach((a, index) => {
     for (const b of points.slice(index + 1)) {
@@ -25,9 +25,9 @@ export function median(values: readonly number[]): number | null {
 }
 
 /**
- * Theil-Sen slope: the median of the slopes of all pairs (Theil 1950, Sen 1968). Null when no two
- * points differ in `x`.
+ * Theil-Sen slope: the median of the slopes of all pairs (Theil 1950, Sen 1968). Of several groups
+ * of points only pairs within a group count. Null when no two points of a group differ in `x`.
  */
-export function theilSenSlope(points: readonly Point[]): number | null {
-  return median(pairSlopes(points));
+export function theilSenSlope(...groups: readonly (readonly Point[])[]): number | null {
+  return median(groups.flatMap(pairSlopes));
 }

@@ -77,12 +77,3 @@ export function sayReason(error: unknown): string {
     return `${error.message} Try again in ${error.retryAfterSeconds} seconds.`;
   return error.message;
 }
-
-/** A line that wants attention but breaks nothing. */
-export function AttentionNotice({ children }: { children: ReactNode }) {
-  return (
-    <div role="status" className="border-l-[3px] border-ochre bg-wash-ochre px-16 py-8 text-table">
-      {children}
-    </div>
-  );
-}

@@ -1,5 +1,5 @@
 import { Link } from 'react-router-dom';
-import type { Choice } from '../../../components/ui/select';
+import type { Choice } from '../../../components/ui/options';
 import { paths } from '../../../lib/paths';
 import type { FleetFilter } from '../../../lib/paths';
 import { sayKind } from '../../../lib/words';

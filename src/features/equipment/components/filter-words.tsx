@@ -1,6 +1,6 @@
 import { Link } from 'react-router-dom';
 import { Menu } from '../../../components/ui/menu';
-import type { Choice } from '../../../components/ui/select';
+import type { Choice } from '../../../components/ui/options';
 import { paths } from '../../../lib/paths';
 import type { FleetFilter } from '../../../lib/paths';
 import { capital, kindNames, sayKind } from '../../../lib/words';

@@ -1,5 +1,5 @@
 import { Dialog } from '../../../components/ui/dialog';
-import type { Choice } from '../../../components/ui/select';
+import type { Choice } from '../../../components/ui/options';
 import type { SessionInfo, WatchView } from '../../../lib/wire';
 import { toFormValues } from '../watch-form-values';
 import { WatchForm } from './watch-form';

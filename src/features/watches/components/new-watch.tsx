@@ -1,6 +1,6 @@
 import { useState } from 'react';
 import { Dialog } from '../../../components/ui/dialog';
-import type { Choice } from '../../../components/ui/select';
+import type { Choice } from '../../../components/ui/options';
 import type { FleetFilter } from '../../../lib/paths';
 import type { SessionInfo, WatchKind } from '../../../lib/wire';
 import { DEFAULT_WATCH_HOURS } from '../../../../server/contract/watches';

@@ -1,6 +1,6 @@
 import type { UseFormReturn } from 'react-hook-form';
 import { Menu } from '../../../components/ui/menu';
-import type { Choice } from '../../../components/ui/select';
+import type { Choice } from '../../../components/ui/options';
 import type { WatchFormValues } from '../watch-form-values';
 
 interface Props {

@@ -4,7 +4,7 @@ import { useForm, useWatch } from 'react-hook-form';
 import { Button } from '../../../components/ui/button';
 import { Fault, Field } from '../../../components/ui/field';
 import { sayReason } from '../../../components/ui/notice';
-import type { Choice } from '../../../components/ui/select';
+import type { Choice } from '../../../components/ui/options';
 import { ApiProblem } from '../../../lib/api-problem';
 import type { WatchInput } from '../../../lib/wire';
 import { saveWatch } from '../api/save-watch';

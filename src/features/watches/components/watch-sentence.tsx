@@ -1,7 +1,7 @@
 import type { FieldErrors, UseFormReturn } from 'react-hook-form';
 import { Fault } from '../../../components/ui/field';
-import { Options } from '../../../components/ui/select';
-import type { Choice } from '../../../components/ui/select';
+import { Options } from '../../../components/ui/options';
+import type { Choice } from '../../../components/ui/options';
 import { capital, kindNames, sayKind } from '../../../lib/words';
 import type { WatchFormValues } from '../watch-form-values';
 import { SiteBlank } from './site-blank';

@@ -4,7 +4,7 @@ import { Link } from 'react-router-dom';
 import { LedgerTable } from '../../../components/ui/ledger-table';
 import type { Column } from '../../../components/ui/ledger-table';
 import { EmptyNotice, ErrorNotice, LoadingRows } from '../../../components/ui/notice';
-import type { Choice } from '../../../components/ui/select';
+import type { Choice } from '../../../components/ui/options';
 import { StateMark } from '../../../components/ui/state-mark';
 import { paths } from '../../../lib/paths';
 import { useMedia } from '../../../lib/use-media';
