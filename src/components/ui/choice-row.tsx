@@ -1,5 +1,5 @@
 import { useId } from 'react';
-import type { Choice } from './select';
+import type { Choice } from './options';
 
 interface Props<Value extends string> {
   label: string;
