@@ -1,6 +1,7 @@
 import type { PoolConnection, UpsertResult } from 'mariadb';
 import type { HoldCode } from '../contract/ingest.js';
 import type { SoundRead } from './judge-read.js';
+import { partReads, type Part } from './part-reads.js';
 import { sqlBytes, sqlCode, sqlInstant } from './sql-literals.js';
 
 /** A sound read with the door's verdict. */
@@ -9,44 +10,65 @@ export interface DoorRead {
   hold: HoldCode | null;
 }
 
-export interface Batch {
+/** The sound reads of one request. */
+export interface Delivery {
   siteId: number;
   receivedAt: Date;
   configVersion: number;
-  /** Sound reads in any order; each index once. */
+  /** In any order; each index once. */
   reads: DoorRead[];
 }
 
+interface BatchRead extends DoorRead {
+  batchId: number;
+}
+
 /**
- * Appends a batch inside the caller's transaction, its row of `work` first, and returns the reads
- * that were new; the rest were there already. A batch without a new read leaves nothing behind.
+ * Appends the reads of a request inside the caller's transaction, as one batch or, where some are
+ * late, as several, their rows of `work` first. Returns the reads that were new; the rest were
+ * there already. A batch without a new read leaves nothing behind.
  */
-export async function appendReads(connection: PoolConnection, batch: Batch): Promise<DoorRead[]> {
-  const work = await connection.query<UpsertResult>(
-    'INSERT INTO work (kind, lane, read_count, received_at) VALUES (?, 0, ?, ?)',
-    ['reads', batch.reads.length, batch.receivedAt],
+export async function appendReads(
+  connection: PoolConnection,
+  delivery: Delivery,
+): Promise<DoorRead[]> {
+  const parts = partReads(delivery.reads, delivery.receivedAt);
+  const batchIds = await queueParts(connection, parts, delivery.receivedAt);
+  const reads = parts.flatMap((part, index) =>
+    part.reads.map((read) => ({ ...read, batchId: batchIds[index] as number })),
   );
-  const batchId = work.insertId as number;
-  const stored = await insertReads(connection, batchId, batch);
-  if (stored.length === 0) {
-    await connection.query('DELETE FROM work WHERE id = ?', [batchId]);
-  } else if (stored.length < batch.reads.length) {
-    await connection.query('UPDATE work SET read_count = ? WHERE id = ?', [stored.length, batchId]);
-  }
-  await insertHeld(connection, batchId, batch, stored);
+  const stored = await insertReads(connection, delivery, reads, batchIds);
+  if (stored.length < reads.length) await correctCounts(connection, parts, batchIds, stored);
+  await insertHeld(connection, delivery, stored);
   return stored;
 }
 
+/** The ids of the new rows of `work`, in the order of the parts. */
+async function queueParts(
+  connection: PoolConnection,
+  parts: Part[],
+  receivedAt: Date,
+): Promise<number[]> {
+  const rows = await connection.query<{ id: number }[]>(
+    `INSERT INTO work (kind, lane, read_count, received_at)
+     VALUES ${parts.map(() => "('reads', ?, ?, ?)").join()} RETURNING id`,
+    parts.flatMap(({ lane, reads }) => [lane, reads.length, receivedAt]),
+  );
+  return rows.map(({ id }) => id);
+}
+
+/** One statement for all batches, so that its rows go in by one order whatever their lane. */
 async function insertReads(
   connection: PoolConnection,
-  batchId: number,
-  { siteId, receivedAt, configVersion, reads }: Batch,
-): Promise<DoorRead[]> {
-  const shared = `(${batchId},${siteId},${configVersion},${sqlInstant(receivedAt.getTime())}`;
-  const values = reads.toSorted(byNaturalKey).map(({ read, hold }) => {
+  { siteId, receivedAt, configVersion }: Delivery,
+  reads: BatchRead[],
+  batchIds: number[],
+): Promise<BatchRead[]> {
+  const shared = `${siteId},${configVersion},${sqlInstant(receivedAt.getTime())}`;
+  const values = reads.toSorted(byNaturalKey).map(({ read, hold, batchId }) => {
     const { index, antenna, tag, readAtMs, rssi, count } = read;
     const key = `${index},${antenna},${sqlBytes(tag.value)},${sqlInstant(readAtMs)}`;
-    return `${shared},${key},${rssi},${count},${sqlCode(hold)})`;
+    return `(${batchId},${shared},${key},${rssi},${count},${sqlCode(hold)})`;
   });
   // Setting a column to itself makes a repeat count 0 rows and keeps the first read as it came;
   // unlike IGNORE it lets every other fault through.
@@ -58,8 +80,8 @@ async function insertReads(
   );
   if (result.affectedRows === reads.length) return reads;
   const present = await connection.query<{ seq: number }[]>(
-    'SELECT seq FROM `reads` WHERE batch_id = ?',
-    [batchId],
+    'SELECT seq FROM `reads` WHERE batch_id IN (?)',
+    [batchIds],
   );
   const seqs = new Set(present.map((row) => row.seq));
   return reads.filter(({ read }) => seqs.has(read.index));
@@ -73,15 +95,32 @@ function byNaturalKey({ read: a }: DoorRead, { read: b }: DoorRead): number {
   return a.tag.value < b.tag.value ? -1 : 1;
 }
 
+/** Brings the rows of `work` in line with what was new, where some reads were not. */
+async function correctCounts(
+  connection: PoolConnection,
+  parts: Part[],
+  batchIds: number[],
+  stored: BatchRead[],
+): Promise<void> {
+  const counts = new Map(batchIds.map((id) => [id, 0]));
+  for (const { batchId } of stored) counts.set(batchId, (counts.get(batchId) ?? 0) + 1);
+  const empty = batchIds.filter((id) => counts.get(id) === 0);
+  if (empty.length > 0) await connection.query('DELETE FROM work WHERE id IN (?)', [empty]);
+  for (const [index, id] of batchIds.entries()) {
+    const count = counts.get(id) ?? 0;
+    if (count === 0 || count === parts[index]?.reads.length) continue;
+    await connection.query('UPDATE work SET read_count = ? WHERE id = ?', [count, id]);
+  }
+}
+
 async function insertHeld(
   connection: PoolConnection,
-  batchId: number,
-  { siteId, configVersion }: Batch,
-  stored: DoorRead[],
+  { siteId, configVersion }: Delivery,
+  stored: BatchRead[],
 ): Promise<void> {
   const held = stored.filter(({ hold }) => hold !== null);
   if (held.length === 0) return;
-  const values = held.map(({ read: { index, readAtMs, tag }, hold }) => {
+  const values = held.map(({ read: { index, readAtMs, tag }, hold, batchId }) => {
     const facts = `${sqlInstant(readAtMs)},${siteId},${sqlBytes(tag.value)},${sqlCode(hold)}`;
     return `(${batchId},${index},${facts},${configVersion})`;
   });
