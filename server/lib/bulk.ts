@@ -1,4 +1,4 @@
-import type { PoolConnection } from 'mariadb';
+import type { Runs } from './connection-of.js';
 
 /** A value a statement may carry. */
 export type SqlValue = string | number | boolean | Date | Buffer | null;
@@ -11,7 +11,7 @@ const ROWS_A_STATEMENT = 500;
  * with none of them the row that is there stays.
  */
 export async function insertRows(
-  connection: PoolConnection,
+  connection: Runs,
   table: string,
   columns: readonly string[],
   rows: readonly (readonly SqlValue[])[],
@@ -36,7 +36,7 @@ export async function insertRows(
  * per key (joined by OR, which MariaDB turns into ranges; a list of row values it would not).
  */
 export async function byKeys<Row>(
-  connection: PoolConnection,
+  connection: Runs,
   statement: string,
   condition: string,
   keys: readonly (readonly SqlValue[])[],
