@@ -1,5 +1,6 @@
-import { sections, type SessionAnswer, type User } from '../contract/session.js';
+import { sections, type Section, type SessionAnswer, type User } from '../contract/session.js';
 import type { Actor } from '../policies/actor.js';
+import { maySeeHeldReads } from '../policies/held-read-policy.js';
 
 type Named = { code: string; name: string } | null;
 
@@ -21,5 +22,10 @@ export function presentSession(
   organisation: Named,
   demoMailbox: boolean,
 ): SessionAnswer['data'] {
-  return { user: presentUser(actor, organisation), sections: [...sections], demoMailbox };
+  const mayOpen = (section: Section) => section !== 'setAside' || maySeeHeldReads(actor);
+  return {
+    user: presentUser(actor, organisation),
+    sections: sections.filter(mayOpen),
+    demoMailbox,
+  };
 }

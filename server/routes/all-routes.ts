@@ -8,6 +8,7 @@ import { equipmentOperations, equipmentRoutes } from './equipment.js';
 import { eventsOperations, eventsRoutes } from './events.js';
 import { fleetOperations, fleetRoutes } from './fleet.js';
 import { healthOperations } from './health.js';
+import { heldReadsOperations, heldReadsRoutes } from './held-reads.js';
 import { ingestOperations } from './ingest.js';
 import { lookUpOperations, lookUpRoutes } from './look-up.js';
 import { mailOperations, mailRoutes } from './mail.js';
@@ -47,6 +48,7 @@ export function portalRouters(context: Context, projectorLagMs: () => Promise<nu
     watchesRoutes(context),
     alertsRoutes(context),
     mailRoutes(context),
+    heldReadsRoutes(context),
     demoMailboxRoutes(context),
   ];
 }
@@ -66,6 +68,7 @@ export const allOperations: Operation[] = [
   ...watchesOperations,
   ...alertsOperations,
   ...mailOperations,
+  ...heldReadsOperations,
   ...demoMailboxOperations,
   ...organisationsOperations,
   ...peopleOperations,

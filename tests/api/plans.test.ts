@@ -8,6 +8,7 @@ import { buildContext } from '../support/context.js';
 import { countStatements, type AskedStatement } from '../support/count-statements.js';
 import { useTestDatabase } from '../support/database.js';
 import { buildOrganisation, buildPerson, buildSite, signIn } from '../support/factories.js';
+import { rowsTouched, sortsOf } from '../support/look-at-plan.js';
 
 const db = useTestDatabase();
 const NOW = new Date('2026-03-10T12:00:00.000Z');
@@ -37,14 +38,6 @@ const people = {
   dispatcher: () => ({ roles: ['dispatcher' as const], sites: sites.slice(0, 4) }),
 };
 
-interface PlanRow {
-  select_type: string;
-  table: string | null;
-  type: string | null;
-  key: string | null;
-  Extra: string;
-}
-
 /** Statements of one request to the list, without those of the sign-in. */
 async function statementsOf(name: keyof typeof people, query: string): Promise<AskedStatement[]> {
   const { context, statements } = countStatements(buildContext(db));
@@ -53,22 +46,6 @@ async function statementsOf(name: keyof typeof people, query: string): Promise<A
   statements.take();
   await agent.get(`/api/equipment?${query}`).expect(200);
   return statements.take().filter(({ text }) => /last_seen|visible_units|identities/.test(text));
-}
-
-/** Sorts of whole tables or slices; the merge of some pages of them sorts a derived result. */
-async function sortsOf({ text, values }: AskedStatement): Promise<PlanRow[]> {
-  const plan = await connection.query<PlanRow[]>(`EXPLAIN ${text}`, values);
-  return plan.filter((row) => row.Extra?.includes('filesort') && !row.table?.startsWith('<'));
-}
-
-async function rowsTouched({ text, values }: AskedStatement): Promise<number> {
-  await connection.query('FLUSH STATUS');
-  await connection.query(text, values);
-  const status = await connection.query<{ Variable_name: string; Value: string }[]>(
-    `SHOW SESSION STATUS WHERE Variable_name IN ('Handler_read_first', 'Handler_read_key',
-       'Handler_read_last', 'Handler_read_next', 'Handler_read_prev', 'Handler_read_rnd_next')`,
-  );
-  return status.reduce((sum, row) => sum + Number(row.Value), 0);
 }
 
 const everybody = Object.keys(people) as (keyof typeof people)[];
@@ -98,8 +75,8 @@ test('pages of the default list, and by state or site, touch few rows and sort n
     'pastLimit=true',
   ];
   await eachStatement(queries, async (statement, who) => {
-    expect(await rowsTouched(statement), who).toBeLessThan(FEW);
-    expect(await sortsOf(statement), who).toEqual([]);
+    expect(await rowsTouched(connection, statement), who).toBeLessThan(FEW);
+    expect(await sortsOf(connection, statement), who).toEqual([]);
   });
 });
 
@@ -107,13 +84,13 @@ test('a number leads to its few cars, without a walk along the others', async ()
   await eachStatement(
     ['search=12301', 'search=QTKX 12301', 'search=123'],
     async (statement, who) => {
-      expect(await rowsTouched(statement), who).toBeLessThan(FEW);
+      expect(await rowsTouched(connection, statement), who).toBeLessThan(FEW);
     },
   );
 });
 
 test('one site by attention reads no more than a few times what is there', async () => {
   await eachStatement(['site=S3'], async (statement, who) => {
-    expect(await rowsTouched(statement), who).toBeLessThan((8 * COUNT) / sites.length);
+    expect(await rowsTouched(connection, statement), who).toBeLessThan((8 * COUNT) / sites.length);
   });
 });

@@ -9,6 +9,7 @@ import {
   sitePolicy,
 } from '../../server/policies/administration-policy.js';
 import { alertPolicy } from '../../server/policies/alert-policy.js';
+import { mayReleaseReads, maySeeHeldReads } from '../../server/policies/held-read-policy.js';
 import { maySeeMail } from '../../server/policies/mail-policy.js';
 import { authorize, authorizeAll, permissions } from '../../server/policies/policy.js';
 
@@ -54,6 +55,8 @@ describe('who may do what to the configuration', () => {
     ['update an own site', sitePolicy.update, own, 'yes no no no'],
     ['delete an own site', sitePolicy.delete, own, 'yes no no no'],
     ["replace an own site's token", sitePolicy.replaceToken, own, 'yes no no no'],
+    ['report by eye at an own site', sitePolicy.reportByEye, own, 'yes no yes no'],
+    ['report by eye at another site', sitePolicy.reportByEye, other, 'yes no no no'],
     ['see a read point of an own site', readPointPolicy.see, own, 'yes no yes yes'],
     ['see a read point of another site', readPointPolicy.see, other, 'yes no no no'],
     ['update a read point of an own site', readPointPolicy.update, own, 'yes no no no'],
@@ -119,6 +122,8 @@ describe('who may do what with units, watches, alerts and mail', () => {
       'yes no no no',
     ],
     ['see the mail that went out', maySeeMail, 'yes no no no'],
+    ['see reads that are set aside', maySeeHeldReads, 'yes no no no'],
+    ['release reads', mayReleaseReads, 'yes no no no'],
   ])('%s', (_what, rule, expected) => {
     expect(whoMay(rule)).toBe(expected);
   });
