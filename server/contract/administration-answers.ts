@@ -1,5 +1,6 @@
 import { z } from 'zod';
 import { organisationKinds } from './administration.js';
+import { heartbeatView } from './heartbeat.js';
 import { equipmentKinds, instantSchema, roles, siteKinds } from './common.js';
 
 export const organisationView = z
@@ -32,6 +33,10 @@ export const siteView = z
     timeZone: z.string().optional(),
     returnHours: z.number().optional(),
     dwellLimitHours: z.number().optional(),
+    heartbeat: heartbeatView
+      .nullable()
+      .optional()
+      .meta({ description: 'For administrators; null: its reader never said anything.' }),
   })
   .meta({ id: 'Site' });
 export type SiteView = z.infer<typeof siteView>;
@@ -106,12 +111,25 @@ export const registeredView = z
         validTo: instantSchema.nullable(),
       }),
     ),
+    formerly: z
+      .array(
+        z.object({
+          unitId: z.string(),
+          display: z.string(),
+          validFrom: instantSchema.nullable(),
+          validTo: instantSchema.nullable(),
+        }),
+      )
+      .meta({ description: 'Numbers it carried before, the last first.' }),
   })
   .meta({ id: 'Registered' });
 export type RegisteredView = z.infer<typeof registeredView>;
 
 /** A reader's token, told this once. */
 export const readerTokenView = z.object({ token: z.string() }).meta({ id: 'ReaderToken' });
+
+/** An organisation's token, told this once. */
+export const reportTokenView = z.object({ token: z.string() }).meta({ id: 'ReportToken' });
 
 export const canSchema = z.object({ update: z.boolean(), delete: z.boolean() });
 

@@ -151,6 +151,12 @@ const tagInput = z.object({
   validTo: instantInput.nullish(),
 });
 
+const formerInput = z.object({
+  unit: z.string().max(60, 'is too long for a mark and number'),
+  validFrom: instantInput.nullish(),
+  validTo: instantInput,
+});
+
 export const registerInput = z
   .object({
     unit: z.string().max(60, 'is too long for a mark and number'),
@@ -160,9 +166,36 @@ export const registerInput = z
     lengthDm: z.int().min(1).max(10_000).nullish(),
     axles: z.int().min(1).max(64).nullish(),
     tags: z.array(tagInput).max(16).optional(),
+    formerly: z
+      .array(formerInput)
+      .max(16)
+      .optional()
+      .meta({
+        description: 'Numbers it carried before; the present one begins as the last ended.',
+      }),
   })
   .meta({ id: 'RegisterInput' });
 export type RegisterInput = z.output<typeof registerInput>;
+
+/** From an instant on a unit carries another mark and number. */
+export const renumberInput = z
+  .object({ unit: z.string().max(60, 'is too long for a mark and number'), from: instantInput })
+  .meta({ id: 'RenumberInput' });
+export type RenumberInput = z.output<typeof renumberInput>;
+
+/** From an instant on a unit wears a tag. */
+export const putTagInput = z
+  .object({
+    value: z.string().max(200, 'must have at most 64 bytes'),
+    side: z.enum(['left', 'right']).nullish(),
+    validFrom: instantInput,
+    takeFrom: z
+      .boolean()
+      .default(false)
+      .meta({ description: 'Take it from the unit that wears it then.' }),
+  })
+  .meta({ id: 'PutTagInput' });
+export type PutTagInput = z.output<typeof putTagInput>;
 
 /** How a body that takes one or many is told in the interface document. */
 export const batchOfSchema = <T extends z.ZodType>(item: T, most: number = MOST_ITEMS) =>

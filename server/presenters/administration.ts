@@ -121,11 +121,13 @@ export function presentRouteEdge(edge: {
 export function presentRegistered({
   unit,
   identity,
+  formerly,
   owner,
   tags,
 }: {
   unit: Unit;
   identity: Identity;
+  formerly: Identity[];
   owner: Pick<Organisation, 'code'> | null;
   tags: Tag[];
 }): RegisteredView {
@@ -143,6 +145,12 @@ export function presentRegistered({
       side: tag.side as RegisteredView['tags'][number]['side'],
       validFrom: tag.validFrom?.toISOString() ?? null,
       validTo: tag.validTo?.toISOString() ?? null,
+    })),
+    formerly: formerly.map(({ compact, display, validFrom, validTo }) => ({
+      unitId: compact,
+      display,
+      validFrom: validFrom?.toISOString() ?? null,
+      validTo: validTo?.toISOString() ?? null,
     })),
   };
 }

@@ -13,6 +13,8 @@ import { unitIdsByCompact } from './unit-ids-by-compact.js';
 export interface RegisteredUnit {
   unit: Unit;
   identity: Identity;
+  /** Identities before that, the last first. */
+  formerly: Identity[];
   owner: Pick<Organisation, 'code'> | null;
   tags: Tag[];
 }
@@ -62,12 +64,13 @@ async function withParts(db: Database, units: Unit[]): Promise<RegisteredUnit[]>
     }),
     Tag.findAll({ where: { unitId }, order: [['id', 'ASC']] }),
   ]);
-  const identityOf = new Map(identities.map((identity) => [identity.unitId, identity]));
+  const identitiesOf = new Map<number, Identity[]>(unitId.map((id) => [id, []]));
+  for (const identity of identities) identitiesOf.get(identity.unitId)?.unshift(identity);
   const tagsOf = new Map<number, Tag[]>(unitId.map((id) => [id, []]));
   for (const tag of tags) tagsOf.get(tag.unitId)?.push(tag);
   return units.flatMap((unit) => {
-    const identity = identityOf.get(unit.id);
+    const [identity, ...formerly] = identitiesOf.get(unit.id) ?? [];
     const parts = { unit, owner: unit.owner ?? null, tags: tagsOf.get(unit.id) ?? [] };
-    return identity ? { ...parts, identity } : [];
+    return identity ? { ...parts, identity, formerly } : [];
   });
 }

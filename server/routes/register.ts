@@ -2,11 +2,13 @@ import { Router } from 'express';
 import { recordOf, registeredView, storedOf } from '../contract/administration-answers.js';
 import {
   batchOfSchema,
+  putTagInput,
   registerInput,
   registerListQuery,
+  renumberInput,
   unitParams,
 } from '../contract/administration.js';
-import { pageOf } from '../contract/common.js';
+import { dataOf, pageOf } from '../contract/common.js';
 import type { Context } from '../lib/context.js';
 import { withTransaction } from '../lib/database.js';
 import type { Operation } from '../lib/openapi/operation.js';
@@ -20,16 +22,20 @@ import { authorize, permissions } from '../policies/policy.js';
 import { presentRegistered } from '../presenters/administration.js';
 import { refreshVisibleUnits } from '../projections/refresh-visible-units.js';
 import { findRegistered, listRegister } from '../queries/list-register.js';
+import { putTag } from '../services/put-tag.js';
+import { renumberUnit } from '../services/renumber-unit.js';
 import { takeOffRegister } from '../services/take-off-register.js';
 import { upsertRegister } from '../services/upsert-register.js';
 
 const list = { query: registerListQuery };
 const one = { params: unitParams };
+const renumber = { params: unitParams, body: renumberInput };
+const tag = { params: unitParams, body: putTagInput };
 const UNITS_AT_ONCE = 1_000;
 
 /** The register of cars, boxes and locomotives, for administrators. */
 export function registerRoutes(context: Context): Router {
-  const { db } = context;
+  const { db, clock } = context;
   const router = Router();
   const signedIn = requireUser(context);
 
@@ -52,7 +58,7 @@ export function registerRoutes(context: Context): Router {
     validateBatch(registerInput),
     async (request, response) => {
       const batch = batchOf(request, registerInput);
-      const { compacts, unitIds } = await upsertRegister(db, batch);
+      const { compacts, unitIds } = await upsertRegister(db, batch, clock.now());
       await showChanged(context, unitIds);
       const data = (await findRegistered(db, compacts)).map(presentRegistered);
       response.json({ data: batch.isList ? data : data[0] });
@@ -73,6 +79,39 @@ export function registerRoutes(context: Context): Router {
     await showChanged(context, [registered.unit.id]);
     response.status(204).end();
   });
+
+  router.post(
+    '/register/:unitId/renumber',
+    signedIn,
+    administrationBody,
+    validate(renumber),
+    async (request, response) => {
+      const { params, body } = validated(request, renumber);
+      const [registered] = await findRegistered(db, [params.unitId]);
+      authorize(actorOf(request), administrationPolicy, 'update', registered);
+      const { compact } = await renumberUnit(db, registered.unit.id, body, clock.now());
+      await showChanged(context, [registered.unit.id]);
+      const [renumbered] = await findRegistered(db, [compact]);
+      response.json({ data: renumbered && presentRegistered(renumbered) });
+    },
+  );
+
+  router.post(
+    '/register/:unitId/tags',
+    signedIn,
+    administrationBody,
+    validate(tag),
+    async (request, response) => {
+      const { params, body } = validated(request, tag);
+      const [registered] = await findRegistered(db, [params.unitId]);
+      authorize(actorOf(request), administrationPolicy, 'update', registered);
+      const { takenFrom } = await putTag(db, registered.unit.id, body, clock.now());
+      const touched = [registered.unit.id, takenFrom].filter((unitId) => unitId !== null);
+      await showChanged(context, touched);
+      const [worn] = await findRegistered(db, [params.unitId]);
+      response.json({ data: worn && presentRegistered(worn) });
+    },
+  );
 
   return router;
 }
@@ -113,5 +152,21 @@ export const registerOperations: Operation[] = [
     path: '/api/register/:unitId',
     summary: 'Take a unit off the register; what was read of it stays',
     params: unitParams,
+  },
+  {
+    method: 'post',
+    path: '/api/register/:unitId/renumber',
+    summary: 'Give a unit another mark and number from an instant on; the one before ends there',
+    params: unitParams,
+    body: renumberInput,
+    response: dataOf(registeredView),
+  },
+  {
+    method: 'post',
+    path: '/api/register/:unitId/tags',
+    summary: 'Put a tag on a unit from an instant on, or move it there from another',
+    params: unitParams,
+    body: putTagInput,
+    response: dataOf(registeredView),
   },
 ];

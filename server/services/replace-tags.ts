@@ -1,16 +1,13 @@
 import type { Transaction } from 'sequelize';
 import { batchPointer, type Batch } from '../lib/batch.js';
 import type { Database } from '../lib/database.js';
-import { Faults } from '../lib/faults.js';
 import { modelsOf } from '../models/index.js';
 import type { Tag } from '../models/tag.js';
+import { faultOverlaps, type NamingClaim } from './fault-overlaps.js';
+import { namingChanges, type NamingChange } from './naming-change.js';
 import type { RegisterItem, RegisterTag } from './read-register-items.js';
 
-interface Claim extends RegisterTag {
-  unitId: number;
-  /** Where the body says it; null for a tag that stands already. */
-  pointer: string | null;
-}
+type Claim = RegisterTag & NamingClaim;
 
 /**
  * Gives units exactly the tags their items list; items without a list keep theirs. At any
@@ -21,14 +18,14 @@ export async function replaceTags(
   batch: Batch<RegisterItem>,
   unitIds: Map<string, number>,
   transaction: Transaction,
-): Promise<void> {
+): Promise<NamingChange[]> {
   const claims = claimsOf(batch, unitIds);
   const replaced = new Set(
     batch.items.flatMap(({ tags, identity }) =>
       tags ? (unitIds.get(identity.compact) ?? []) : [],
     ),
   );
-  if (replaced.size === 0) return;
+  if (replaced.size === 0) return [];
   const { Tag } = modelsOf(db.sequelize);
   const present = await Tag.findAll({ where: { unitId: [...replaced] }, transaction });
   const values = [...new Set(claims.map(({ value }) => value))];
@@ -51,6 +48,8 @@ export async function replaceTags(
     })),
     { transaction },
   );
+  const before = [...standing, ...present.map(claimOfRow)];
+  return namingChanges('tag', before, [...standing, ...claims]);
 }
 
 function claimsOf(batch: Batch<RegisterItem>, unitIds: Map<string, number>): Claim[] {
@@ -63,7 +62,8 @@ function claimsOf(batch: Batch<RegisterItem>, unitIds: Map<string, number>): Cla
   );
 }
 
-function claimOfRow(tag: Tag): Claim {
+/** A tag that stands, as a claim. */
+export function claimOfRow(tag: Tag): Claim {
   const side = tag.side === 'left' || tag.side === 'right' ? tag.side : null;
   // The column is binary, so that no collation compares it: it comes as bytes.
   const value = Buffer.from(tag.value).toString('utf8');
@@ -73,28 +73,4 @@ function claimOfRow(tag: Tag): Claim {
 
 function keyOf({ unitId, value, side, validFrom, validTo }: Claim): string {
   return [unitId, side, validFrom?.getTime(), validTo?.getTime(), value].join(' ');
-}
-
-function faultOverlaps(claims: Claim[]): void {
-  const faults = new Faults();
-  const byValue = new Map<string, Claim[]>();
-  for (const claim of claims) {
-    const earlier = byValue.get(claim.value) ?? [];
-    const other = earlier.find((one) => overlaps(one, claim));
-    if (other && claim.pointer !== null) {
-      const detail =
-        other.unitId === claim.unitId
-          ? 'is given twice for the same time'
-          : 'belongs to another car or box at that time';
-      faults.add(claim.pointer, detail);
-    }
-    byValue.set(claim.value, [...earlier, claim]);
-  }
-  faults.refuse();
-}
-
-function overlaps(a: RegisterTag, b: RegisterTag): boolean {
-  const from = (tag: RegisterTag) => tag.validFrom?.getTime() ?? -Infinity;
-  const to = (tag: RegisterTag) => tag.validTo?.getTime() ?? Infinity;
-  return from(a) < to(b) && from(b) < to(a);
 }

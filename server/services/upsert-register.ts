@@ -7,8 +7,10 @@ import { inTransaction } from '../lib/in-transaction.js';
 import { modelsOf } from '../models/index.js';
 import type { Unit } from '../models/unit.js';
 import { organisationIdsByCode } from '../queries/ids-by-code.js';
-import { unitIdsByCompact } from '../queries/unit-ids-by-compact.js';
+import { unitIdsNamedNow } from '../queries/unit-ids-named-now.js';
 import { bumpConfigVersion } from './bump-config-version.js';
+import { freeUnitKeys } from './free-unit-keys.js';
+import { placeIdentities } from './place-identities.js';
 import { readRegisterItems, type RegisterItem } from './read-register-items.js';
 import { replaceTags } from './replace-tags.js';
 
@@ -19,16 +21,18 @@ export interface Registered {
 }
 
 /**
- * Puts units on the register, by identity, all or none, in a fixed number of statements. One
- * that only reads have named so far becomes registered. What is left out stays as it is; tags
- * that are given are all it has from now on.
+ * Puts units on the register, by the identity that they carry now, all or none, in a fixed number
+ * of statements. One that only reads have named so far becomes registered; a number that nobody
+ * carries any more makes another unit than the one that carried it. What is left out stays as it
+ * is; tags and former identities that are given are all it has from now on.
  */
 export async function upsertRegister(
   db: Database,
   batch: Batch<RegisterInput>,
+  now: Date,
 ): Promise<Registered> {
   const faults = new Faults();
-  const items = readRegisterItems(batch, faults);
+  const items = readRegisterItems(batch, faults, now);
   const parsed = { ...batch, items };
   faultRepeats(parsed, faults, 'unit', ({ identity }) => identity.compact);
   return inTransaction(db.sequelize, async (transaction) => {
@@ -36,10 +40,11 @@ export async function upsertRegister(
     const owners = await readOwners(db, batch, faults, transaction);
     faults.refuse();
     const compacts = items.map(({ identity }) => identity.compact);
-    const known = await unitIdsByCompact(db, compacts, transaction);
+    const known = await unitIdsNamedNow(db, compacts, now, transaction);
+    await freeUnitKeys(db, compacts, transaction);
     await upsertUnits(db, items, known, owners, transaction);
-    await addIdentities(db, items, transaction);
-    const unitIds = await unitIdsByCompact(db, compacts, transaction);
+    const unitIds = await withNewUnits(db, compacts, known, transaction);
+    await placeIdentities(db, parsed, unitIds, transaction);
     await replaceTags(db, parsed, unitIds, transaction);
     return { compacts, unitIds: compacts.flatMap((compact) => unitIds.get(compact) ?? []) };
   });
@@ -105,28 +110,17 @@ function rowOf(item: RegisterItem, unit: Unit | undefined, owners: Map<string, n
   };
 }
 
-/** Only now, after the units stand: a projector that made one meanwhile has named it too. */
-async function addIdentities(
+/** The units of the batch: those that were known, and those that stand under their keys now. */
+async function withNewUnits(
   db: Database,
-  items: RegisterItem[],
+  compacts: readonly string[],
+  known: Map<string, number>,
   transaction: Transaction,
-): Promise<void> {
-  const { Identity, Unit } = modelsOf(db.sequelize);
-  const compacts = items.map(({ identity }) => identity.compact);
-  const named = await unitIdsByCompact(db, compacts, transaction);
-  const missing = items.filter(({ identity }) => !named.has(identity.compact));
-  if (missing.length === 0) return;
-  const units = await Unit.findAll({
+): Promise<Map<string, number>> {
+  const made = await modelsOf(db.sequelize).Unit.findAll({
     attributes: ['id', 'unitKey'],
-    where: { unitKey: missing.map(({ identity }) => identity.compact) },
+    where: { unitKey: compacts.filter((compact) => !known.has(compact)) },
     transaction,
   });
-  const idByKey = new Map(units.map((unit) => [unit.unitKey, unit.id]));
-  const rows = missing.map(({ identity }) => ({
-    ...identity,
-    unitId: idByKey.get(identity.compact) ?? 0,
-    validFrom: null,
-    validTo: null,
-  }));
-  await Identity.bulkCreate(rows, { transaction });
+  return new Map([...known, ...made.map((unit) => [unit.unitKey, unit.id] as const)]);
 }

@@ -63,6 +63,7 @@ describe('putting on the register', () => {
           validTo: null,
         },
       ],
+      formerly: [],
     });
     const shown = await admin.get('/api/register/QTKX40127').expect(200);
     expect(shown.body).toEqual({ data: body.data, can: { update: true, delete: true } });
