@@ -49,7 +49,7 @@ export function antennasRoutes(context: Context): Router {
     validateBatch(antennaInput),
     async (request, response) => {
       const batch = batchOf(request, antennaInput);
-      await upsertAntennas(db, batch);
+      await upsertAntennas(db, batch, actorOf(request).personId);
       const data = (await findAntennas(db, batch.items)).map(presentAntenna);
       response.json({ data: batch.isList ? data : data[0] });
     },
@@ -65,7 +65,7 @@ export function antennasRoutes(context: Context): Router {
   router.delete('/antennas/:site/:number', signedIn, validate(one), async (request, response) => {
     const [antenna] = await findAntennas(db, [validated(request, one).params]);
     authorize(actorOf(request), administrationPolicy, 'delete', antenna);
-    await removeAntenna(db, antenna);
+    await removeAntenna(db, antenna, actorOf(request).personId);
     response.status(204).end();
   });
 

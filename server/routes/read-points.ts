@@ -44,7 +44,7 @@ export function readPointsRoutes(context: Context): Router {
     validateBatch(readPointInput),
     async (request, response) => {
       const batch = batchOf(request, readPointInput);
-      await upsertReadPoints(db, batch);
+      await upsertReadPoints(db, batch, actorOf(request).personId);
       const { rows, codes } = await findReadPoints(db, batch.items);
       const data = rows.map((row) => presentReadPoint(row, codes));
       response.json({ data: batch.isList ? data : data[0] });

@@ -62,7 +62,7 @@ export function routesRoutes(context: Context): Router {
     validate(store),
     async (request, response) => {
       const { body } = validated(request, store);
-      await upsertRoutes(db, body);
+      await upsertRoutes(db, body, actorOf(request).personId);
       const nodes = await findRouteNodes(
         db,
         body.nodes.map(({ code }) => code),
@@ -114,7 +114,7 @@ export function routesRoutes(context: Context): Router {
   router.delete('/routes/edges/:id', signedIn, validate(oneEdge), async (request, response) => {
     const edge = await findRouteEdge(db, validated(request, oneEdge).params.id);
     authorize(actorOf(request), administrationPolicy, 'delete', edge);
-    await removeRouteEdge(db, edge.id);
+    await removeRouteEdge(db, edge.id, actorOf(request).personId);
     response.status(204).end();
   });
 

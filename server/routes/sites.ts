@@ -7,6 +7,7 @@ import {
 } from '../contract/administration-answers.js';
 import { batchOfSchema, codeParams, siteInput } from '../contract/administration.js';
 import { dataOf, pageOf, pageQuery } from '../contract/common.js';
+import type { HeartbeatView } from '../contract/heartbeat.js';
 import type { Context } from '../lib/context.js';
 import type { Operation } from '../lib/openapi/operation.js';
 import { administrationBody } from '../middleware/administration-body.js';
@@ -14,9 +15,13 @@ import { requireAdministrator } from '../middleware/require-role.js';
 import { actorOf, requireUser } from '../middleware/require-user.js';
 import { batchOf, validateBatch } from '../middleware/validate-batch.js';
 import { validate, validated } from '../middleware/validate.js';
+import type { Site } from '../models/site.js';
+import type { Actor } from '../policies/actor.js';
 import { changes, sitePolicy } from '../policies/administration-policy.js';
 import { authorize, permissions } from '../policies/policy.js';
 import { presentSite } from '../presenters/administration.js';
+import { presentHeartbeat } from '../presenters/heartbeat.js';
+import { loadHeartbeats } from '../queries/load-heartbeats.js';
 import { findSite, findSites, listSites } from '../queries/list-sites.js';
 import { removeSite } from '../services/remove-site.js';
 import { replaceReaderToken } from '../services/replace-reader-token.js';
@@ -34,7 +39,10 @@ export function sitesRoutes(context: Context): Router {
   router.get('/sites', signedIn, validate(list), async (request, response) => {
     const actor = actorOf(request);
     const { rows, next } = await listSites(db, validated(request, list).query);
-    const data = rows.map((site) => presentSite(site, sitePolicy.details(actor, site)));
+    const heartbeats = await heartbeatsFor(context, actor, rows);
+    const data = rows.map((site) => {
+      return presentSite(site, sitePolicy.details(actor, site), heartbeats.get(site.id));
+    });
     response.json({ data, next });
   });
 
@@ -46,7 +54,7 @@ export function sitesRoutes(context: Context): Router {
     validateBatch(siteInput),
     async (request, response) => {
       const batch = batchOf(request, siteInput);
-      await upsertSites(db, batch);
+      await upsertSites(db, batch, actorOf(request).personId);
       const sites = await findSites(
         db,
         batch.items.map((item) => item.code),
@@ -60,7 +68,9 @@ export function sitesRoutes(context: Context): Router {
     const actor = actorOf(request);
     const site = await findSite(db, validated(request, one).params.code);
     authorize(actor, sitePolicy, 'see', site);
-    const data = presentSite(site, sitePolicy.details(actor, site));
+    const heartbeats = await heartbeatsFor(context, actor, [site]);
+    const details = sitePolicy.details(actor, site);
+    const data = presentSite(site, details, heartbeats.get(site.id));
     response.json({ data, can: permissions(actor, sitePolicy, changes, site) });
   });
 
@@ -78,6 +88,17 @@ export function sitesRoutes(context: Context): Router {
   });
 
   return router;
+}
+
+/** The last word of the readers at those of the sites where the person may hear it, by site id. */
+async function heartbeatsFor(
+  { db }: Context,
+  actor: Actor,
+  sites: Site[],
+): Promise<Map<number, HeartbeatView | null>> {
+  const ids = sites.filter((site) => sitePolicy.heartbeat(actor, site)).map(({ id }) => id);
+  const rows = await loadHeartbeats(db, ids);
+  return new Map(ids.map((id) => [id, presentHeartbeat(rows.get(id))]));
 }
 
 export const sitesOperations: Operation[] = [

@@ -52,3 +52,7 @@ export const unitsStandingAt = (siteId: number): UnitSelect =>
 
 /** Units that were ever seen anywhere. */
 export const unitsEverSeen = (): UnitSelect => word('SELECT unit_id FROM unit_folds');
+
+/** Units that were ever read at a read point. */
+export const unitsOfPoint = (readPointId: number): UnitSelect =>
+  sql`SELECT unit_id FROM passages WHERE read_point_id = ${readPointId}`;

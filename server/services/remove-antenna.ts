@@ -1,7 +1,6 @@
 import type { Database } from '../lib/database.js';
-import { inTransaction } from '../lib/in-transaction.js';
 import { modelsOf } from '../models/index.js';
-import { bumpConfigVersion } from './bump-config-version.js';
+import { changeConfiguration } from './change-configuration.js';
 import { refuseUsed } from './refuse-used.js';
 
 const uses = [
@@ -15,9 +14,9 @@ const uses = [
 export async function removeAntenna(
   db: Database,
   { id, siteId, number }: { id: number; siteId: number; number: number },
+  requestedBy: number | null,
 ): Promise<void> {
-  await inTransaction(db.sequelize, async (transaction) => {
-    await bumpConfigVersion(transaction);
+  await changeConfiguration(db, requestedBy, async (transaction) => {
     await refuseUsed(db, uses, { siteId, number }, transaction);
     await modelsOf(db.sequelize).Antenna.destroy({ where: { id }, transaction });
   });

@@ -1,12 +1,14 @@
 import type { Database } from '../lib/database.js';
-import { inTransaction } from '../lib/in-transaction.js';
 import { modelsOf } from '../models/index.js';
-import { bumpConfigVersion } from './bump-config-version.js';
+import { changeConfiguration } from './change-configuration.js';
 
 /** Takes an edge out of the route graph; its nodes stay. */
-export async function removeRouteEdge(db: Database, id: number): Promise<void> {
-  await inTransaction(db.sequelize, async (transaction) => {
-    await bumpConfigVersion(transaction);
+export async function removeRouteEdge(
+  db: Database,
+  id: number,
+  requestedBy: number | null,
+): Promise<void> {
+  await changeConfiguration(db, requestedBy, async (transaction) => {
     await modelsOf(db.sequelize).RouteEdge.destroy({ where: { id }, transaction });
   });
 }

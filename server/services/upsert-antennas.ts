@@ -2,18 +2,20 @@ import type { AntennaInput } from '../contract/administration.js';
 import { batchPointer, faultRepeats, type Batch } from '../lib/batch.js';
 import type { Database } from '../lib/database.js';
 import { Faults } from '../lib/faults.js';
-import { inTransaction } from '../lib/in-transaction.js';
 import { modelsOf } from '../models/index.js';
 import { siteIdsByCode } from '../queries/ids-by-code.js';
-import { bumpConfigVersion } from './bump-config-version.js';
+import { changeConfiguration } from './change-configuration.js';
 
 /** Stores antennas by site and number, all or none. */
-export async function upsertAntennas(db: Database, batch: Batch<AntennaInput>): Promise<void> {
+export async function upsertAntennas(
+  db: Database,
+  batch: Batch<AntennaInput>,
+  requestedBy: number | null,
+): Promise<void> {
   const faults = new Faults();
   faultRepeats(batch, faults, 'number', (item) => `${item.site} ${item.number}`);
   const { Antenna, ReadPoint } = modelsOf(db.sequelize);
-  await inTransaction(db.sequelize, async (transaction) => {
-    await bumpConfigVersion(transaction);
+  await changeConfiguration(db, requestedBy, async (transaction) => {
     const siteCodes = batch.items.map((item) => item.site);
     const siteIds = await siteIdsByCode(db, siteCodes, transaction);
     const readPoints = await ReadPoint.findAll({

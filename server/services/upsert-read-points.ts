@@ -2,11 +2,10 @@ import type { Place, ReadPointInput } from '../contract/administration.js';
 import { batchPointer, faultRepeats, given, type Batch } from '../lib/batch.js';
 import type { Database } from '../lib/database.js';
 import { Faults } from '../lib/faults.js';
-import { inTransaction } from '../lib/in-transaction.js';
 import { modelsOf } from '../models/index.js';
 import type { ReadPoint } from '../models/read-point.js';
 import { siteIdsByCode } from '../queries/ids-by-code.js';
-import { bumpConfigVersion } from './bump-config-version.js';
+import { changeConfiguration } from './change-configuration.js';
 
 const columns = [
   'name',
@@ -27,12 +26,15 @@ interface Sides {
 }
 
 /** Stores read points by site and code, all or none. What is left out stays as it is. */
-export async function upsertReadPoints(db: Database, batch: Batch<ReadPointInput>): Promise<void> {
+export async function upsertReadPoints(
+  db: Database,
+  batch: Batch<ReadPointInput>,
+  requestedBy: number | null,
+): Promise<void> {
   const faults = new Faults();
   faultRepeats(batch, faults, 'code', (item) => `${item.site} ${item.code}`);
   const { ReadPoint } = modelsOf(db.sequelize);
-  await inTransaction(db.sequelize, async (transaction) => {
-    await bumpConfigVersion(transaction);
+  await changeConfiguration(db, requestedBy, async (transaction) => {
     const siteIds = await siteIdsByCode(db, batch.items.flatMap(siteCodesOf), transaction);
     const codes = batch.items.map((item) => item.code);
     const known = await ReadPoint.findAll({

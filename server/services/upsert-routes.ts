@@ -2,21 +2,23 @@ import { Op, type Transaction } from 'sequelize';
 import type { RoutesInput } from '../contract/administration.js';
 import type { Database } from '../lib/database.js';
 import { Faults } from '../lib/faults.js';
-import { inTransaction } from '../lib/in-transaction.js';
 import { modelsOf } from '../models/index.js';
 import type { RouteEdge } from '../models/route-edge.js';
 import { siteIdsByCode } from '../queries/ids-by-code.js';
-import { bumpConfigVersion } from './bump-config-version.js';
+import { changeConfiguration } from './change-configuration.js';
 
 /**
  * Stores nodes by code and edges by ends and line, all or none. An edge runs both ways: given
  * from its other end it is the same edge.
  */
-export async function upsertRoutes(db: Database, input: RoutesInput): Promise<void> {
+export async function upsertRoutes(
+  db: Database,
+  input: RoutesInput,
+  requestedBy: number | null,
+): Promise<void> {
   const faults = new Faults();
   faultRepeated(input, faults);
-  await inTransaction(db.sequelize, async (transaction) => {
-    await bumpConfigVersion(transaction);
+  await changeConfiguration(db, requestedBy, async (transaction) => {
     await upsertNodes(db, input.nodes, faults, transaction);
     const nodeIds = await nodeIdsByCode(db, input, transaction);
     input.edges.forEach(({ from, to }, index) => {

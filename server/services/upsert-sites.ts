@@ -3,23 +3,25 @@ import type { SiteInput } from '../contract/administration.js';
 import { batchPointer, faultRepeats, type Batch } from '../lib/batch.js';
 import type { Database } from '../lib/database.js';
 import { Faults } from '../lib/faults.js';
-import { inTransaction } from '../lib/in-transaction.js';
 import { modelsOf } from '../models/index.js';
 import { siteIdsByCode } from '../queries/ids-by-code.js';
-import { bumpConfigVersion } from './bump-config-version.js';
+import { changeConfiguration } from './change-configuration.js';
 
 /**
  * Stores sites by code, all or none, each with its node of the route graph. Hours that are left
  * out stay as they are.
  */
-export async function upsertSites(db: Database, batch: Batch<SiteInput>): Promise<void> {
+export async function upsertSites(
+  db: Database,
+  batch: Batch<SiteInput>,
+  requestedBy: number | null,
+): Promise<void> {
   const faults = new Faults();
   faultRepeats(batch, faults, 'code', (item) => item.code);
   faults.refuse();
   const { Site } = modelsOf(db.sequelize);
   const codes = batch.items.map((item) => item.code);
-  await inTransaction(db.sequelize, async (transaction) => {
-    await bumpConfigVersion(transaction);
+  await changeConfiguration(db, requestedBy, async (transaction) => {
     const known = await Site.findAll({ where: { code: codes }, transaction });
     const byCode = new Map(known.map((site) => [site.code, site]));
     const rows = batch.items.map((item) => ({
