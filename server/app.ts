@@ -13,6 +13,8 @@ import { securityHeaders } from './middleware/security-headers.js';
 import { administrationRouters, allOperations, portalRouters } from './routes/all-routes.js';
 import { demoMailboxPages } from './routes/demo-mailbox.js';
 import { healthRoutes } from './routes/health.js';
+import { ingestHeartbeatRoutes } from './routes/ingest-heartbeat.js';
+import { ingestReportsRoutes } from './routes/ingest-reports.js';
 import { ingestRoutes } from './routes/ingest.js';
 import { metricsRoutes } from './routes/metrics.js';
 import { openapiRoutes } from './routes/openapi.js';
@@ -45,6 +47,8 @@ export function createApp(context: Context, parts: AppParts = {}): Express {
   app.use('/api', noStore);
   app.use('/api', healthRoutes(context, lag));
   app.use('/api', ingestRoutes(context, parts.limits?.ingest));
+  app.use('/api', ingestReportsRoutes(context, parts.limits?.ingest));
+  app.use('/api', ingestHeartbeatRoutes(context, parts.limits?.ingest));
 
   app.use(sameOrigin(env.publicUrl));
   app.use(compression({ filter: isCompressible }));

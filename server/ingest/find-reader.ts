@@ -1,4 +1,4 @@
-import { createHash } from 'node:crypto';
+import { hashAccessToken } from '../lib/access-token.js';
 import type { Database } from '../lib/database.js';
 import { asUnavailable } from './as-unavailable.js';
 
@@ -8,11 +8,6 @@ export interface Reader {
   site: { id: number; code: string };
 }
 
-/** SHA-256 of a reader token: what is stored of it. Tokens are 256 random bits, so no salt. */
-export function hashReaderToken(token: string): Buffer {
-  return createHash('sha256').update(token).digest();
-}
-
 /** The reader whose token this is, or null when it is unknown or was replaced. */
 export async function findReader(db: Database, token: string): Promise<Reader | null> {
   const rows = await asUnavailable(() =>
@@ -20,7 +15,7 @@ export async function findReader(db: Database, token: string): Promise<Reader | 
       `SELECT reader_tokens.id AS token_id, site_id, code
          FROM reader_tokens JOIN sites ON sites.id = site_id
         WHERE token_hash = ? AND revoked_at IS NULL`,
-      [hashReaderToken(token)],
+      [hashAccessToken(token)],
     ),
   );
   const [row] = rows;

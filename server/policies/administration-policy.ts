@@ -13,13 +13,27 @@ export const administrationPolicy: Policy<object, Change> = {
 };
 
 /** Everybody may know that a site exists and its name; more is `details`. */
-export const sitePolicy: Policy<Pick<Site, 'id'>, Change | 'details' | 'replaceToken'> = {
+export const sitePolicy: Policy<
+  Pick<Site, 'id'>,
+  Change | 'details' | 'heartbeat' | 'replaceToken' | 'reportByEye'
+> = {
   see: () => true,
   details: (actor, site) => isAdministrator(actor) || isOwnSite(actor, site.id),
   update: isAdministrator,
   delete: isAdministrator,
+  heartbeat: isAdministrator,
   replaceToken: isAdministrator,
+  reportByEye: (actor, site) => {
+    const siteIds = eyeSitesOf(actor);
+    return siteIds === null || siteIds.includes(site.id);
+  },
 };
+
+/** Sites where the person may say what they saw with their own eyes; null: all. */
+export function eyeSitesOf(actor: Actor): number[] | null {
+  if (isAdministrator(actor)) return null;
+  return actor.roles.includes('clerk') ? actor.siteIds : [];
+}
 
 /** Read points are seen by those who work at their site. */
 export const readPointPolicy: Policy<Pick<ReadPoint, 'siteId'>, Change> = {

@@ -8,6 +8,7 @@ import type {
   RouteNodeView,
   SiteView,
 } from '../contract/administration-answers.js';
+import type { HeartbeatView } from '../contract/heartbeat.js';
 import type { Identity } from '../models/identity.js';
 import type { Organisation } from '../models/organisation.js';
 import type { Person } from '../models/person.js';
@@ -37,8 +38,12 @@ export function presentPerson(person: Person): PersonView {
   };
 }
 
-/** Code and name; the rest with `details`. */
-export function presentSite(site: Site, details: boolean): SiteView {
+/** Code and name; the rest with `details`; the reader's last word where one is given, or null. */
+export function presentSite(
+  site: Site,
+  details: boolean,
+  heartbeat?: HeartbeatView | null,
+): SiteView {
   const { code, name } = site;
   if (!details) return { code, name };
   return {
@@ -50,6 +55,7 @@ export function presentSite(site: Site, details: boolean): SiteView {
     timeZone: site.timeZone,
     returnHours: Number(site.returnHours),
     dwellLimitHours: Number(site.dwellLimitHours),
+    ...(heartbeat !== undefined && { heartbeat }),
   };
 }
 

@@ -46,3 +46,16 @@ export async function siteCodesById(
   });
   return new Map(rows.map((row) => [row.id, row.code]));
 }
+
+/** Sites by name, at most `limit`; `siteIds` null: of all, else of these. */
+export async function listSiteNames(db: Database, siteIds: number[] | null, limit: number) {
+  return modelsOf(db.sequelize).Site.findAll({
+    attributes: ['code', 'name'],
+    where: siteIds === null ? {} : { id: siteIds },
+    order: [
+      ['name', 'ASC'],
+      ['code', 'ASC'],
+    ],
+    limit,
+  });
+}

@@ -7,8 +7,11 @@ import { demoMailboxOperations, demoMailboxRoutes } from './demo-mailbox.js';
 import { equipmentOperations, equipmentRoutes } from './equipment.js';
 import { eventsOperations, eventsRoutes } from './events.js';
 import { fleetOperations, fleetRoutes } from './fleet.js';
+import { handReportsOperations, handReportsRoutes } from './hand-reports.js';
 import { healthOperations } from './health.js';
 import { heldReadsOperations, heldReadsRoutes } from './held-reads.js';
+import { ingestHeartbeatOperations } from './ingest-heartbeat.js';
+import { ingestReportsOperations } from './ingest-reports.js';
 import { ingestOperations } from './ingest.js';
 import { lookUpOperations, lookUpRoutes } from './look-up.js';
 import { mailOperations, mailRoutes } from './mail.js';
@@ -41,6 +44,7 @@ export function administrationRouters(context: Context): Router[] {
 export function portalRouters(context: Context, projectorLagMs: () => Promise<number>): Router[] {
   return [
     equipmentRoutes(context),
+    handReportsRoutes(context),
     fleetRoutes(context, projectorLagMs),
     mapRoutes(context),
     lookUpRoutes(context),
@@ -60,7 +64,10 @@ export const allOperations: Operation[] = [
   ...openapiOperations,
   ...sessionOperations,
   ...ingestOperations,
+  ...ingestReportsOperations,
+  ...ingestHeartbeatOperations,
   ...equipmentOperations,
+  ...handReportsOperations,
   ...fleetOperations,
   ...mapOperations,
   ...lookUpOperations,

@@ -13,6 +13,7 @@ import {
   sightingsAnswer,
   sightingsQuery,
 } from '../contract/movements.js';
+import { unitReportsAnswer, unitReportsQuery } from '../contract/unit-reports.js';
 import type { Context } from '../lib/context.js';
 import type { Operation } from '../lib/openapi/operation.js';
 import { actorOf, requireUser } from '../middleware/require-user.js';
@@ -23,12 +24,14 @@ import { listUnitIds } from '../queries/list-unit-ids.js';
 import { loadEquipment } from '../queries/load-equipment.js';
 import { unitSourcesOf } from '../queries/narrow-units.js';
 import { unitHandlers } from './unit-handlers.js';
+import { unitReportsHandler } from './unit-reports.js';
 
 const list = { query: equipmentQuery };
 const unit = { params: unitParams };
 const movements = { params: unitParams, query: movementsQuery };
 const sightings = { params: unitParams, query: sightingsQuery };
 const reads = { params: unitParams, query: readsQuery };
+const reports = { params: unitParams, query: unitReportsQuery };
 
 /** The list of equipment, one unit, and its history. */
 export function equipmentRoutes(context: Context): Router {
@@ -57,6 +60,12 @@ export function equipmentRoutes(context: Context): Router {
   router.get('/equipment/:unitId/movements', guard, validate(movements), handle.movements);
   router.get('/equipment/:unitId/sightings', guard, validate(sightings), handle.sightings);
   router.get('/equipment/:unitId/reads', guard, validate(reads), handle.reads);
+  router.get(
+    '/equipment/:unitId/reports',
+    guard,
+    validate(reports),
+    unitReportsHandler(context, reports),
+  );
   return router;
 }
 
@@ -98,5 +107,13 @@ export const equipmentOperations: Operation[] = [
     params: unitParams,
     query: readsQuery,
     response: readsAnswer,
+  },
+  {
+    method: 'get',
+    path: '/api/equipment/:unitId/reports',
+    summary: 'List what was reported of a unit by messages and by eye, latest first',
+    params: unitParams,
+    query: unitReportsQuery,
+    response: unitReportsAnswer,
   },
 ];

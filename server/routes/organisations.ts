@@ -1,7 +1,12 @@
 import { Router } from 'express';
-import { organisationView, recordOf, storedOf } from '../contract/administration-answers.js';
+import {
+  reportTokenView,
+  organisationView,
+  recordOf,
+  storedOf,
+} from '../contract/administration-answers.js';
 import { batchOfSchema, codeParams, organisationInput } from '../contract/administration.js';
-import { pageOf, pageQuery } from '../contract/common.js';
+import { dataOf, pageOf, pageQuery } from '../contract/common.js';
 import type { Context } from '../lib/context.js';
 import type { Operation } from '../lib/openapi/operation.js';
 import { administrationBody } from '../middleware/administration-body.js';
@@ -14,6 +19,7 @@ import { authorize, permissions } from '../policies/policy.js';
 import { presentOrganisation } from '../presenters/administration.js';
 import { findOrganisations, listOrganisations } from '../queries/list-organisations.js';
 import { removeOrganisation } from '../services/remove-organisation.js';
+import { replaceReportToken } from '../services/replace-report-token.js';
 import { upsertOrganisations } from '../services/upsert-organisations.js';
 
 const list = { query: pageQuery };
@@ -65,6 +71,19 @@ export function organisationsRoutes(context: Context): Router {
     response.status(204).end();
   });
 
+  router.post(
+    '/organisations/:code/report-token',
+    signedIn,
+    requireAdministrator,
+    validate(one),
+    async (request, response) => {
+      const [organisation] = await findOrganisations(db, [validated(request, one).params.code]);
+      authorize(actorOf(request), administrationPolicy, 'update', organisation);
+      const token = await replaceReportToken(context, organisation.id);
+      response.status(201).json({ data: { token } });
+    },
+  );
+
   return router;
 }
 
@@ -95,5 +114,13 @@ export const organisationsOperations: Operation[] = [
     path: '/api/organisations/:code',
     summary: 'Remove an organisation to which nothing belongs',
     params: codeParams,
+  },
+  {
+    method: 'post',
+    path: '/api/organisations/:code/report-token',
+    summary: "Make an organisation's token to report with, told this once; the one before ends",
+    params: codeParams,
+    status: 201,
+    response: dataOf(reportTokenView),
   },
 ];

@@ -11,7 +11,7 @@ import { presentEquipmentDetail } from '../presenters/equipment-detail.js';
 import { presentLeg, presentStay } from '../presenters/movements.js';
 import { presentRead, presentSighting, type Sides } from '../presenters/sighting.js';
 import { findOpenableUnits, type UnitAccess } from '../queries/find-openable-units.js';
-import { findUnit } from '../queries/find-unit.js';
+import { findUnits } from '../queries/find-units.js';
 import { listLegs, sumRailMetres } from '../queries/list-legs.js';
 import { listReads } from '../queries/list-reads.js';
 import { listSightings } from '../queries/list-sightings.js';
@@ -109,15 +109,17 @@ export function unitHandlers(context: Context, schemas: UnitSchemas) {
  * The unit of the address, for a person who may open it: 404 otherwise. Null when the answer went
  * out: another form, or a former identity, is shown the way to the present one.
  */
-async function openUnit(
+export async function openUnit(
   context: Context,
   request: Request,
   response: Response,
 ): Promise<OpenUnit | null> {
   const { db, clock } = context;
   const text = (request.params as z.infer<typeof unitParams>).unitId;
-  const found = await findUnit(db, text, clock.now());
-  const openable = await findOpenableUnits(db, actorOf(request), found ? [found.unitId] : []);
+  const holders = await findUnits(db, text, clock.now());
+  const unitIds = holders.map((holder) => holder.unitId);
+  const openable = await findOpenableUnits(db, actorOf(request), unitIds);
+  const found = holders.find((holder) => openable.has(holder.unitId));
   const access = found && openable.get(found.unitId);
   if (!found || !access) throw notFound();
   authorize(actorOf(request), unitPolicy, 'see', { access });

@@ -6,6 +6,10 @@ import { refuseUsed } from './refuse-used.js';
 const uses = [
   { words: 'people', sql: 'SELECT 1 FROM people WHERE organisation_id = :id' },
   { words: 'cars or boxes on the register', sql: 'SELECT 1 FROM units WHERE owner_id = :id' },
+  {
+    words: 'movement reports',
+    sql: 'SELECT 1 FROM movement_reports WHERE organisation_id = :id',
+  },
 ];
 
 /** Removes an organisation to which nobody and nothing belongs; else 409. */

@@ -20,6 +20,8 @@ const uses = [
            WHERE route_nodes.site_id = :id`,
   },
   { words: 'reads', sql: 'SELECT 1 FROM `reads` WHERE site_id = :id' },
+  { words: 'movement reports', sql: 'SELECT 1 FROM movement_reports WHERE site_id = :id' },
+  { words: 'reports by eye', sql: 'SELECT 1 FROM hand_reports WHERE site_id = :id' },
   { words: 'stays', sql: 'SELECT 1 FROM stays WHERE site_id = :id' },
 ];
 

@@ -55,6 +55,7 @@ describe('who may do what to the configuration', () => {
     ['update an own site', sitePolicy.update, own, 'yes no no no'],
     ['delete an own site', sitePolicy.delete, own, 'yes no no no'],
     ["replace an own site's token", sitePolicy.replaceToken, own, 'yes no no no'],
+    ["see the heartbeat of an own site's reader", sitePolicy.heartbeat, own, 'yes no no no'],
     ['report by eye at an own site', sitePolicy.reportByEye, own, 'yes no yes no'],
     ['report by eye at another site', sitePolicy.reportByEye, other, 'yes no no no'],
     ['see a read point of an own site', readPointPolicy.see, own, 'yes no yes yes'],

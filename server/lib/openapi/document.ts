@@ -11,6 +11,7 @@ const securityOf: Record<OperationAccess, Record<string, string[]>[]> = {
   public: [],
   session: [{ session: [] }],
   reader: [{ readerToken: [] }],
+  reporter: [{ reportToken: [] }],
   metrics: [{ metricsToken: [] }],
 };
 
@@ -38,6 +39,7 @@ export function openApiDocument(
       securitySchemes: {
         session: { type: 'apiKey', in: 'cookie', name: options.cookieName },
         readerToken: { type: 'http', scheme: 'bearer', description: 'One token a site.' },
+        reportToken: { type: 'http', scheme: 'bearer', description: 'One token an organisation.' },
         metricsToken: { type: 'http', scheme: 'bearer' },
       },
     },

@@ -1,7 +1,7 @@
 import type { z } from 'zod';
 
-/** Who may call a route: anybody, a signed-in person, a reader, or the holder of the metrics token. */
-export type OperationAccess = 'public' | 'session' | 'reader' | 'metrics';
+/** Who may call a route: anybody, a signed-in person, or the holder of one of the tokens. */
+export type OperationAccess = 'public' | 'session' | 'reader' | 'reporter' | 'metrics';
 
 /**
  * One route as the interface document tells it. `path` is the whole path in Express form
