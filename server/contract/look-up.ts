@@ -10,6 +10,10 @@ export const lookUpHit = z
     kind: z.enum(['equipment', 'site']),
     id: z.string().meta({ description: 'unitId or site code' }),
     display: z.string(),
+    formerly: z
+      .string()
+      .nullable()
+      .meta({ description: 'The number that it was found by, where it carries another now.' }),
     detail: z.string(),
   })
   .meta({ id: 'LookUpHit' });

@@ -2,9 +2,9 @@ import type { Database } from '../lib/database.js';
 import type { Actor } from '../policies/actor.js';
 import { findOpenableUnits } from './find-openable-units.js';
 import { listUnitIds } from './list-unit-ids.js';
-import { loadEquipment, type Equipment } from './load-equipment.js';
+import { loadEquipment, type Equipment, type IdentityRow } from './load-equipment.js';
 import { seesSite, unitSourcesOf } from './narrow-units.js';
-import { exactCondition, findCandidates } from './search-units.js';
+import { exactCondition, findCandidates, identityMatches } from './search-units.js';
 import { ask, likeText, sql } from './sql.js';
 
 const MOST_UNITS = 10;
@@ -16,8 +16,11 @@ export interface FoundSite {
   kind: string;
 }
 
+/** A unit with the former identity that it was found by; null where its present one was meant. */
+export type FoundEquipment = Equipment & { foundBy: IdentityRow | null };
+
 /**
- * Equipment that the text names: by a whole number all that the person may open, then, of their
+ * Equipment that the text names, present numbers before former ones: by a whole number all that the person may open, then, of their
  * lists, what it only begins (or, when it begins nothing, is part of).
  */
 export async function lookUpUnits(
@@ -25,7 +28,7 @@ export async function lookUpUnits(
   actor: Actor,
   text: string,
   now: Date,
-): Promise<Equipment[]> {
+): Promise<FoundEquipment[]> {
   const whole = await lookUpWhole(db, actor, text);
   const { unitIds: parts } = await listUnitIds(db, {
     sources: unitSourcesOf(actor),
@@ -36,7 +39,14 @@ export async function lookUpUnits(
     now,
   });
   const unitIds = [...new Set([...whole, ...parts])].slice(0, MOST_UNITS);
-  return loadEquipment(db, unitIds, now);
+  const found = (await loadEquipment(db, unitIds, now)).map((unit) => {
+    const matching = unit.identities.filter((identity) => identityMatches(identity, text));
+    const [first = null] = matching;
+    return { ...unit, foundBy: matching.includes(unit.identities[0]) ? null : first };
+  });
+  const isWhole = ({ row }: FoundEquipment) => whole.includes(row.unit_id);
+  const place = (unit: FoundEquipment) => (isWhole(unit) ? 0 : 2) + (unit.foundBy ? 1 : 0);
+  return found.sort((a, b) => place(a) - place(b));
 }
 
 async function lookUpWhole(db: Database, actor: Actor, text: string): Promise<number[]> {

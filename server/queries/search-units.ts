@@ -66,3 +66,15 @@ export async function findCandidates(db: Database, condition: Sql): Promise<numb
   );
   return rows.length > MOST_CANDIDATES ? null : rows.map((row) => row.unit_id);
 }
+
+/** True for an identity that `identityCondition` of the text finds, whichever mode. */
+export function identityMatches(identity: { compact: string; number: string }, text: string) {
+  const joined = text.replace(/[^0-9A-Za-z]/g, '').toUpperCase();
+  const unpadded = joined.replace(/^([A-Z]*)0+(?=[0-9])/, '$1');
+  const parsed = parseUnit(joined);
+  if (parsed.kind === 'unit' && parsed.identity.compact === identity.compact) return true;
+  if (parsed.kind === 'number' && parsed.numbers.includes(identity.number)) return true;
+  return /^[0-9]+$/.test(joined)
+    ? identity.number.includes(joined) || identity.number.startsWith(unpadded)
+    : identity.compact.startsWith(joined) || identity.compact.startsWith(unpadded);
+}

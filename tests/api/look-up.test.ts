@@ -48,12 +48,14 @@ test('a number alone finds its car first, then those it begins', async () => {
       kind: 'equipment',
       id: 'QTKX40127',
       display: 'QTKX 40127',
+      formerly: null,
       detail: 'tank car, Quarrel Tank Leasing, formerly QBLX 55',
     },
     {
       kind: 'equipment',
       id: 'QTKX401270',
       display: 'QTKX 401270',
+      formerly: null,
       detail: 'car, Quarrel Tank Leasing',
     },
   ]);

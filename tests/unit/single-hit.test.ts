@@ -5,6 +5,7 @@ const hit = (id: string, display: string, kind: 'equipment' | 'site' = 'equipmen
   kind,
   id,
   display,
+  formerly: null as string | null,
   detail: '',
 });
 const car = hit('QTKX40127', 'QTKX 40127');
@@ -26,6 +27,13 @@ describe('Enter in the look-up field', () => {
     expect(singleHit('305438', [box, longer])).toBe(box);
     expect(singleHit('3054381', [box, longer])).toBe(box);
     expect(singleHit('alder bend yard', [site, car])).toBe(site);
+  });
+
+  test('opens the one that carried exactly that number once, unless another does now', () => {
+    const renumbered = { ...hit('QBLX77', 'QBLX 77'), formerly: 'QTKX 40127' };
+    expect(singleHit('40127', [longer, renumbered])).toBe(renumbered);
+    expect(singleHit('qtkx 40127', [renumbered, longer])).toBe(renumbered);
+    expect(singleHit('40127', [renumbered, car])).toBe(car);
   });
 
   test('leaves the choice where two carry the number, or none does', () => {

@@ -3,21 +3,24 @@ import type { LookUpHit } from '../../lib/wire';
 
 /**
  * The one hit that Enter opens: the only one, or the only one that carries exactly the number
- * typed (40127 is not 401270). Null where a person has to choose.
+ * typed (40127 is not 401270), be it since long ago. Null where a person has to choose.
  */
 export function singleHit(typed: string, hits: LookUpHit[]): LookUpHit | null {
   const [only, ...others] = hits;
   if (only && others.length === 0) return only;
-  const [exact, ...alike] = hits.filter((hit) => carries(hit, typed));
+  const now = hits.filter((hit) => carries(hit.kind, hit.display, typed));
+  const once = hits.filter(({ kind, formerly }) => formerly && carries(kind, formerly, typed));
+  const [exact, ...alike] = now.length > 0 ? now : once;
   return exact && alike.length === 0 ? exact : null;
 }
 
-function carries(hit: LookUpHit, typed: string): boolean {
-  if (hit.kind === 'site') return hit.display.toLowerCase() === typed.trim().toLowerCase();
+function carries(kind: LookUpHit['kind'], display: string, typed: string): boolean {
+  if (kind === 'site') return display.toLowerCase() === typed.trim().toLowerCase();
   const parsed = parseUnit(typed);
-  if (parsed.kind === 'unit') return parsed.identity.compact === hit.id;
-  const own = parseUnit(hit.display);
-  if (parsed.kind !== 'number' || own.kind !== 'unit') return false;
+  const own = parseUnit(display);
+  if (own.kind !== 'unit') return false;
+  if (parsed.kind === 'unit') return parsed.identity.compact === own.identity.compact;
+  if (parsed.kind !== 'number') return false;
   return (
     own.identity.number === parsed.digits ||
     own.identity.compact.replace(/\D/g, '') === parsed.digits

@@ -87,9 +87,20 @@ function Hit(props: { id: string; hit: LookUpHit; isChosen: boolean; onPick: () 
       onPointerDown={(event) => event.preventDefault()}
       onClick={onPick}
     >
-      {hit.kind === 'site' ? <span>{hit.display}</span> : <Mark>{hit.display}</Mark>}
+      <Named hit={hit} />
       <span className="truncate font-condensed text-ink-soft">{hit.detail}</span>
     </li>
+  );
+}
+
+/** "QTKX 40127, now QBLX 77" where the number is one that it carried once. */
+function Named({ hit }: { hit: LookUpHit }) {
+  if (hit.kind === 'site') return <span>{hit.display}</span>;
+  if (hit.formerly === null) return <Mark>{hit.display}</Mark>;
+  return (
+    <span className="flex-none">
+      <Mark>{hit.formerly}</Mark>, now <Mark>{hit.display}</Mark>
+    </span>
   );
 }
 
