@@ -74,6 +74,18 @@ export type HeldReadsQuery = z.output<typeof heldReadsQuery>;
 export const heldReadsAnswer = pageOf(heldReadView);
 export type HeldReadsAnswer = z.infer<typeof heldReadsAnswer>;
 
+export const heldTagsQuery = z.object({ code: z.enum(holdCodes), ...pageShape });
+export type HeldTagsQuery = z.output<typeof heldTagsQuery>;
+
+/** The reads of one tag that are set aside for one reason, at whatever site. */
+export const heldTagView = z
+  .object({ tag: z.string(), count: z.int(), oldestAt: instantSchema, newestAt: instantSchema })
+  .meta({ id: 'HeldTag' });
+export type HeldTagView = z.infer<typeof heldTagView>;
+
+export const heldTagsAnswer = pageOf(heldTagView);
+export type HeldTagsAnswer = z.infer<typeof heldTagsAnswer>;
+
 export const releaseInput = z
   .object({
     code: z.literal('clock-ahead', 'must be clock-ahead: no other reads can be released'),

@@ -1,4 +1,9 @@
-import { actOfHold, type HeldGroupView, type HeldReadView } from '../contract/held-reads.js';
+import {
+  actOfHold,
+  type HeldGroupView,
+  type HeldReadView,
+  type HeldTagView,
+} from '../contract/held-reads.js';
 import type { HoldCode } from '../contract/ingest.js';
 
 /** A read that is set aside, as the queries find it. */
@@ -25,6 +30,14 @@ export interface HeldGroupRecord {
   sample: HeldReadRecord[];
 }
 
+/** Reads of one tag and reason, as the queries find them. */
+export interface HeldTagRecord {
+  tag: Buffer;
+  count: number;
+  oldest_at: Date;
+  newest_at: Date;
+}
+
 export function presentHeldRead(row: HeldReadRecord): HeldReadView {
   return {
     site: siteOf(row),
@@ -47,6 +60,15 @@ export function presentHeldGroup(group: HeldGroupRecord): HeldGroupView {
     newestAt: group.newest_at.toISOString(),
     antennas: group.antennas,
     sample: group.sample.map(presentHeldRead),
+  };
+}
+
+export function presentHeldTag(row: HeldTagRecord): HeldTagView {
+  return {
+    tag: row.tag.toString('utf8'),
+    count: row.count,
+    oldestAt: row.oldest_at.toISOString(),
+    newestAt: row.newest_at.toISOString(),
   };
 }
 

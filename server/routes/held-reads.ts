@@ -4,6 +4,8 @@ import {
   heldListAnswer,
   heldReadsAnswer,
   heldReadsQuery,
+  heldTagsAnswer,
+  heldTagsQuery,
   releaseAnswer,
   releaseInput,
 } from '../contract/held-reads.js';
@@ -14,15 +16,17 @@ import { actorOf, requireUser } from '../middleware/require-user.js';
 import { validate, validated } from '../middleware/validate.js';
 import { mayReleaseReads, maySeeHeldReads } from '../policies/held-read-policy.js';
 import { authorizeAll } from '../policies/policy.js';
-import { presentHeldGroup, presentHeldRead } from '../presenters/held-read.js';
+import { presentHeldGroup, presentHeldRead, presentHeldTag } from '../presenters/held-read.js';
 import { findReferences } from '../queries/find-references.js';
 import { siteIdsByCode } from '../queries/ids-by-code.js';
 import { countHeld, listHeldGroups } from '../queries/list-held-groups.js';
 import { listHeldReads } from '../queries/list-held-reads.js';
+import { listHeldTags } from '../queries/list-held-tags.js';
 import { releaseHeldReads, type ReleaseOf } from '../services/release-held-reads.js';
 
 const groups = { query: pageQuery };
 const reads = { query: heldReadsQuery };
+const tags = { query: heldTagsQuery };
 const release = { body: releaseInput };
 
 /** Reads that are stored but set aside, and the release of those whose clock was ahead. */
@@ -46,6 +50,12 @@ export function heldReadsRoutes(context: Context): Router {
     const { siteId } = await findReferences(db, { site: query.site });
     const { rows, next } = await listHeldReads(db, siteId, query);
     response.json({ data: rows.map(presentHeldRead), next });
+  });
+
+  router.get('/held-reads/tags', user, validate(tags), async (request, response) => {
+    authorizeAll(actorOf(request), maySeeHeldReads);
+    const { rows, next } = await listHeldTags(db, validated(request, tags).query);
+    response.json({ data: rows.map(presentHeldTag), next });
   });
 
   router.post('/held-reads/release', user, validate(release), async (request, response) => {
@@ -82,6 +92,13 @@ export const heldReadsOperations: Operation[] = [
     summary: 'List the reads set aside for one reason, latest first (administrator)',
     query: heldReadsQuery,
     response: heldReadsAnswer,
+  },
+  {
+    method: 'get',
+    path: '/api/held-reads/tags',
+    summary: 'List the tags whose reads are set aside for one reason (administrator)',
+    query: heldTagsQuery,
+    response: heldTagsAnswer,
   },
   {
     method: 'post',

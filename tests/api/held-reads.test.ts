@@ -161,6 +161,31 @@ describe('the reads themselves', () => {
   });
 });
 
+describe('the tags', () => {
+  test('of reads set aside for one reason come once each, whatever site read them', async () => {
+    const alder = await readerAt(db, 'ALDER');
+    const cairn = await readerAt(db, 'CAIRN');
+    await sendAhead({ app, clock }, alder.token, 3);
+    await sendAhead({ app, clock }, cairn.token, 2, 2);
+    const agent = await administrator();
+    const first = await agent.get('/api/held-reads/tags?code=clock-ahead&limit=2').expect(200);
+    const { data, next } = first.body as { data: object[]; next: string };
+    const query = `code=clock-ahead&limit=2&cursor=${encodeURIComponent(next)}`;
+    const second = await agent.get(`/api/held-reads/tags?${query}`).expect(200);
+    expect(second.body.next).toBeNull();
+    const tags = [...data, ...(second.body as { data: object[] }).data];
+    const at2 = new Date(clock.now().getTime() + 60 * MINUTE + 2_000).toISOString();
+    expect(tags).toHaveLength(3);
+    expect(tags).toMatchObject([
+      { tag: carTag(1), count: 1 },
+      { tag: carTag(2), count: 2, oldestAt: at2, newestAt: at2 },
+      { tag: carTag(3), count: 2 },
+    ]);
+    await agent.get('/api/held-reads/tags?code=late').expect(400);
+    await agent.get('/api/held-reads/tags?code=too-old&cursor=IiEi').expect(400);
+  });
+});
+
 describe('who is not an administrator', () => {
   test.each(['owner', 'clerk', 'dispatcher'] as const)(
     '%s sees and releases nothing',
@@ -170,6 +195,7 @@ describe('who is not an administrator', () => {
       const agent = await signIn(app, await buildPerson(db, { roles: [role], sites: [site] }));
       await agent.get('/api/held-reads').expect(403);
       await agent.get('/api/held-reads/reads?code=clock-ahead&site=ALDER').expect(403);
+      await agent.get('/api/held-reads/tags?code=clock-ahead').expect(403);
       await agent.post('/api/held-reads/release').send({ code: 'clock-ahead' }).expect(403);
       expect(await standing(db)).toMatchObject({ released: 0, held: 1 });
       const { body } = await agent.get('/api/session').expect(200);
@@ -221,10 +247,11 @@ describe('with very many', () => {
       '/api/held-reads',
       '/api/held-reads/reads?code=clock-ahead',
       '/api/held-reads/reads?code=unknown-antenna&site=ALDER',
+      '/api/held-reads/tags?code=clock-ahead&limit=5',
     ];
     const few = [];
     for (const address of addresses) few.push((await statementsOf(address)).length);
-    expect(few).toEqual([4, 1, 1]);
+    expect(few).toEqual([4, 1, 1, 1]);
     await fill();
     const connection = await db.pool.getConnection();
     try {
@@ -232,6 +259,7 @@ describe('with very many', () => {
         await statementsOf('/api/held-reads'),
         await statementsOf('/api/held-reads/reads?code=clock-ahead'),
         await statementsOf('/api/held-reads/reads?code=unknown-antenna&site=S3'),
+        await statementsOf('/api/held-reads/tags?code=clock-ahead&limit=5'),
       ];
       expect([groups, ...pages].map((asked) => asked.length)).toEqual(few);
       for (const statement of pages.flat()) {
