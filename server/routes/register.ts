@@ -58,7 +58,12 @@ export function registerRoutes(context: Context): Router {
     validateBatch(registerInput),
     async (request, response) => {
       const batch = batchOf(request, registerInput);
-      const { compacts, unitIds } = await upsertRegister(db, batch, clock.now());
+      const { compacts, unitIds } = await upsertRegister(
+        db,
+        batch,
+        clock.now(),
+        actorOf(request).personId,
+      );
       await showChanged(context, unitIds);
       const data = (await findRegistered(db, compacts)).map(presentRegistered);
       response.json({ data: batch.isList ? data : data[0] });
@@ -75,7 +80,7 @@ export function registerRoutes(context: Context): Router {
   router.delete('/register/:unitId', signedIn, validate(one), async (request, response) => {
     const [registered] = await findRegistered(db, [validated(request, one).params.unitId]);
     authorize(actorOf(request), administrationPolicy, 'delete', registered);
-    await takeOffRegister(db, registered.unit.id);
+    await takeOffRegister(db, registered.unit.id, actorOf(request).personId);
     await showChanged(context, [registered.unit.id]);
     response.status(204).end();
   });
@@ -89,7 +94,8 @@ export function registerRoutes(context: Context): Router {
       const { params, body } = validated(request, renumber);
       const [registered] = await findRegistered(db, [params.unitId]);
       authorize(actorOf(request), administrationPolicy, 'update', registered);
-      const { compact } = await renumberUnit(db, registered.unit.id, body, clock.now());
+      const { personId } = actorOf(request);
+      const { compact } = await renumberUnit(db, registered.unit.id, body, clock.now(), personId);
       await showChanged(context, [registered.unit.id]);
       const [renumbered] = await findRegistered(db, [compact]);
       response.json({ data: renumbered && presentRegistered(renumbered) });
@@ -105,7 +111,8 @@ export function registerRoutes(context: Context): Router {
       const { params, body } = validated(request, tag);
       const [registered] = await findRegistered(db, [params.unitId]);
       authorize(actorOf(request), administrationPolicy, 'update', registered);
-      const { takenFrom } = await putTag(db, registered.unit.id, body, clock.now());
+      const { personId } = actorOf(request);
+      const { takenFrom } = await putTag(db, registered.unit.id, body, clock.now(), personId);
       const touched = [registered.unit.id, takenFrom].filter((unitId) => unitId !== null);
       await showChanged(context, touched);
       const [worn] = await findRegistered(db, [params.unitId]);

@@ -8,8 +8,10 @@ import { modelsOf } from '../models/index.js';
 import type { Tag } from '../models/tag.js';
 import { bumpConfigVersion } from './bump-config-version.js';
 import { namingChanges, type NamingChange } from './naming-change.js';
+import { planRegisterRework } from './plan-register-rework.js';
 import { readTag, type RegisterTag } from './read-register-items.js';
 import { claimOfRow } from './replace-tags.js';
+import { unitDisplay } from './unit-display.js';
 
 /** What came of putting a tag on a unit. */
 export interface TagPut {
@@ -27,6 +29,7 @@ export async function putTag(
   unitId: number,
   input: PutTagInput,
   now: Date,
+  requestedBy: number | null,
 ): Promise<TagPut> {
   const faults = new Faults();
   const tag = readTag(input, faults, (name) => `/${name}`);
@@ -35,7 +38,10 @@ export async function putTag(
   return inTransaction(db.sequelize, async (transaction) => {
     await bumpConfigVersion(transaction);
     const at = { ...tag, validFrom: input.validFrom };
-    return putOn(db, unitId, at, input.takeFrom, transaction);
+    const put = await putOn(db, unitId, at, input.takeFrom, transaction);
+    const words = `Tag put on ${await unitDisplay(db, unitId, transaction)}`;
+    await planRegisterRework(transaction, { words, requestedBy, names: put.changes });
+    return put;
   });
 }
 

@@ -11,7 +11,9 @@ import { faultOverlaps } from './fault-overlaps.js';
 import { freeUnitKeys } from './free-unit-keys.js';
 import { loadNamings, namingOf } from './load-namings.js';
 import { namingChanges, type NamingChange } from './naming-change.js';
+import { planRegisterRework } from './plan-register-rework.js';
 import { readIdentity } from './read-identity.js';
+import { unitDisplay } from './unit-display.js';
 import { writeIdentities } from './write-identities.js';
 
 /**
@@ -23,6 +25,7 @@ export async function renumberUnit(
   unitId: number,
   input: RenumberInput,
   now: Date,
+  requestedBy: number | null,
 ): Promise<{ compact: string; changes: NamingChange[] }> {
   const faults = new Faults();
   const identity = readIdentity(input.unit, faults, '/unit');
@@ -30,7 +33,10 @@ export async function renumberUnit(
   faults.refuse();
   return inTransaction(db.sequelize, async (transaction) => {
     await bumpConfigVersion(transaction);
+    const before = await unitDisplay(db, unitId, transaction);
     const changes = await giveIdentity(db, unitId, identity, input.from, transaction);
+    const words = `${before} renumbered ${identity.display}`;
+    await planRegisterRework(transaction, { words, requestedBy, names: changes });
     return { compact: identity.compact, changes };
   });
 }

@@ -11,6 +11,7 @@ import { unitIdsNamedNow } from '../queries/unit-ids-named-now.js';
 import { bumpConfigVersion } from './bump-config-version.js';
 import { freeUnitKeys } from './free-unit-keys.js';
 import { placeIdentities } from './place-identities.js';
+import { namesOf, planRegisterRework, type RegisteredKind } from './plan-register-rework.js';
 import { readRegisterItems, type RegisterItem } from './read-register-items.js';
 import { replaceTags } from './replace-tags.js';
 
@@ -30,6 +31,7 @@ export async function upsertRegister(
   db: Database,
   batch: Batch<RegisterInput>,
   now: Date,
+  requestedBy: number | null,
 ): Promise<Registered> {
   const faults = new Faults();
   const items = readRegisterItems(batch, faults, now);
@@ -42,10 +44,16 @@ export async function upsertRegister(
     const compacts = items.map(({ identity }) => identity.compact);
     const known = await unitIdsNamedNow(db, compacts, now, transaction);
     await freeUnitKeys(db, compacts, transaction);
-    await upsertUnits(db, items, known, owners, transaction);
+    const units = await upsertUnits(db, items, known, owners, transaction);
     const unitIds = await withNewUnits(db, compacts, known, transaction);
-    await placeIdentities(db, parsed, unitIds, transaction);
-    await replaceTags(db, parsed, unitIds, transaction);
+    const numbers = await placeIdentities(db, parsed, unitIds, transaction);
+    const tags = await replaceTags(db, parsed, unitIds, transaction);
+    await planRegisterRework(transaction, {
+      words: `Register: ${namesOf(items.map(({ identity }) => identity.display))}`,
+      requestedBy,
+      names: [...numbers, ...tags],
+      units,
+    });
     return { compacts, unitIds: compacts.flatMap((compact) => unitIds.get(compact) ?? []) };
   });
 }
@@ -71,7 +79,7 @@ async function upsertUnits(
   known: Map<string, number>,
   owners: Map<string, number>,
   transaction: Transaction,
-): Promise<void> {
+): Promise<{ before: RegisteredKind[]; after: RegisteredKind[] }> {
   const { Unit } = modelsOf(db.sequelize);
   const present = await Unit.findAll({ where: { id: [...known.values()] }, transaction });
   const byId = new Map<number | undefined, Unit>(present.map((unit) => [unit.id, unit]));
@@ -91,8 +99,16 @@ async function upsertUnits(
     ],
     transaction,
   });
+  return {
+    before: present.map(({ id, kind, registered }) => ({ unitId: id, kind, registered })),
+    after: items.flatMap(({ identity, input: { kind } }) => {
+      const unitId = known.get(identity.compact);
+      return unitId === undefined ? [] : [{ unitId, kind, registered: true }];
+    }),
+  };
 }
 
+/** What is to be stored; of what the item leaves out, what stands there. */
 function rowOf(item: RegisterItem, unit: Unit | undefined, owners: Map<string, number>) {
   const { input, identity } = item;
   const kept = <Value>(value: Value | undefined, present: Value | undefined) =>
