@@ -30,7 +30,9 @@ export const forbidden = (detail = 'You may see this but not do that.') =>
 export const notFound = (detail = 'There is nothing here that you may see.') =>
   new Problem(404, 'Not found', detail);
 
-export const timedOut = (detail: string) => new Problem(408, 'The request came too slowly', detail);
+/** The connection closes with it: what may still come of the body must not pass for a request. */
+export const timedOut = (detail: string) =>
+  new Problem(408, 'The request came too slowly', detail, [], { Connection: 'close' });
 
 export const conflict = (detail: string, errors: ProblemFault[] = []) =>
   new Problem(409, 'Not as things stand', detail, errors);

@@ -3,15 +3,17 @@ import { INGEST_BOUNDS } from '../contract/ingest.js';
 import { invalid, timedOut, tooLarge, type Problem } from '../errors.js';
 
 /**
- * The whole body. Throws 413 as soon as it is over `mostBytes`, and 408 when nothing of it came
- * for `idleMs`; what is still on its way then is thrown away.
+ * The whole body. Throws 413 as soon as it is over `mostBytes`, 408 when nothing of it came for
+ * `idleMs`, and what `count` throws when it is told of bytes; what is still on its way then is
+ * thrown away.
  */
 export function receiveBody(
   request: IncomingMessage,
   idleMs: number,
   mostBytes: number = INGEST_BOUNDS.bytes,
+  count: (bytes: number) => void = () => undefined,
 ): Promise<Buffer> {
-  const most = mostBytes < 1e6 ? `${mostBytes / 1e3} kB` : `${mostBytes / 1e6} MB`;
+  const most = mostBytes < 1e6 ? `${mostBytes / 1e3} kB` : `${Math.floor(mostBytes / 1e6)} MB`;
   const tooLargeProblem = () => tooLarge(`A request holds at most ${most} here.`);
   if (Number(request.headers['content-length'] ?? 0) > mostBytes) {
     request.resume();
@@ -32,9 +34,14 @@ export function receiveBody(
     }, idleMs);
     const onData = (chunk: Buffer) => {
       timer.refresh();
-      chunks.push(chunk);
       bytes += chunk.length;
-      if (bytes > mostBytes) refuse(tooLargeProblem());
+      if (bytes > mostBytes) return refuse(tooLargeProblem());
+      try {
+        count(chunk.length);
+      } catch (problem) {
+        return refuse(problem as Problem);
+      }
+      chunks.push(chunk);
     };
     const onEnd = () => {
       stop();

@@ -1,5 +1,11 @@
-import { Router, type Request, type RequestHandler } from 'express';
-import { ingestAnswer, ndjsonQuery, readsBody, wheelsBody } from '../contract/ingest.js';
+import { Router, type Request, type RequestHandler, type Response } from 'express';
+import {
+  INGEST_BOUNDS,
+  ingestAnswer,
+  ndjsonQuery,
+  readsBody,
+  wheelsBody,
+} from '../contract/ingest.js';
 import { forbidden, unsupported } from '../errors.js';
 import { decodeUtf8, parseJson } from '../ingest/checked-json.js';
 import { ingestReads } from '../ingest/ingest-reads.js';
@@ -27,16 +33,27 @@ export function ingestRoutes(context: Context, limits?: Partial<IngestLimits>): 
     await meter.countRequest(readerOf(request).tokenId);
     next();
   };
+  const receive = (request: Request, response: Response) => {
+    const count = meter.countBytes(readerOf(request).tokenId, response);
+    return receiveBody(request, bounds.idleMs, INGEST_BOUNDS.bytes, count);
+  };
+  // Asked again once the body is in: who lost the token meanwhile takes nothing in.
   const guard = requireReader(context);
 
+  const readReads: RequestHandler = async (request, response, next) => {
+    request.body = readsOf(request, await receive(request, response));
+    next();
+  };
   router.post(
     '/ingest/reads',
     guard,
     countRequest,
     validateReadsQuery,
+    readReads,
+    guard,
     async (request, response) => {
       const { tokenId, site } = readerOf(request);
-      const { site: named, reads } = await receiveReads(request, bounds.idleMs);
+      const { site: named, reads } = request.body as WireReads;
       requireOwnSite(site.code, named);
       await meter.countReads(tokenId, reads.length);
       const { retainMonths } = env;
@@ -45,9 +62,9 @@ export function ingestRoutes(context: Context, limits?: Partial<IngestLimits>): 
     },
   );
 
-  const readJson: RequestHandler = async (request, _response, next) => {
+  const readJson: RequestHandler = async (request, response, next) => {
     requireType(request, JSON_TYPE);
-    request.body = parseJson(decodeUtf8(await receiveBody(request, bounds.idleMs)));
+    request.body = parseJson(decodeUtf8(await receive(request, response)));
     next();
   };
   router.post(
@@ -55,6 +72,7 @@ export function ingestRoutes(context: Context, limits?: Partial<IngestLimits>): 
     guard,
     countRequest,
     readJson,
+    guard,
     validate(wheels),
     async (request, response) => {
       const { site } = readerOf(request);
@@ -76,8 +94,7 @@ const validateReadsQuery: RequestHandler = (request, response, next) => {
   return (type === NDJSON_TYPE ? validateNdjsonQuery : validateNoQuery)(request, response, next);
 };
 
-async function receiveReads(request: Request, idleMs: number): Promise<WireReads> {
-  const bytes = await receiveBody(request, idleMs);
+function readsOf(request: Request, bytes: Uint8Array): WireReads {
   if (typeOf(request) === JSON_TYPE) return readsOfJson(bytes);
   return { site: validated(request, ndjson).query.site, reads: readsOfNdjson(bytes) };
 }
