@@ -1,5 +1,7 @@
 import { INGEST_BOUNDS } from '../contract/ingest.js';
 import { invalid } from '../errors.js';
+import { Faults } from '../lib/faults.js';
+import { pointerOf } from '../lib/pointer.js';
 
 /** Decodes UTF-8; throws a 400 problem for bytes that are none. A byte order mark is dropped. */
 export function decodeUtf8(bytes: Uint8Array): string {
@@ -10,26 +12,63 @@ export function decodeUtf8(bytes: Uint8Array): string {
   }
 }
 
-/** Parses JSON whose nesting is within bounds; throws a 400 problem for all else. */
+/**
+ * Parses JSON whose nesting is within bounds; throws a 400 problem for all else. So is an object
+ * with a field that comes twice: of two lists of reads the parser would drop one.
+ */
 export function parseJson(text: string): unknown {
-  refuseDeepNesting(text);
+  const outermost: string[] = [];
+  refuseDeepNesting(text, (start, end) => {
+    if (isKey(text, end)) outermost.push(text.slice(start, end));
+  });
+  let value: unknown;
+  let keys: string[];
   try {
-    return JSON.parse(text) as unknown;
+    value = JSON.parse(text);
+    keys = outermost.map((key) => JSON.parse(key) as string);
   } catch {
     throw invalid('The body is not JSON.');
   }
+  refuseRepeats(keys);
+  return value;
+}
+
+function refuseRepeats(keys: string[]): void {
+  if (new Set(keys).size === keys.length) return;
+  const seen = new Set<string>();
+  const faults = new Faults();
+  for (const key of keys) {
+    if (seen.has(key)) faults.add(pointerOf([key]), 'is given twice');
+    seen.add(key);
+  }
+  faults.refuse();
+}
+
+function isKey(text: string, end: number): boolean {
+  let at = end;
+  while (' \t\r\n'.includes(text[at] ?? 'x')) at += 1;
+  return text[at] === ':';
 }
 
 const QUOTE = 34;
 const BACKSLASH = 92;
 
-/** Throws a 400 problem when lists and objects stand too deep in each other. Reads no further. */
-export function refuseDeepNesting(text: string): void {
+/**
+ * Throws a 400 problem when lists and objects stand too deep in each other. Reads no further.
+ * Tells of each text of the outermost list or object where it starts and where it is over.
+ */
+export function refuseDeepNesting(
+  text: string,
+  onOutermost: (start: number, end: number) => void = () => undefined,
+): void {
   let depth = 0;
   for (let at = 0; at < text.length; at += 1) {
     const code = text.charCodeAt(at);
-    if (code === QUOTE) at = endOfString(text, at);
-    else if (code === 91 || code === 123) depth += 1;
+    if (code === QUOTE) {
+      const start = at;
+      at = endOfString(text, at);
+      if (depth === 1) onOutermost(start, at + 1);
+    } else if (code === 91 || code === 123) depth += 1;
     else if (code === 93 || code === 125) depth -= 1;
     if (depth > INGEST_BOUNDS.depth) {
       throw invalid(`The body is nested more than ${INGEST_BOUNDS.depth} deep.`);
