@@ -13,6 +13,7 @@ module.exports = {
       time_zone: site.timeZone,
       return_hours: site.returnHours,
       dwell_limit_hours: site.dwellLimitHours,
+      leads: JSON.stringify(site.leads),
     }));
     await insertMissing(queryInterface, 'sites', rows, (row) => row.code);
   },

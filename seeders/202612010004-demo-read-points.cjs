@@ -4,7 +4,7 @@ const { demoWorld, idOf, insertMissing, removeAll, rowsBy } = require('./support
 
 const placeId = (sites, code) => (code === null ? null : idOf(sites, code));
 
-function readPointRow(point, sites) {
+function readPointRow(point, sites, towardOf) {
   return {
     site_id: idOf(sites, point.site),
     code: point.code,
@@ -15,6 +15,7 @@ function readPointRow(point, sites) {
     decreasing_track: point.kind === 'spot' ? point.track : null,
     increasing_site_id: placeId(sites, point.increasingPlace),
     increasing_track: point.kind === 'spot' ? point.track : null,
+    toward: JSON.stringify(towardOf(point)),
   };
 }
 
@@ -34,9 +35,9 @@ async function antennaRows(queryInterface, points, sites) {
 
 module.exports = {
   async up(queryInterface) {
-    const { readPoints } = demoWorld();
+    const { readPoints, towardOf } = demoWorld();
     const sites = await rowsBy(queryInterface, 'sites', 'code');
-    const rows = readPoints.map((point) => readPointRow(point, sites));
+    const rows = readPoints.map((point) => readPointRow(point, sites, towardOf));
     const pointKey = (row) => `${row.site_id} ${row.code}`;
     await insertMissing(queryInterface, 'read_points', rows, pointKey);
     const antennas = await antennaRows(queryInterface, readPoints, sites);

@@ -23,9 +23,16 @@ function identityRow({ identity }, units) {
   return { unit_id: idOf(units, compact), compact, scheme, mark, number, display };
 }
 
-function tagRows(unit, units) {
-  const unitId = idOf(units, unit.identity.compact);
-  return unit.tags.map(({ value, side }) => ({ unit_id: unitId, value, side }));
+const instant = (ms) => (ms === null ? null : new Date(ms));
+
+function tagRow(spell, units) {
+  return {
+    unit_id: idOf(units, spell.unit),
+    value: spell.value,
+    side: spell.side,
+    valid_from: instant(spell.validFrom),
+    valid_to: instant(spell.validTo),
+  };
 }
 
 module.exports = {
@@ -37,7 +44,8 @@ module.exports = {
     const identities = registered().map((unit) => identityRow(unit, units));
     const identityKey = (row) => `${row.unit_id} ${row.compact}`;
     await insertMissing(queryInterface, 'identities', identities, identityKey);
-    const tags = registered().flatMap((unit) => tagRows(unit, units));
+    const spells = demoWorld().tagSpellsAt(Date.now());
+    const tags = spells.map((spell) => tagRow(spell, units));
     const tagKey = (row) => `${row.unit_id} ${String(row.value)}`;
     await insertMissing(queryInterface, 'tags', tags, tagKey);
   },

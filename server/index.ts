@@ -88,11 +88,11 @@ async function seed(context: Context): Promise<Date> {
 }
 
 async function simulate(context: Context, from: Date): Promise<void> {
-  const { rotateReaderTokens } = await import('./simulator/rotate-reader-tokens.js');
+  const { demoCredentials } = await import('./simulator/demo-credentials.js');
   const { startSimulator } = await import('./simulator/start-simulator.js');
   const simulator = startSimulator({
     address: `http://127.0.0.1:${context.env.port}`,
-    tokens: await rotateReaderTokens(context),
+    ...(await demoCredentials(context)),
     clock: context.clock,
     from,
     onError: (error) => logger.warn({ err: error }, 'the simulator was not heard'),

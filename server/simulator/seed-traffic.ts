@@ -1,9 +1,20 @@
+import { ingestHandReports } from '../ingest/ingest-hand-reports.js';
 import { ingestReads } from '../ingest/ingest-reads.js';
+import { ingestReports } from '../ingest/ingest-reports.js';
 import { ingestWheels } from '../ingest/ingest-wheels.js';
 import type { Context } from '../lib/context.js';
 import type { Database } from '../lib/database.js';
 import { createProjector, type Projector } from '../projections/projector.js';
-import { batchesOf, bySite, wheelRecord, wireRead, type Batch } from './batches.js';
+import {
+  batchesOf,
+  bySite,
+  handReport,
+  wheelRecord,
+  wireRead,
+  wireReport,
+  type Batch,
+} from './batches.js';
+import { whoTells, type WhoTells } from './who-tells.js';
 import { Traffic } from './traffic.js';
 import { world } from './world.js';
 
@@ -27,7 +38,11 @@ export interface SeedOptions {
   onProgress?: (progress: SeedProgress) => void;
 }
 
-type Sites = Map<string, { id: number; code: string }>;
+/** What the demo's batches are stored under. */
+interface Doors {
+  sites: Map<string, { id: number; code: string }>;
+  tellers: WhoTells;
+}
 
 /**
  * Gives the demo the traffic that it has not seen yet: from its last stored read (`days` back at
@@ -51,43 +66,55 @@ export async function seedTraffic(context: Context, options: SeedOptions): Promi
 /** The first half of `seedTraffic`: the reads are in the queue, and nothing is made of them yet. */
 export async function feedTraffic(context: Context, options: SeedOptions): Promise<number> {
   const { until, days = 45, onProgress = () => undefined } = options;
-  const sites = await demoSites(context.db);
+  const doors = { sites: await demoSites(context.db), tellers: await whoTells(context.db) };
   const to = until.getTime();
-  const last = await lastReceived(context.db, sites);
+  const last = await lastReceived(context.db, doors.sites);
   const from = Math.max(to - days * DAY, last === null ? 0 : last - OVERLAP_MS);
   const traffic = new Traffic();
   const total = Math.ceil((to - from) / HOUR);
   let stored = 0;
   for (let at = from; at < to; at += SLICE_MS) {
     const end = Math.min(at + SLICE_MS, to);
-    stored += await takeIn(context, sites, traffic.between(at, end));
+    stored += await takeIn(context, doors, traffic.between(at, end));
     onProgress({ done: Math.ceil((end - from) / HOUR), total, unit: 'hours of traffic' });
   }
   return stored;
 }
 
-async function takeIn(context: Context, sites: Sites, sent: ReturnType<Traffic['between']>) {
+async function takeIn(context: Context, doors: Doors, sent: ReturnType<Traffic['between']>) {
   const perSite = [...bySite(sent).values()].map(async (ofSite) => {
     let stored = 0;
-    for (const batch of batchesOf(ofSite)) stored += await deliver(context, sites, batch);
+    for (const batch of batchesOf(ofSite)) stored += await deliver(context, doors, batch);
     return stored;
   });
   const counts = await Promise.all(perSite);
   return counts.reduce((sum, count) => sum + count, 0);
 }
 
-async function deliver({ db, env }: Context, sites: Sites, batch: Batch): Promise<number> {
-  const site = sites.get(batch.site);
+/** Hands a batch to the function behind its door; returns how many reads of it were new. */
+async function deliver({ db, env }: Context, doors: Doors, batch: Batch): Promise<number> {
+  const site = doors.sites.get(batch.site);
   if (!site) return 0;
-  const receivedAt = new Date(batch.deliveredAt);
-  if (batch.kind === 'wheels') {
-    await ingestWheels(db, { site, record: wheelRecord(batch.record), receivedAt });
-    return 0;
-  }
-  const reads = batch.reads.map(wireRead);
   const { retainMonths } = env;
-  const answer = await ingestReads(db, { site, reads, receivedAt, retainMonths });
-  return answer.accepted + answer.held;
+  const received = { receivedAt: new Date(batch.deliveredAt), retainMonths };
+  if (batch.kind === 'reads') {
+    const answer = await ingestReads(db, { site, reads: batch.reads.map(wireRead), ...received });
+    return answer.accepted + answer.held;
+  }
+  const { railroadId, clerkId } = doors.tellers;
+  if (batch.kind === 'wheels') {
+    await ingestWheels(db, { site, record: wheelRecord(batch.record), ...received });
+  } else if (batch.kind === 'reports' && railroadId !== null) {
+    const { source } = batch.reports[0] ?? { source: '' };
+    const reports = batch.reports.map(wireReport);
+    await ingestReports(db, { organisationId: railroadId, source, reports, ...received });
+  } else if (batch.kind === 'hand' && clerkId !== null) {
+    const { track } = batch.report;
+    const reports = [handReport(batch.report)];
+    const place = { siteId: site.id, personId: clerkId, track };
+    await ingestHandReports(db, { ...place, reports, ...received });
+  }
+  return 0;
 }
 
 async function takeUp(
@@ -119,7 +146,7 @@ async function waiting({ pool }: Database): Promise<number> {
   return row?.waiting ?? 0;
 }
 
-async function demoSites({ pool }: Database): Promise<Sites> {
+async function demoSites({ pool }: Database): Promise<Doors['sites']> {
   const codes = world.sites.map(({ code }) => code);
   const rows = await pool.query<{ id: number; code: string }[]>(
     'SELECT id, code FROM sites WHERE code IN (?)',
@@ -129,7 +156,7 @@ async function demoSites({ pool }: Database): Promise<Sites> {
 }
 
 /** When the last batch of the demo's readers came in, in milliseconds; null before the first. */
-async function lastReceived({ pool }: Database, sites: Sites): Promise<number | null> {
+async function lastReceived({ pool }: Database, sites: Doors['sites']): Promise<number | null> {
   const ids = [...sites.values()].map(({ id }) => id);
   if (ids.length === 0) return null;
   const [row] = await pool.query<{ received_at: Date }[]>(

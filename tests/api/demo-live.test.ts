@@ -37,7 +37,10 @@ function expected(from: number, to: number) {
   const keys = sent.flatMap((each) =>
     each.kind === 'read' ? [`${each.site} ${each.antenna} ${each.readAt} ${each.tag}`] : [],
   );
-  return { reads: new Set(keys).size, wheels: sent.length - keys.length };
+  return {
+    reads: new Set(keys).size,
+    wheels: sent.filter(({ kind }) => kind === 'wheels').length,
+  };
 }
 
 async function stored() {

@@ -1,7 +1,8 @@
 import { describe, expect, it } from 'vitest';
 import type { Database } from '../../server/lib/database.js';
 import { seedTraffic, type SeedProgress } from '../../server/simulator/seed-traffic.js';
-import { trafficBetween, truthBetween } from '../../server/simulator/traffic.js';
+import { trafficBetween } from '../../server/simulator/traffic.js';
+import { truthBetween } from '../../server/simulator/truth-between.js';
 import { world } from '../../server/simulator/world.js';
 import { buildClock, buildContext } from '../support/context.js';
 import { useTestDatabase } from '../support/database.js';
@@ -52,7 +53,7 @@ describe('the demo seeders', () => {
       route_edges: world.edges.length,
       units: registered.length,
       identities: registered.length,
-      tags: registered.flatMap(({ tags }) => tags).length,
+      tags: registered.flatMap(({ tags }) => tags).length + 1,
     });
     await db.pool.query("UPDATE sites SET dwell_limit_hours = 12 WHERE code = 'ALDER'");
     await seedDemo(db);

@@ -5,8 +5,12 @@ import type {
   Place,
 } from '../../server/domain/movements/configuration.js';
 import type { History, Ledger } from '../../server/domain/movements/history-of.js';
-import type { Sent, TrueCrossing } from '../../server/simulator/traffic.js';
+import type { Sent, SentRead } from '../../server/simulator/traffic.js';
+import type { TrueCrossing } from '../../server/simulator/truth-between.js';
+import { towardOf } from '../../server/simulator/world/toward.js';
 import { world, type DemoReadPoint } from '../../server/simulator/world.js';
+
+const MINUTE = 60_000;
 
 const siteIds = new Map(world.sites.map(({ code }, index) => [code, index + 1]));
 const nodeIds = new Map(world.nodes.map(({ code }, index) => [code, index + 1]));
@@ -34,6 +38,12 @@ const siteId = (code: string) => required(siteIds.get(code));
 const placeOf = (code: string | null): Place =>
   (code && { siteId: siteId(code), track: null }) || null;
 
+/** Nodes of the open line on one side of a read point. */
+function nodesOn(point: DemoReadPoint, side: 'decreasing' | 'increasing'): number[] {
+  const codes = towardOf(point)[side];
+  return codes.flatMap((code) => nodeIds.get(code) ?? []);
+}
+
 function pointOf(point: DemoReadPoint) {
   return {
     id: required(pointIds.get(pointKey(point))),
@@ -46,11 +56,13 @@ function pointOf(point: DemoReadPoint) {
     passGapSeconds: 180,
     visitGapSeconds: 60,
     drillMinutes: 60,
+    decreasingNodes: nodesOn(point, 'decreasing'),
+    increasingNodes: nodesOn(point, 'increasing'),
   };
 }
 
 /** The invented region as the rules of movement take it; cars go by their compact identity. */
-export function demoConfiguration(): Configuration {
+export function demoConfiguration(now = Date.UTC(2026, 1, 23)): Configuration {
   const registered = world.units.filter(({ owner }) => owner !== null);
   const always = { validFrom: null, validTo: null };
   return {
@@ -68,9 +80,7 @@ export function demoConfiguration(): Configuration {
       kind,
       registered: true,
     })),
-    tags: registered.flatMap(({ identity, tags }) =>
-      tags.map(({ value }) => ({ value, unit: identity.compact, ...always })),
-    ),
+    tags: world.tagSpellsAt(now),
     identities: registered.map(({ identity }) => ({
       value: identity.compact,
       unit: identity.compact,
@@ -89,6 +99,12 @@ export function demoConfiguration(): Configuration {
   };
 }
 
+/** The verdicts of the door that are facts of the ledger. */
+function holdCodeOf({ readAt, deliveredAt }: SentRead): 'clock-ahead' | 'too-old' | null {
+  if (readAt > deliveredAt + 5 * MINUTE) return 'clock-ahead';
+  return readAt < deliveredAt - 13 * 31 * 24 * 60 * MINUTE ? 'too-old' : null;
+}
+
 /** What was sent, as the ledger keeps it. */
 export function demoLedger(sent: Sent[]): Ledger {
   return {
@@ -100,7 +116,7 @@ export function demoLedger(sent: Sent[]): Ledger {
               antenna: each.antenna,
               tag: each.tag,
               at: each.readAt,
-              holdCode: null,
+              holdCode: holdCodeOf(each),
             },
           ]
         : [],
@@ -155,8 +171,6 @@ export interface Agreement {
   arrivals: number;
   departures: number;
 }
-
-const MINUTE = 60_000;
 
 /**
  * Compares what was found with the truth at the read points of one kind of equipment. What passed

@@ -1,6 +1,7 @@
 import { describe, expect, it } from 'vitest';
 import { historyOf } from '../../server/domain/movements/history-of.js';
-import { trafficBetween, truthBetween } from '../../server/simulator/traffic.js';
+import { trafficBetween } from '../../server/simulator/traffic.js';
+import { truthBetween } from '../../server/simulator/truth-between.js';
 import {
   agreementLine,
   agreementOf,

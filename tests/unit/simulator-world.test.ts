@@ -7,7 +7,9 @@ describe('the invented register', () => {
   it('has some 900 cars and 400 boxes, and as many strangers', () => {
     const count = (kind: string, isOurs: boolean) =>
       world.units.filter((unit) => unit.kind === kind && (unit.owner !== null) === isOurs).length;
-    expect(count('car', true)).toBe(900);
+    const ofBranch = world.units.filter(({ flow, kind }) => flow === 'branch' && kind === 'car');
+    expect(ofBranch).toHaveLength(21);
+    expect(count('car', true)).toBe(900 + ofBranch.length);
     expect(count('container', true)).toBe(400);
     expect(count('car', false)).toBe(900);
     expect(count('container', false)).toBe(400);
@@ -62,12 +64,41 @@ describe('the invented network', () => {
     }
   });
 
-  it('has all three kinds of read points, and its people at real sites', () => {
+  it('has all four kinds of read points, and its people at real sites', () => {
     const kinds = new Set(world.readPoints.map(({ equipment }) => equipment));
-    expect(kinds).toEqual(new Set(['sensors', 'twoOffsets', 'oneOffset']));
+    expect(kinds).toEqual(new Set(['sensors', 'twoOffsets', 'oneOffset', 'single']));
     const codes = new Set<string>(world.sites.map(({ code }) => code));
+    const single = world.readPoints.filter(({ equipment }) => equipment === 'single');
+    expect(single.map(({ antennas }) => antennas.length)).toEqual([1]);
     const named = world.people.flatMap(({ sites }) => sites);
     expect(named.filter((code) => !codes.has(code))).toEqual([]);
+  });
+
+  it('has a site with a lead that is not equipped, one without a reader, and parallel tracks', () => {
+    const unequipped = world.sites.filter(({ leads }) => leads.some(({ equipped }) => !equipped));
+    expect(unequipped.map(({ code }) => code)).toEqual(['SORREL']);
+    const read = new Set(world.readPoints.map(({ site }) => site));
+    expect(world.sites.filter(({ code }) => !read.has(code)).map(({ code }) => code)).toEqual([
+      'BRYONY',
+    ]);
+    const [first, second] = world.readPoints.filter(({ site }) => site === 'SORREL');
+    expect(first).toMatchObject({ decreasingPlace: null, increasingPlace: 'SORREL' });
+    expect(second).toMatchObject({ decreasingPlace: null, increasingPlace: 'SORREL' });
+    expect(first?.track).not.toBe(second?.track);
+  });
+
+  it('dates the tag that changed cars, and knows nothing of the other', () => {
+    const now = Date.UTC(2026, 1, 23);
+    const spells = world.tagSpellsAt(now);
+    const dated = spells.filter(({ validFrom, validTo }) => validFrom !== null || validTo !== null);
+    expect(dated).toHaveLength(2);
+    const [before, after] = dated;
+    expect(before?.value).toBe(after?.value);
+    expect(before?.validTo).toBe(after?.validFrom);
+    expect(new Set([before?.unit, after?.unit])).toEqual(new Set(['QTKX40401', 'QTKX40402']));
+    expect(now - (before?.validTo ?? 0)).toBeLessThan(45 * 86_400_000);
+    const { robbed } = world.branchCars;
+    expect(spells.filter(({ unit }) => unit === robbed)).toHaveLength(2);
   });
 });
 

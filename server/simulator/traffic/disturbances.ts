@@ -1,4 +1,5 @@
 import { randomOf } from '../random.js';
+import { areDeaf, clockOffMs, isClockAhead, keptBackMs } from './branch/faults.js';
 import { EPOCH } from './operations.js';
 
 const HOUR = 3_600_000;
@@ -25,18 +26,23 @@ export function isSilent(seed: string, site: string, at: number): boolean {
   return chosen === site && Math.floor((at - EPOCH) / DAY) % 14 === day;
 }
 
+/** Whether nothing can be made of a tag read there and then: not heard, or its time not believed. */
+export function isLost(seed: string, site: string, at: number): boolean {
+  return isSilent(seed, site, at) || areDeaf(site, at) || isClockAhead(site, at);
+}
+
 /** When a read of that true instant reaches the server. */
 export function deliveredAt(site: string, at: number): number {
   const day = Math.floor((at - EPOCH) / DAY) % 7;
   const hour = ((at - EPOCH) % DAY) / HOUR;
   const { code, days, fromHour, toHour, lateMs } = lateSite;
   const isLate = site === code && days.includes(day) && hour >= fromHour && hour < toHour;
-  return at + USUAL_DELAY_MS + (isLate ? lateMs : 0);
+  return at + USUAL_DELAY_MS + (isLate ? lateMs : 0) + keptBackMs(site, at);
 }
 
 /** The instant that the site's own clock shows. */
 export function shownAt(site: string, at: number): number {
-  return site === slowClock.code ? at - slowClock.behindMs : at;
+  return at + clockOffMs(site, at) - (site === slowClock.code ? slowClock.behindMs : 0);
 }
 
 /** The longest that anything arrives after it happened. */

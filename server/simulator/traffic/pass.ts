@@ -1,4 +1,4 @@
-import type { DemoUnit } from '../world/equipment.js';
+import type { DemoTag, DemoUnit } from '../world/equipment.js';
 import type { DemoReadPoint } from '../world/read-points.js';
 import { crossings, type Motion } from './motion.js';
 
@@ -16,6 +16,8 @@ export interface Vehicle {
   /** The B-end (of a locomotive the R-end) leads. */
   bLeads: boolean;
   loads: Load[];
+  /** The tags that are on it, where they are not its own. */
+  tags?: DemoTag[];
 }
 
 /**
@@ -35,6 +37,8 @@ export interface Pass {
   motion: Motion;
   /** Number that the head-end tag of the train shows, or null for none. */
   trainNumber: number | null;
+  /** A read point of the next track whose antennas hear some of it, faintly. */
+  faintAt?: DemoReadPoint;
 }
 
 /** Metres of couplers between two cars. */
@@ -72,7 +76,8 @@ export function momentsOf(pass: Pass): number[] {
 
 /** The same vehicles seen from the other end. */
 export function turnedRound(vehicles: Vehicle[]): Vehicle[] {
-  return [...vehicles].reverse().map(({ unit, bLeads, loads }) => ({
+  return [...vehicles].reverse().map(({ unit, bLeads, loads, ...own }) => ({
+    ...own,
     unit,
     bLeads: !bLeads,
     loads: loads.map((load) => ({

@@ -1,7 +1,7 @@
 import { encodeAei } from '../../domain/identifiers/aei.js';
 import { between, normal, wholeBetween, type Random } from '../random.js';
 import type { DemoTag } from '../world/equipment.js';
-import type { DemoAntenna } from '../world/read-points.js';
+import type { DemoAntenna, DemoReadPoint } from '../world/read-points.js';
 import { crossings, metresAt, type Motion } from './motion.js';
 import { placesOf, type Pass, type Vehicle } from './pass.js';
 
@@ -47,6 +47,23 @@ export function renderReads(random: Random, pass: Pass): RawRead[] {
   });
 }
 
+/** Share of its reads that the next track's antennas hear too, the nearer side alone. */
+const FAINT = 0.25;
+
+/** What the antennas of the next track hear of a pass: no tag more than once an antenna. */
+export function renderFaint(random: Random, pass: Pass, point: DemoReadPoint): RawRead[] {
+  const side = point.code > pass.point.code ? 'right' : 'left';
+  const antennas = point.antennas.filter((antenna) => antenna.side === side);
+  const heard = new Set<string>();
+  return renderReads(random, { ...pass, point: { ...point, antennas } }).filter((read) => {
+    const key = `${read.antenna} ${read.tag}`;
+    if (random() >= FAINT || heard.has(key)) return false;
+    heard.add(key);
+    read.rssi -= 22;
+    return true;
+  });
+}
+
 /** The hand of travel on which an antenna stands. */
 function handOf({ side }: DemoAntenna, { direction }: Pass): Hand {
   if (direction === 'increasing') return side;
@@ -65,9 +82,9 @@ function trainTag(number: number): string {
   return encodeAei({ groupCode: 4, initial: 'QWKR', number, side: 'right' });
 }
 
-function tagsOn({ unit, bLeads, loads }: Vehicle, place: number): Fixed[] {
+function tagsOn({ unit, bLeads, loads, tags = unit.tags }: Vehicle, place: number): Fixed[] {
   const length = unit.lengthDm / 10;
-  const own = unit.tags.filter(({ dead }) => !dead).map((tag) => tagOn(tag, length, bLeads, place));
+  const own = tags.filter(({ dead }) => !dead).map((tag) => tagOn(tag, length, bLeads, place));
   const boxes = loads.flatMap((load) =>
     load.unit.tags
       .filter(({ dead }) => !dead)

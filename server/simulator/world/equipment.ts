@@ -4,6 +4,7 @@ import type { TagSide } from '../../domain/identifiers/aei.js';
 import { CONTAINER_GROUP, type EquipmentKind } from '../../domain/identifiers/equipment-groups.js';
 import { aarIdentity, isoIdentity, type Identity } from '../../domain/identifiers/identity.js';
 import { randomOf } from '../random.js';
+import { branchCars } from './branch-cars.js';
 import { fleets, type Fleet, type Flow } from './fleets.js';
 
 export interface DemoTag {
@@ -69,15 +70,18 @@ function tagValues(fleet: Fleet, number: number, index: number): [string, TagSid
 
 function tagsOf(fleet: Fleet, number: number, index: number, compact: string): DemoTag[] {
   const random = randomOf(`dead ${compact}`);
-  const spared = !['car', 'trailer'].includes(fleet.kind);
+  const spared = !['car', 'trailer'].includes(fleet.kind) || fleet.flow === 'branch';
   const tags = tagValues(fleet, number, index).map(([value, side]) => {
     return { value, side, dead: random() < DEAD_SIDES && !spared };
   });
-  const isNeverRead = NEVER_READ.includes(compact);
+  const isNeverRead = NEVER_READ.includes(compact) || branchCars.silent.includes(compact);
   const allDead = tags.every((tag) => tag.dead);
   return tags.map((tag, at) => ({
     ...tag,
-    dead: isNeverRead || (tag.dead && !(allDead && at === 0)),
+    dead:
+      isNeverRead ||
+      (tag.dead && !(allDead && at === 0)) ||
+      (tag.side === 'left' && compact === branchCars.lent.to),
   }));
 }
 

@@ -14,7 +14,9 @@ export type Flow =
   | 'strangerWell'
   | 'strangerBox'
   | 'strangerPower'
-  | 'strangerRear';
+  | 'strangerRear'
+  /** Of the branch, whose trains keep a timetable of their own (traffic/branch/). */
+  | 'branch';
 
 export interface Fleet {
   mark: string;
@@ -43,7 +45,7 @@ type Row = [
   withEpc?: number,
 ];
 
-/** 900 cars and 400 boxes on the register, and as many strangers that only pass. */
+/** Some 920 cars and 400 boxes on the register, and as many strangers that only pass. */
 const rows: Row[] = [
   ['QTKX', 40_100, 300, 'car', 'tank car', 'QUARREL', 165, 4, 'tank'],
   ['QTHX', 61_000, 130, 'car', 'covered hopper', 'QUARREL', 183, 4, 'meal'],
@@ -64,6 +66,12 @@ const rows: Row[] = [
   ['QVLZ', 240_300, 60, 'trailer', 'trailer', null, 162, 2, 'strangerBox'],
   ['QHPR', 5_101, 6, 'locomotive', 'road locomotive', null, 226, 6, 'strangerPower'],
   ['QHPE', 8_001, 2, 'endOfTrain', 'end-of-train device', null, 4, 1, 'strangerRear'],
+  ['QTKX', 40_400, 8, 'car', 'tank car', 'QUARREL', 165, 4, 'branch'],
+  ['QWKR', 160_001, 11, 'car', 'covered hopper', 'QUERNWICK', 174, 4, 'branch'],
+  ['QWKR', 170_001, 2, 'car', 'flat car', 'QUERNWICK', 272, 4, 'branch'],
+  ['QWTZ', 410_001, 4, 'trailer', 'trailer', 'QUERNWICK', 136, 2, 'branch'],
+  ['QWKR', 2_101, 3, 'locomotive', 'road locomotive', 'QUERNWICK', 225, 6, 'branch'],
+  ['QWKE', 9_101, 2, 'endOfTrain', 'end-of-train device', 'QUERNWICK', 4, 1, 'branch'],
 ];
 
 /** The rows above by name. */

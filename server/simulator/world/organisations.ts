@@ -11,6 +11,9 @@ export const organisations = [
 /** The password of every demo person; printed at start, worthless outside the demo. */
 export const DEMO_PASSWORD = 'fishplate-demo';
 
+/** Who tells what no reader saw: a railroad by its own messages, a clerk by eye. */
+export const tellers = { railroad: 'QUERNWICK', clerk: 'clerk@fishplate.example' };
+
 /** The demo people. `sites` empty: not narrowed by site. */
 export const people: {
   email: string;

@@ -1,8 +1,8 @@
 /**
  * What a read point has to tell direction by: wheel sensors (and one offset), two offsets a side,
- * or one antenna a side at one offset and nothing else.
+ * one antenna a side at one offset and nothing else, or one antenna alone.
  */
-export type Equipment = 'sensors' | 'twoOffsets' | 'oneOffset';
+export type Equipment = 'sensors' | 'twoOffsets' | 'oneOffset' | 'single';
 
 export interface DemoAntenna {
   number: number;
@@ -31,6 +31,7 @@ export const OUTSIDE = 'OUTSIDE';
 const sides = ['left', 'right'] as const;
 
 function antennasFrom(first: number, equipment: Equipment): DemoAntenna[] {
+  if (equipment === 'single') return [{ number: first, offsetM: 0, side: 'left' }];
   const offsets = equipment === 'twoOffsets' ? [-6, 6] : [0];
   return offsets.flatMap((offsetM, at) =>
     sides.map((side, index) => ({ number: first + at * 2 + index, offsetM, side })),
@@ -44,6 +45,7 @@ type Lead = [
   equipment: Equipment,
   toward: string[],
   inward: 'increasing' | 'decreasing',
+  track?: string,
 ];
 
 /** Each lead with the line on its outer side; some count their metres towards the site. */
@@ -64,6 +66,10 @@ const leads: Lead[] = [
   ['QUERN', 'L', 'Mill lead', 'twoOffsets', ['MILLRACE', 'TEAL'], 'decreasing'],
   ['STONECRP', 'L', 'Plant lead', 'sensors', ['WICKETT', 'MARTEN'], 'increasing'],
   ['HOLLIN', 'L', 'Shop lead', 'sensors', ['ALDER', 'FALLOW', 'HERONJ'], 'increasing'],
+  ['ROWAN', 'L', 'Quarry lead', 'sensors', ['SORREL', 'ALDER'], 'increasing'],
+  ['SORREL', 'W1', 'West lead 1', 'twoOffsets', ['LINNET'], 'increasing', 'West 1'],
+  ['SORREL', 'W2', 'West lead 2', 'twoOffsets', ['LINNET'], 'increasing', 'West 2'],
+  ['PIPIT', 'L', 'Storage lead', 'single', ['LINNET'], 'decreasing'],
 ];
 
 type LinePoint = [
@@ -79,16 +85,17 @@ const linePoints: LinePoint[] = [
   ['WICKETT', 'M', 'Main track', 'sensors', ['ALDER']],
   ['SEDGE', 'M', 'Main track', 'twoOffsets', ['MILLRACE']],
   ['MARTEN', 'M', 'Main track', 'oneOffset', ['GREBE']],
+  ['LINNET', 'M', 'Main track', 'sensors', ['SORREL']],
 ];
 
-function leadPoint([site, code, name, equipment, toward, inward]: Lead): DemoReadPoint {
+function leadPoint([site, code, name, equipment, toward, inward, track]: Lead): DemoReadPoint {
   const ofSite = leads.filter((lead) => lead[0] === site);
   const first = 1 + 4 * ofSite.findIndex((lead) => lead[1] === code);
   return {
     site,
     code,
     name,
-    track: null,
+    track: track ?? null,
     kind: 'line',
     decreasingPlace: inward === 'decreasing' ? site : null,
     increasingPlace: inward === 'increasing' ? site : null,
@@ -118,7 +125,7 @@ const shopDoor: DemoReadPoint = {
   toward: [],
 };
 
-/** Every read point of the region, all three kinds of equipment among them. */
+/** Every read point of the region, all four kinds of equipment among them. */
 export const readPoints: DemoReadPoint[] = [
   ...leads.map(leadPoint),
   ...linePoints.map(linePoint),

@@ -34,7 +34,7 @@ function edge(from: string, to: string, railMetres: number, line: string): DemoE
   return { from, to, railMetres, kind: 'rail', line };
 }
 
-/** About 1,450 rail miles; each a little longer than the great circle between its ends. */
+/** About 1,530 rail miles; each a little longer than the great circle between its ends. */
 export const edges: DemoEdge[] = [
   edge('SEDGE', 'CAIRN', 144_700, 'North Line'),
   edge('SEDGE', 'MILLRACE', 150_200, 'North Line'),
@@ -55,4 +55,9 @@ export const edges: DemoEdge[] = [
   edge('TEAL', 'FALLOW', 83_300, 'Prairie Line'),
   edge('FALLOW', 'HOLLIN', 132_700, 'South Line'),
   edge('HOLLIN', 'ALDER', 144_000, 'South Line'),
+  edge('ALDER', 'ROWAN', 27_400, 'Kiln Branch'),
+  edge('ROWAN', 'SORREL', 27_200, 'Kiln Branch'),
+  edge('SORREL', 'LINNET', 25_600, 'Kiln Branch'),
+  edge('LINNET', 'PIPIT', 25_800, 'Kiln Branch'),
+  edge('LINNET', 'BRYONY', 17_900, 'Kiln Branch'),
 ];

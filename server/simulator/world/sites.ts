@@ -9,6 +9,8 @@ export interface DemoSite {
   timeZone: string;
   returnHours: number;
   dwellLimitHours: number;
+  /** The tracks in and out, where one of them is not equipped; empty: not listed. */
+  leads: { name: string; equipped: boolean }[];
 }
 
 const central = 'America/Chicago';
@@ -21,8 +23,24 @@ function site(
   dwellLimitHours: number,
   timeZone = central,
 ): DemoSite {
-  return { code, name, kind, latitude, longitude, timeZone, returnHours: 12, dwellLimitHours };
+  const limits = { returnHours: 12, dwellLimitHours, leads: [] };
+  return { code, name, kind, latitude, longitude, timeZone, ...limits };
 }
+
+/** The branch west of Alder Bend, where each case of the railway can be found at a fixed place. */
+const branchSites: DemoSite[] = [
+  site('ROWAN', 'Rowan Quarry', 'industry', [44.56, -93.62], 144),
+  {
+    ...site('SORREL', 'Sorrel Yard', 'yard', [44.62, -93.91], 96),
+    leads: [
+      { name: 'West lead, two tracks', equipped: true },
+      { name: 'East lead', equipped: false },
+    ],
+  },
+  site('LINNET', 'Linnet Line', 'line', [44.68, -94.18], 96),
+  site('PIPIT', 'Pipit Storage Tracks', 'industry', [44.74, -94.45], 2_160),
+  site('BRYONY', 'Bryony Kiln', 'industry', [44.82, -94.2], 144),
+];
 
 /** Invented places on the real outlines of the upper Midwest. */
 export const sites: DemoSite[] = [
@@ -40,4 +58,5 @@ export const sites: DemoSite[] = [
   site('WICKETT', 'Wickett Line', 'line', [44.6, -91.82], 96),
   site('SEDGE', 'Sedge Crossing', 'line', [46.52, -94.02], 96),
   site('MARTEN', 'Marten Falls Line', 'line', [46.05, -89.95], 96, 'America/Detroit'),
+  ...branchSites,
 ];

@@ -1,23 +1,29 @@
-import { wheelRecord, wireRead, type Batch } from './batches.js';
+import { handReport, wheelRecord, wireRead, wireReport, type Batch } from './batches.js';
 
 interface SenderOptions {
   address: string;
-  site: string;
-  token: string;
+  /** What an error names it by. */
+  name: string;
+  /** Who sends, as headers; asked for again once the server does not know them any more. */
+  credentials: () => Promise<Record<string, string>>;
   onError: (error: unknown) => void;
 }
 
 const FIRST_PAUSE_MS = 500;
 const LONGEST_PAUSE_MS = 15_000;
 const GIVE_UP_MS = 10_000;
-/** What a reader keeps while the server is away; the oldest go first, the next start sends them. */
+/** What is kept while the server is away; the oldest go first, the next start sends them. */
 const MOST_KEPT = 2_000;
 
-/** The reader of one site: sends its requests one after another, and each until it is answered. */
-export class SiteSender {
+/**
+ * The reader of one site, or somebody who tells what no reader saw: sends its requests one after
+ * another, and each until it is answered.
+ */
+export class Sender {
   private readonly queue: Batch[] = [];
   private readonly ending = new AbortController();
   private running: Promise<void> | null = null;
+  private headers: Record<string, string> | null = null;
 
   constructor(private readonly options: SenderOptions) {}
 
@@ -54,22 +60,20 @@ export class SiteSender {
 
   /** True when the server has answered for good; a refusal of this body would not change. */
   private async deliver(batch: Batch): Promise<boolean> {
-    const { address, site, token, onError } = this.options;
-    const isReads = batch.kind === 'reads';
+    const { address, name, credentials, onError } = this.options;
+    const { path, body } = requestOf(batch);
     try {
-      const response = await fetch(`${address}/api/ingest/${isReads ? 'reads' : 'wheels'}`, {
+      this.headers ??= await credentials();
+      const response = await fetch(`${address}/api/${path}`, {
         method: 'POST',
-        headers: { authorization: `Bearer ${token}`, 'content-type': 'application/json' },
-        body: JSON.stringify(
-          isReads
-            ? { site, reads: batch.reads.map(wireRead) }
-            : { site, ...wheelRecord(batch.record) },
-        ),
+        headers: { ...this.headers, 'content-type': 'application/json' },
+        body: JSON.stringify(body),
         signal: AbortSignal.any([this.ending.signal, AbortSignal.timeout(GIVE_UP_MS)]),
       });
       await response.arrayBuffer();
       if (response.ok) return true;
-      onError(new Error(`The ingest door answered ${response.status} to ${site}.`));
+      if (response.status === 401) this.headers = null;
+      onError(new Error(`The door ${path} answered ${response.status} to ${name}.`));
       return response.status === 400 || response.status === 413;
     } catch (error) {
       if (!this.isEnding) onError(error);
@@ -87,5 +91,26 @@ export class SiteSender {
       const timer = setTimeout(done, milliseconds);
       this.ending.signal.addEventListener('abort', done);
     });
+  }
+}
+
+/** Where a batch goes, below /api, and what it says. */
+function requestOf(batch: Batch): { path: string; body: object } {
+  const { site } = batch;
+  switch (batch.kind) {
+    case 'reads':
+      return { path: 'ingest/reads', body: { site, reads: batch.reads.map(wireRead) } };
+    case 'wheels':
+      return { path: 'ingest/wheels', body: { site, ...wheelRecord(batch.record) } };
+    case 'reports':
+      return {
+        path: 'ingest/reports',
+        body: { source: batch.reports[0]?.source, reports: batch.reports.map(wireReport) },
+      };
+    case 'hand':
+      return {
+        path: `sites/${site}/hand-reports`,
+        body: { track: batch.report.track, reports: [handReport(batch.report)] },
+      };
   }
 }
