@@ -77,6 +77,20 @@ function portion(
   return { siteId, reads, wheels, receivedAt: random.chance(LIVE) ? live : RECEIVED_AT };
 }
 
+/** Sends these facts through the doors, one request for each site and wheel record. */
+export async function deliver(
+  db: Database,
+  configuration: Configuration,
+  ledger: Ledger,
+  receivedAt = RECEIVED_AT,
+): Promise<void> {
+  for (const siteId of new Set(ledger.reads.map((read) => read.siteId))) {
+    const reads = ledger.reads.filter((read) => read.siteId === siteId);
+    await write(db, configuration, { siteId, reads, wheels: [], receivedAt });
+  }
+  await write(db, configuration, { siteId: 0, reads: [], wheels: ledger.wheels, receivedAt });
+}
+
 async function write(db: Database, configuration: Configuration, portion: Portion): Promise<void> {
   const { siteId, reads, wheels, receivedAt } = portion;
   if (reads.length) {
