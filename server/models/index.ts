@@ -11,6 +11,7 @@ import { initPerson } from './person.js';
 import { initPersonSite } from './person-site.js';
 import { initReadPoint } from './read-point.js';
 import { initReaderToken } from './reader-token.js';
+import { initRebuild } from './rebuild.js';
 import { initReportToken } from './report-token.js';
 import { initRouteEdge } from './route-edge.js';
 import { initRouteNode } from './route-node.js';
@@ -51,6 +52,7 @@ function bindModels(sequelize: Sequelize) {
     PersonSite: initPersonSite(sequelize),
     ReadPoint: initReadPoint(sequelize),
     ReaderToken: initReaderToken(sequelize),
+    Rebuild: initRebuild(sequelize),
     ReportToken: initReportToken(sequelize),
     RouteEdge: initRouteEdge(sequelize),
     RouteNode: initRouteNode(sequelize),

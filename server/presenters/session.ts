@@ -1,6 +1,7 @@
 import { sections, type Section, type SessionAnswer, type User } from '../contract/session.js';
 import type { Actor } from '../policies/actor.js';
 import { maySeeHeldReads } from '../policies/held-read-policy.js';
+import { maySeeRebuilds } from '../policies/rebuild-policy.js';
 
 type Named = { code: string; name: string } | null;
 
@@ -22,7 +23,10 @@ export function presentSession(
   organisation: Named,
   demoMailbox: boolean,
 ): SessionAnswer['data'] {
-  const mayOpen = (section: Section) => section !== 'setAside' || maySeeHeldReads(actor);
+  const mayOpen = (section: Section) => {
+    if (section === 'setAside') return maySeeHeldReads(actor);
+    return section !== 'rework' || maySeeRebuilds(actor);
+  };
   return {
     user: presentUser(actor, organisation),
     sections: sections.filter(mayOpen),

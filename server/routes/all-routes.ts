@@ -3,6 +3,7 @@ import type { Context } from '../lib/context.js';
 import type { Operation } from '../lib/openapi/operation.js';
 import { alertsOperations, alertsRoutes } from './alerts.js';
 import { antennasOperations, antennasRoutes } from './antennas.js';
+import { demoCasesOperations } from './demo-cases.js';
 import { demoMailboxOperations, demoMailboxRoutes } from './demo-mailbox.js';
 import { equipmentOperations, equipmentRoutes } from './equipment.js';
 import { eventsOperations, eventsRoutes } from './events.js';
@@ -21,6 +22,7 @@ import { openapiOperations } from './openapi.js';
 import { organisationsOperations, organisationsRoutes } from './organisations.js';
 import { peopleOperations, peopleRoutes } from './people.js';
 import { readPointsOperations, readPointsRoutes } from './read-points.js';
+import { rebuildsOperations, rebuildsRoutes } from './rebuilds.js';
 import { registerOperations, registerRoutes } from './register.js';
 import { routesOperations, routesRoutes } from './routes.js';
 import { sessionOperations } from './session.js';
@@ -52,6 +54,7 @@ export function portalRouters(context: Context, projectorLagMs: () => Promise<nu
     watchesRoutes(context),
     alertsRoutes(context),
     mailRoutes(context),
+    rebuildsRoutes(context),
     heldReadsRoutes(context),
     demoMailboxRoutes(context),
   ];
@@ -75,8 +78,10 @@ export const allOperations: Operation[] = [
   ...watchesOperations,
   ...alertsOperations,
   ...mailOperations,
+  ...rebuildsOperations,
   ...heldReadsOperations,
   ...demoMailboxOperations,
+  ...demoCasesOperations,
   ...organisationsOperations,
   ...peopleOperations,
   ...sitesOperations,

@@ -79,7 +79,7 @@ async function emptyingStatements(holder: Connection, name: string): Promise<str
     'SET foreign_key_checks = 0',
     ...tables.map((table) => `DELETE FROM \`${table.table_name}\``),
     'SET foreign_key_checks = 1',
-    'UPDATE config_state SET version = version + 1 WHERE id = 1',
+    'UPDATE config_state SET version = version + 1, frozen_before = NULL WHERE id = 1',
   ].join('; ');
 }
 

@@ -12,6 +12,7 @@ import { alertPolicy } from '../../server/policies/alert-policy.js';
 import { mayReleaseReads, maySeeHeldReads } from '../../server/policies/held-read-policy.js';
 import { maySeeMail } from '../../server/policies/mail-policy.js';
 import { authorize, authorizeAll, permissions } from '../../server/policies/policy.js';
+import { maySeeRebuilds, rebuildPolicy } from '../../server/policies/rebuild-policy.js';
 
 import { unitPolicy } from '../../server/policies/unit-policy.js';
 import {
@@ -125,6 +126,20 @@ describe('who may do what with units, watches, alerts and mail', () => {
     ['see the mail that went out', maySeeMail, 'yes no no no'],
     ['see reads that are set aside', maySeeHeldReads, 'yes no no no'],
     ['release reads', mayReleaseReads, 'yes no no no'],
+    ['see what is made anew', maySeeRebuilds, 'yes no no no'],
+    ['stop what waits', (actor) => rebuildPolicy.stop(actor, { state: 'waiting' }), 'yes no no no'],
+    ['stop what runs', (actor) => rebuildPolicy.stop(actor, { state: 'running' }), 'yes no no no'],
+    ['stop what is done', (actor) => rebuildPolicy.stop(actor, { state: 'done' }), 'no no no no'],
+    [
+      'resume what is stopped',
+      (actor) => rebuildPolicy.resume(actor, { state: 'stopped' }),
+      'yes no no no',
+    ],
+    [
+      'resume what runs',
+      (actor) => rebuildPolicy.resume(actor, { state: 'running' }),
+      'no no no no',
+    ],
   ])('%s', (_what, rule, expected) => {
     expect(whoMay(rule)).toBe(expected);
   });
