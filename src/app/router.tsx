@@ -55,6 +55,13 @@ export const createRouter = () =>
           ),
         },
         {
+          path: '/set-aside',
+          lazy: page(
+            () => import('../pages/set-aside-page'),
+            (module) => module.SetAsidePage,
+          ),
+        },
+        {
           path: '*',
           lazy: page(
             () => import('../pages/nothing-here-page'),

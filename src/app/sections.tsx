@@ -6,6 +6,7 @@ import type { SessionInfo } from '../lib/wire';
 const known: Record<string, { word: string; to: string }> = {
   fleet: { word: 'Fleet', to: paths.fleet() },
   alerts: { word: 'Alerts', to: paths.alerts() },
+  setAside: { word: 'Set aside', to: paths.setAside() },
 };
 
 /** The sections that the server says this person may open, in the server's order. */

@@ -9,6 +9,7 @@ export const paths = {
   alerts: (filter: { state?: string; watch?: string | number } = {}) =>
     `/alerts${queryString(filter)}`,
   watches: '/watches',
+  setAside: (filter: { code?: string; site?: string } = {}) => `/set-aside${queryString(filter)}`,
   demoMailbox: '/demo/mailbox',
 };
 
@@ -62,6 +63,13 @@ export const api = {
   watch: (id: number | string) => `/api/watches/${id}`,
   watchPreview: '/api/watches/preview',
   alerts: '/api/alerts',
+  heldReads: '/api/held-reads',
+  heldReadList: '/api/held-reads/reads',
+  heldTags: '/api/held-reads/tags',
+  heldRelease: '/api/held-reads/release',
+  antennas: '/api/antennas',
+  readPoints: '/api/read-points',
+  registerTags: (unitId: string) => `/api/register/${encodeURIComponent(unitId)}/tags`,
   alertAct: (id: number | string, act: 'acknowledge' | 'snooze' | 'close') =>
     `/api/alerts/${id}/${act}`,
 };

@@ -1,6 +1,8 @@
 /** The shapes of the contract under the names that the screens use. */
 import type { SessionAnswer } from '../../server/contract/session';
 
+export type { AntennaInput } from '../../server/contract/administration';
+export type { ReadPointView } from '../../server/contract/administration-answers';
 export type { AlertState, AlertView, AlertListAnswer } from '../../server/contract/alerts';
 export type {
   EquipmentDetail,
@@ -11,6 +13,16 @@ export type {
 } from '../../server/contract/equipment';
 export type { ChangedEvent } from '../../server/contract/events';
 export type { FleetSummary } from '../../server/contract/fleet';
+export type {
+  HeldGroupView,
+  HeldListAnswer,
+  HeldReadsAnswer,
+  HeldReadView,
+  HeldTagsAnswer,
+  HeldTagView,
+  ReleaseAnswer,
+} from '../../server/contract/held-reads';
+export type { HoldCode } from '../../server/contract/ingest';
 export type { LookUpHit } from '../../server/contract/look-up';
 export type { LookUpAnswer as LookUpReply } from '../../server/contract/look-up';
 export type { EdgeFeature, MapAnswer, SiteFeature } from '../../server/contract/map';
