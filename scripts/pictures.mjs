@@ -2,6 +2,7 @@ import { mkdirSync } from 'node:fs';
 import path from 'node:path';
 import { parseArgs } from 'node:util';
 import { chromium } from 'playwright-core';
+import { findBrowser } from './lib/programs.mjs';
 import { readSettings } from './lib/settings.mjs';
 import { emptyAnswers, screens, sizes } from './lib/picture-list.mjs';
 
@@ -20,7 +21,7 @@ const { values: options } = parseArgs({
 const directory = path.join(settings.dataDir, 'pictures');
 mkdirSync(directory, { recursive: true });
 const browser = await chromium.launch({
-  executablePath: '/usr/bin/chromium',
+  executablePath: findBrowser(),
   args: process.getuid?.() === 0 ? ['--no-sandbox'] : [],
 });
 try {

@@ -14,17 +14,6 @@ import {
 import path from 'node:path';
 import { readHolder } from './processes.mjs';
 
-// A plain user's PATH has no sbin.
-const serverPlaces = ['/usr/sbin/mariadbd', '/usr/bin/mariadbd', '/usr/local/sbin/mariadbd'];
-const installerPlaces = ['/usr/bin/mariadb-install-db', '/usr/local/bin/mariadb-install-db'];
-
-/** The database server's program, or null when it is not installed. */
-export function findMariadb() {
-  const server = serverPlaces.find((file) => existsSync(file));
-  const installer = installerPlaces.find((file) => existsSync(file));
-  return server && installer ? { server, installer } : null;
-}
-
 /** Makes the directory of one database server and says where in it everything stands. */
 export function prepare(dir) {
   mkdirSync(dir, { recursive: true, mode: 0o755 });

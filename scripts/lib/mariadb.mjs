@@ -13,8 +13,9 @@ import {
 import { connect, createServer } from 'node:net';
 import os from 'node:os';
 import path from 'node:path';
-import { bootstrap, findMariadb, prepare, rememberedPassword } from './mariadb-files.mjs';
+import { bootstrap, prepare, rememberedPassword } from './mariadb-files.mjs';
 import { identityOf, isAlive, readHolder, stopProcess, waitUntil } from './processes.mjs';
+import { findMariadb } from './programs.mjs';
 
 /**
  * Starts a MariaDB of our own on loopback, in `dir`, which is created and filled when empty.
@@ -27,9 +28,13 @@ import { identityOf, isAlive, readHolder, stopProcess, waitUntil } from './proce
  * @param {number} [options.bufferPoolMb]
  * @param {string} [options.database] created when absent, and the user's rights end at it;
  *   without one the user may do anything, as tests need databases of their own
+ * @param {number} [options.port] a free one when left out
+ * @param {string} [options.program] another mariadbd than the one that Debian brings
+ * @param {string[]} [options.parameters] more for mariadbd itself
  */
 export async function startMariadb(options) {
   const { dir, throwAway = false, durable = !throwAway, bufferPoolMb = 256, database } = options;
+  const { parameters = [] } = options;
   const programs = findMariadb();
   if (!programs) throw new Error('MariaDB is not installed (Debian: mariadb-server-core).');
   const place = prepare(path.resolve(dir), programs.installer);
@@ -37,11 +42,12 @@ export async function startMariadb(options) {
   if (!existsSync(path.join(place.data, 'mysql'))) bootstrap(place, programs.installer);
   const password = rememberedPassword(place.passwordFile);
   for (let attempt = 1; ; attempt += 1) {
-    const port = await freePort();
-    const started = await launch(programs.server, place, {
+    const port = options.port ?? (await freePort());
+    const started = await launch(options.program ?? programs.server, place, {
       port,
       bufferPoolMb,
       durable,
+      parameters,
       sql: grants(password, database),
     });
     if (started.child) return handle(place, started, { port, password, database, throwAway });
@@ -80,7 +86,7 @@ function grants(password, database) {
     .join('\n');
 }
 
-async function launch(program, place, { port, bufferPoolMb, durable, sql }) {
+async function launch(program, place, { port, bufferPoolMb, durable, parameters, sql }) {
   // A socket's path holds 107 bytes at most: the data directory may lie too deep for it.
   const socketDir = mkdtempSync(path.join(os.tmpdir(), 'fp-'));
   const initFile = path.join(socketDir, 'init.sql');
@@ -115,6 +121,7 @@ async function launch(program, place, { port, bufferPoolMb, durable, sql }) {
       `--innodb-flush-log-at-trx-commit=${durable ? 1 : 0}`,
       `--innodb-doublewrite=${durable ? 1 : 0}`,
       ...(place.account ? [`--user=${place.account.name}`] : []),
+      ...parameters,
     ],
     // In a group of its own: Ctrl-C reaches the whole terminal group, and the database stops last.
     { detached: true, stdio: ['ignore', log, log], cwd: '/' },

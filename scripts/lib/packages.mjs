@@ -1,6 +1,5 @@
-import { existsSync } from 'node:fs';
 import { environment } from './settings.mjs';
-import { findMariadb } from './mariadb-files.mjs';
+import { findBrowser, findMariadb } from './programs.mjs';
 import { run, succeeds } from './run.mjs';
 import { Mend } from './steps.mjs';
 
@@ -14,18 +13,14 @@ export function checkNode(version = process.versions.node) {
   throw new Mend(`Fishplate needs Node ${oldestNode.join('.')} or newer; this is ${version}.`);
 }
 
-export const browserPlaces = ['/usr/bin/chromium', '/usr/bin/chromium-browser'];
-
 /**
  * Installs the Debian packages that are missing: MariaDB's server without its service, and for
  * tests Chromium.
  */
 export async function ensurePackages({ database = true, browser = false }) {
   const wanted = [
-    ...(database && !(findMariadb() && existsSync('/usr/bin/my_print_defaults'))
-      ? ['mariadb-server-core', 'mariadb-client-core']
-      : []),
-    ...(browser && !browserPlaces.some((file) => existsSync(file)) ? ['chromium'] : []),
+    ...(database && !findMariadb() ? ['mariadb-server-core', 'mariadb-client-core'] : []),
+    ...(browser && !findBrowser() ? ['chromium'] : []),
   ];
   if (wanted.length === 0) return 'present';
   const install = ['install', '-y', '--no-install-recommends', ...wanted];

@@ -1,11 +1,12 @@
 import AxeBuilder from '@axe-core/playwright';
 import { chromium, type Browser, type BrowserContextOptions, type Page } from 'playwright-core';
 import { expect } from 'vitest';
+import { findBrowser } from '../../../scripts/lib/programs.mjs';
 
 /** Debian's Chromium, which finds no machine but this one; as root it runs without its sandbox. */
 export function openBrowser(): Promise<Browser> {
   return chromium.launch({
-    executablePath: '/usr/bin/chromium',
+    executablePath: findBrowser() ?? undefined,
     args: [
       ...(process.getuid?.() === 0 ? ['--no-sandbox'] : []),
       '--disable-dev-shm-usage',
