@@ -20,6 +20,25 @@ const awayCodes = new Set([
   'ER_CONNECTION_KILLED',
 ]);
 
+/**
+ * MariaDB's numbers for what it cannot do at the moment, whoever asked: no room, too many
+ * connections or transactions, locks held by others, stopping, read only.
+ */
+const notNow = new Set([1021, 1040, 1053, 1114, 1203, 1205, 1213, 1226, 1290, 1637, 1792, 1836]);
+
+/**
+ * True when an error says that the database cannot do anything of this kind at the moment, so that
+ * the same request may succeed later.
+ */
+export function isDatabaseUnable(error: unknown): boolean {
+  for (let cause: unknown = error; cause instanceof Error;) {
+    const { errno, parent } = cause as Error & { errno?: number; parent?: unknown };
+    if (errno !== undefined && notNow.has(errno)) return true;
+    cause = parent ?? cause.cause;
+  }
+  return false;
+}
+
 /** True when an error says that the database cannot be reached, not that a statement was wrong. */
 export function isDatabaseAway(error: unknown): boolean {
   for (let cause: unknown = error; cause instanceof Error;) {

@@ -7,7 +7,7 @@ import {
 } from 'sequelize';
 import type { Logger } from 'pino';
 import { conflict, invalid, notFound, Problem, unavailable } from '../errors.js';
-import { isDatabaseAway } from '../lib/database-away.js';
+import { isDatabaseAway, isDatabaseUnable } from '../lib/database-away.js';
 
 /** Answers a path of the interface that no route has taken. */
 export const unknownPath: RequestHandler = () => {
@@ -73,8 +73,8 @@ function problemOfDatabase(error: unknown): Problem | null {
   if (error instanceof OptimisticLockError) {
     return conflict('Somebody else has changed this meanwhile. Look again.');
   }
-  if (error instanceof TimeoutError) {
-    return unavailable('The database is busy. Try again soon.');
+  if (error instanceof TimeoutError || isDatabaseUnable(error)) {
+    return unavailable('The database cannot do this now. Try again soon.');
   }
   return null;
 }
