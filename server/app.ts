@@ -1,5 +1,6 @@
 import compression from 'compression';
 import express, { type Express } from 'express';
+import type { DemoCase } from './contract/demo-cases.js';
 import type { IngestLimits } from './ingest/limits.js';
 import type { Context } from './lib/context.js';
 import { clientFiles, findClientDirectory } from './middleware/client-files.js';
@@ -11,6 +12,7 @@ import { requestLog } from './middleware/request-log.js';
 import { sameOrigin } from './middleware/same-origin.js';
 import { securityHeaders } from './middleware/security-headers.js';
 import { administrationRouters, allOperations, portalRouters } from './routes/all-routes.js';
+import { demoCasesRoutes } from './routes/demo-cases.js';
 import { demoMailboxPages } from './routes/demo-mailbox.js';
 import { healthRoutes } from './routes/health.js';
 import { ingestHeartbeatRoutes } from './routes/ingest-heartbeat.js';
@@ -20,12 +22,14 @@ import { metricsRoutes } from './routes/metrics.js';
 import { openapiRoutes } from './routes/openapi.js';
 import { sessionRoutes } from './routes/session.js';
 
-/** What is not the same for every server: the projector's lag, limits, where the client lies. */
+/** What is not the same for every server: the projector's lag, limits, the client, the demo. */
 export interface AppParts {
   projectorLagMs?: () => Promise<number>;
   limits?: { signIn?: SignInLimits; ingest?: Partial<IngestLimits> };
   /** null: no screens are served. The build's own place when absent. */
   clientDirectory?: string | null;
+  /** What the demo shows, and where; the invented region stands on a floor above the routes. */
+  demoCases?: readonly DemoCase[];
 }
 
 /** The whole web server, not yet listening: everything a request meets, in order. */
@@ -58,6 +62,7 @@ export function createApp(context: Context, parts: AppParts = {}): Express {
   app.use(jsonBody(100_000));
   app.use('/api', sessionRoutes(context, parts.limits?.signIn));
   for (const router of portalRouters(context, lag)) app.use('/api', router);
+  app.use('/api', demoCasesRoutes(context, parts.demoCases ?? []));
   app.use('/api', openapiRoutes(context, allOperations));
   app.use('/api', unknownPath);
 

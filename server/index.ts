@@ -1,6 +1,6 @@
 import { once } from 'node:events';
 import { createServer } from 'node:http';
-import { createApp } from './app.js';
+import { createApp, type AppParts } from './app.js';
 import { mailboxDirectory, readEnv, type Env } from './config/env.js';
 import { startJobs } from './jobs/schedule.js';
 import { systemClock } from './lib/clock.js';
@@ -41,16 +41,19 @@ async function start(settings: Env): Promise<void> {
   await projector.drain();
   projector.start();
   stops.push(() => projector.stop());
-  await listen(context, () => projector.lagMs());
+  await listen(context, {
+    projectorLagMs: () => projector.lagMs(),
+    ...(env.demo ? await import('./simulator/demo-cases.js') : {}),
+  });
   const jobs = startJobs(context);
   stops.push(() => jobs.stop());
   if (seededUntil) await simulate(context, seededUntil);
   tell({ ready: true });
 }
 
-async function listen(context: Context, projectorLagMs: () => Promise<number>): Promise<void> {
+async function listen(context: Context, parts: AppParts): Promise<void> {
   const { port, host } = context.env;
-  const server = createServer(createApp(context, { projectorLagMs }));
+  const server = createServer(createApp(context, parts));
   server.listen(port, host);
   await once(server, 'listening');
   logger.info({ port, host }, 'listening');

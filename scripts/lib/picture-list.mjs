@@ -7,6 +7,7 @@ export const sizes = [
 
 const owner = 'owner@fishplate.example';
 const dispatcher = 'dispatcher@fishplate.example';
+const admin = 'admin@fishplate.example';
 
 /** Opens the page of the first car in the list. */
 async function openFirstCar(page) {
@@ -35,7 +36,7 @@ export const screens = [
   { name: 'fleet-boxes', path: '/fleet', email: 'boxes@fishplate.example' },
   { name: 'fleet-dispatcher', path: '/fleet?site=ALDER', email: dispatcher },
   { name: 'fleet-clerk', path: '/fleet', email: 'clerk@fishplate.example' },
-  { name: 'fleet-administrator', path: '/fleet', email: 'admin@fishplate.example' },
+  { name: 'fleet-administrator', path: '/fleet', email: admin },
   { name: 'fleet-nothing-left', path: '/fleet?search=QQQ', email: owner },
   { name: 'unit', path: '/fleet', email: owner, act: openFirstCar, isWhole: true },
   { name: 'unit-unknown', path: '/equipment/QZZZ1', email: owner },
@@ -44,6 +45,8 @@ export const screens = [
   { name: 'watches', path: '/watches', email: owner, hasEmpty: true },
   { name: 'watch-quiet', path: '/fleet', email: owner, act: askToBeTold },
   { name: 'watch-standing', path: '/fleet?site=ALDER', email: dispatcher, act: askToBeTold },
+  { name: 'what-to-look-at', path: '/what-to-look-at', email: admin },
+  { name: 'what-to-look-at-owner', path: '/what-to-look-at', email: owner },
   { name: 'look-up', path: '/alerts', email: owner, act: lookUp },
 ];
 

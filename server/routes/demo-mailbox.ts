@@ -1,14 +1,14 @@
-import { Router, type RequestHandler } from 'express';
+import { Router } from 'express';
 import { demoMailListAnswer } from '../contract/alerts.js';
 import { mailboxDirectory } from '../config/env.js';
 import { notFound } from '../errors.js';
 import type { Context } from '../lib/context.js';
 import type { Operation } from '../lib/openapi/operation.js';
+import { onlyInDemo } from '../middleware/only-in-demo.js';
 import { requireUser } from '../middleware/require-user.js';
 import { validate } from '../middleware/validate.js';
 import { presentDemoMail } from '../presenters/demo-mail.js';
 import { mailboxPage, mailboxStyle, mailPage } from '../presenters/mailbox-page.js';
-
 import { readKeptMail, readMailbox } from '../smtp-fake/read-mailbox.js';
 
 /** The demo's mailbox as JSON, below /api; outside the demo it does not exist. */
@@ -43,13 +43,6 @@ export function demoMailboxPages(context: Context): Router {
     response.set('Cache-Control', 'no-store').type('html').send(mailPage(mail));
   });
   return router;
-}
-
-function onlyInDemo({ env }: Context): RequestHandler {
-  return (_request, _response, next) => {
-    if (!env.demo) throw notFound('There is nothing at this address.');
-    next();
-  };
 }
 
 export const demoMailboxOperations: Operation[] = [

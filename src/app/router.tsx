@@ -62,6 +62,13 @@ export const createRouter = () =>
           ),
         },
         {
+          path: '/what-to-look-at',
+          lazy: page(
+            () => import('../pages/demo-cases-page'),
+            (module) => module.DemoCasesPage,
+          ),
+        },
+        {
           path: '*',
           lazy: page(
             () => import('../pages/nothing-here-page'),

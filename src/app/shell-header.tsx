@@ -62,9 +62,14 @@ function WhoPanel({ session, onSignOut }: Props) {
           <Link to={paths.watches}>What you asked to be told</Link>
         </li>
         {session.demoMailbox ? (
-          <li>
-            <a href={paths.demoMailbox}>Mailbox of this demo</a>
-          </li>
+          <>
+            <li>
+              <Link to={paths.demoCases}>What to look at in this demo</Link>
+            </li>
+            <li>
+              <a href={paths.demoMailbox}>Mailbox of this demo</a>
+            </li>
+          </>
         ) : null}
         <li>
           <button type="button" className="link" onClick={onSignOut}>

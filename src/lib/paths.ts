@@ -11,6 +11,7 @@ export const paths = {
   watches: '/watches',
   setAside: (filter: { code?: string; site?: string } = {}) => `/set-aside${queryString(filter)}`,
   demoMailbox: '/demo/mailbox',
+  demoCases: '/what-to-look-at',
 };
 
 /** What the address of Fleet can say. All values are words of the contract, or free text. */
@@ -55,6 +56,9 @@ export const api = {
   movements: (unitId: string) => `${equipment(unitId)}/movements`,
   sightings: (unitId: string) => `${equipment(unitId)}/sightings`,
   reads: (unitId: string) => `${equipment(unitId)}/reads`,
+  unitReports: (unitId: string) => `${equipment(unitId)}/reports`,
+  handReports: (site: string) => `/api/sites/${encodeURIComponent(site)}/hand-reports`,
+  retractions: (site: string) => `/api/sites/${encodeURIComponent(site)}/hand-reports/retractions`,
   fleetSummary: '/api/fleet/summary',
   map: '/api/map',
   lookUp: '/api/look-up',
@@ -63,6 +67,7 @@ export const api = {
   watch: (id: number | string) => `/api/watches/${id}`,
   watchPreview: '/api/watches/preview',
   alerts: '/api/alerts',
+  demoCases: '/api/demo/cases',
   heldReads: '/api/held-reads',
   heldReadList: '/api/held-reads/reads',
   heldTags: '/api/held-reads/tags',

@@ -4,6 +4,7 @@ import type { SessionAnswer } from '../../server/contract/session';
 export type { AntennaInput } from '../../server/contract/administration';
 export type { ReadPointView } from '../../server/contract/administration-answers';
 export type { AlertState, AlertView, AlertListAnswer } from '../../server/contract/alerts';
+export type { DemoCasesAnswer, DemoCaseView } from '../../server/contract/demo-cases';
 export type {
   EquipmentDetail,
   EquipmentDetailAnswer,
@@ -23,6 +24,7 @@ export type {
   ReleaseAnswer,
 } from '../../server/contract/held-reads';
 export type { HoldCode } from '../../server/contract/ingest';
+export type { HandReportsAnswer } from '../../server/contract/hand-reports';
 export type { LookUpHit } from '../../server/contract/look-up';
 export type { LookUpAnswer as LookUpReply } from '../../server/contract/look-up';
 export type { EdgeFeature, MapAnswer, SiteFeature } from '../../server/contract/map';
@@ -35,6 +37,7 @@ export type {
   SightingsAnswer,
   StayView,
 } from '../../server/contract/movements';
+export type { UnitReportView, UnitReportsAnswer } from '../../server/contract/unit-reports';
 export type {
   WatchInput,
   WatchKind,

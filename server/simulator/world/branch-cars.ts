@@ -17,8 +17,12 @@ export const branchCars = {
   missedExit: 'QTKX40403',
   history: 'QTKX40404',
   late: 'QTKX40405',
+  deadAntennas: 'QTKX40406',
+  stopsOver: 'QTKX40407',
   /** Goes with the second, to a kiln that no reader sees. */
   reported: 'QWKR160007',
   trailer: 'QWTZ410001',
+  /** Of the region, not of the branch. */
+  box: 'ZQXU3054000',
   engine: 'QWKR2101',
 };
