@@ -1,4 +1,4 @@
-import type { EquipmentItem } from '../contract/equipment.js';
+import type { EquipmentItem, lastSeenBases } from '../contract/equipment.js';
 import { FAR } from '../lib/sentinels.js';
 import { passIdOf } from './pass-id.js';
 
@@ -85,7 +85,7 @@ function presentLastSeen(row: EquipmentRecord): EquipmentItem['lastSeen'] {
         : { code: row.read_point_code, name: row.read_point_name ?? '' },
     at: row.at.toISOString(),
     direction: (row.direction ?? 'unknown') as 'increasing' | 'decreasing' | 'unknown',
-    basis: (row.basis ?? 'read') as 'read',
+    basis: (row.basis ?? 'read') as (typeof lastSeenBases)[number],
     passId: passOf(row),
   };
 }

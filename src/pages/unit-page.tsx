@@ -9,6 +9,7 @@ import { UnitJourney, useJourneySpan } from '../features/equipment/components/un
 import { UnitMiles } from '../features/equipment/components/unit-miles';
 import { UnitNow } from '../features/equipment/components/unit-now';
 import { UnitReads } from '../features/equipment/components/unit-reads';
+import { UnitReports } from '../features/equipment/components/unit-reports';
 import { UnitSection } from '../features/equipment/components/unit-section';
 import { UnitSightings } from '../features/equipment/components/unit-sightings';
 import { UnitTags } from '../features/equipment/components/unit-tags';
@@ -24,6 +25,7 @@ import type { EquipmentDetailAnswer, SessionInfo } from '../lib/wire';
 const chapters = [
   { id: 'now', word: 'Now' },
   { id: 'how-we-know', word: 'How we know' },
+  { id: 'reports', word: 'Reports' },
   { id: 'journey', word: 'Journey' },
   { id: 'miles', word: 'Miles' },
   { id: 'tags', word: 'Tags' },
@@ -113,6 +115,9 @@ function UnitDocument({ answer: { data: unit, can }, session }: DocumentProps) {
         </UnitSection>
         <UnitSection id="how-we-know" heading="How we know">
           <UnitSightings unitId={unit.unitId} zone={zone} now={now} />
+        </UnitSection>
+        <UnitSection id="reports" heading="Reports">
+          <UnitReports unit={unit} zone={zone} now={now} />
         </UnitSection>
         <UnitSection id="journey" heading="Journey" aside={span.choice}>
           <UnitJourney unitId={unit.unitId} zone={zone} now={now} from={span.from} />

@@ -7,8 +7,25 @@ export function sayWhere({ state, quiet, lastSeen, between }: EquipmentItem): st
   const site = between?.from?.name ?? lastSeen.site?.name ?? 'a place without a name';
   if (quiet) return `Quiet since ${site}`;
   if (state === 'enRoute') return `From ${site}`;
-  return lastSeen.track ? `${site}, ${sayTrack(lastSeen.track)}` : site;
+  const place = lastSeen.track ? `${site}, ${sayTrack(lastSeen.track)}` : site;
+  return `${place}${saySaid(lastSeen.basis)}`;
 }
+
+/** ", as reported" for what no reader saw; nothing for what one did. */
+export const saySaid = (basis: LastSeen['basis']): string =>
+  basis === 'report' ? ', as reported' : basis === 'hand' ? ', seen by eye' : '';
+
+const known: Record<LastSeen['basis'], string> = {
+  read: 'read',
+  riding: 'read with its car',
+  report: 'reported',
+  hand: 'seen by eye',
+};
+
+/** "read", "reported", "seen by eye": what stands after "last". */
+export const sayLast = (basis: LastSeen['basis']): string => known[basis];
+
+type LastSeen = NonNullable<EquipmentItem['lastSeen']>;
 
 /** "track 7" for a bare number, else the track's own name. */
 export const sayTrack = (track: string): string => (/^\d/.test(track) ? `track ${track}` : track);

@@ -137,20 +137,18 @@ function sayHow(line: JourneyLine, zone: string, now: number): string {
   return `came: ${came}; left: ${left}${out}`;
 }
 
+/** True where an end was said, reckoned or not seen, or may yet be taken back. */
 const isReckoned = ({ arrivalBasis, departureBasis, provisional }: StayView): boolean =>
-  provisional ||
-  arrivalBasis === 'inferred' ||
-  arrivalBasis === 'unknown' ||
-  departureBasis === 'inferred';
+  provisional || arrivalBasis !== 'read' || (departureBasis !== null && departureBasis !== 'read');
 
 const sayStay = (stay: StayView): string =>
   isReckoned(stay)
-    ? 'a stay, partly reckoned'
+    ? 'a stay, partly said or reckoned'
     : stay.departedAt
       ? 'a stay, read at both ends'
       : 'a stay, read as it began';
 
-/** A stay as a bar on a line, a leg as a thin stroke; hollow where an end is reckoned or provisional. */
+/** A stay as a bar on a line, a leg as a thin stroke; hollow where an end was not read or is provisional. */
 export function JourneyMark({ line }: { line: JourneyLine }) {
   if (line.kind === 'leg') {
     return (

@@ -5,7 +5,7 @@ import { paths } from '../../../lib/paths';
 import { formatInstant } from '../../../lib/times';
 import { capital, sayKind } from '../../../lib/words';
 import type { EquipmentDetail } from '../../../lib/wire';
-import { minutesThere, sayTrack } from '../where';
+import { minutesThere, sayLast, saySaid, sayTrack } from '../where';
 
 interface Props {
   unit: EquipmentDetail;
@@ -47,7 +47,8 @@ function Whereabouts({ unit, zone, now }: Props) {
       <>
         It stands at{' '}
         {site ? <Link to={paths.fleet({ site: site.code })}>{site.name}</Link> : 'a site'}
-        {lastSeen.track ? `, ${sayTrack(lastSeen.track)}` : ''}, {stay.atLeast ? 'for over' : 'for'}{' '}
+        {lastSeen.track ? `, ${sayTrack(lastSeen.track)}` : ''}
+        {saySaid(lastSeen.basis)}, {stay.atLeast ? 'for over' : 'for'}{' '}
         <b className="font-medium">{length}</b>
         {unit.pastLimit && stay.limitHours !== null ? (
           <span className="text-ochre">
@@ -67,7 +68,7 @@ function Whereabouts({ unit, zone, now }: Props) {
           It is <span className="text-ochre">quiet</span>: not read since{' '}
         </>
       ) : (
-        'It is under way, last read at '
+        `It is under way, last ${sayLast(lastSeen.basis)} at `
       )}
       {from ? (
         <Link to={paths.fleet({ site: from.code })}>{from.name}</Link>

@@ -4,9 +4,9 @@ import { Mark } from '../../../components/ui/mark';
 import { StateMark, sayState } from '../../../components/ui/state-mark';
 import { formatDuration } from '../../../lib/durations';
 import { formatInstantInFull } from '../../../lib/times';
-import { capital } from '../../../lib/words';
+import { capital, sayUnseenLeads } from '../../../lib/words';
 import type { EquipmentDetail } from '../../../lib/wire';
-import { sayTrack } from '../where';
+import { sayLast, sayTrack } from '../where';
 
 interface Props {
   unit: EquipmentDetail;
@@ -47,13 +47,13 @@ export function UnitNow({ unit, zone }: Props) {
               <span className="text-ink-soft"> by the reader {lastSeen.readPoint.name}</span>
             ) : null}
           </Fact>
-          <Fact name="Last read">
+          <Fact name={`Last ${sayLast(lastSeen.basis)}`}>
             <span className="mono">{formatInstantInFull(lastSeen.at, zone)}</span>
           </Fact>
         </>
       ) : null}
       {stay ? (
-        <Fact name={stay.arrivedAt ? 'Arrived' : 'First read there'}>
+        <Fact name={stay.arrivedAt ? 'Arrived' : 'First known there'}>
           <span className="mono">
             {formatInstantInFull(stay.arrivedAt ?? stay.firstSeenAt, zone)}
           </span>
@@ -65,6 +65,12 @@ export function UnitNow({ unit, zone }: Props) {
       {stay ? (
         <Fact name="Limit there">
           {stay.limitHours === null ? 'none set' : formatDuration(stay.limitHours * 60)}
+        </Fact>
+      ) : null}
+      {unit.unseenLeads.length > 0 && lastSeen?.site ? (
+        <Fact name="Not seen there">
+          {sayUnseenLeads(unit.unseenLeads)}
+          <span className="text-ink-soft">: no reader stands there</span>
         </Fact>
       ) : null}
       {unit.carriedBy ? (
