@@ -33,6 +33,7 @@ export const siteView = z
     timeZone: z.string().optional(),
     returnHours: z.number().optional(),
     dwellLimitHours: z.number().optional(),
+    leads: z.array(z.object({ name: z.string(), equipped: z.boolean() })).optional(),
     heartbeat: heartbeatView
       .nullable()
       .optional()

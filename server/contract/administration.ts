@@ -67,6 +67,9 @@ const degrees = (most: number) =>
 const latitude = degrees(90);
 const longitude = degrees(180);
 
+/** A track by which a site is entered or left; readers stand at those that are equipped. */
+const leadSchema = z.object({ name: textSchema(40), equipped: z.boolean() });
+
 export const siteInput = z
   .object({
     code: codeSchema,
@@ -77,9 +80,19 @@ export const siteInput = z
     timeZone: timeZoneSchema,
     returnHours: z.number().min(0).max(1_000).optional(),
     dwellLimitHours: z.number().min(0.01).max(20_000).optional(),
+    leads: z
+      .array(leadSchema)
+      .max(32)
+      .refine(haveNamesOfTheirOwn, 'must not name one twice')
+      .optional()
+      .meta({ description: 'All its leads; an empty list: not known.' }),
   })
   .meta({ id: 'SiteInput' });
 export type SiteInput = z.output<typeof siteInput>;
+
+function haveNamesOfTheirOwn(leads: readonly { name: string }[]): boolean {
+  return new Set(leads.map(({ name }) => name)).size === leads.length;
+}
 
 /** A side of a read point: a site, with the track where it is known; null is the open line. */
 export const placeSchema = z.object({
@@ -166,13 +179,9 @@ export const registerInput = z
     lengthDm: z.int().min(1).max(10_000).nullish(),
     axles: z.int().min(1).max(64).nullish(),
     tags: z.array(tagInput).max(16).optional(),
-    formerly: z
-      .array(formerInput)
-      .max(16)
-      .optional()
-      .meta({
-        description: 'Numbers it carried before; the present one begins as the last ended.',
-      }),
+    formerly: z.array(formerInput).max(16).optional().meta({
+      description: 'Numbers it carried before; the present one begins as the last ended.',
+    }),
   })
   .meta({ id: 'RegisterInput' });
 export type RegisterInput = z.output<typeof registerInput>;

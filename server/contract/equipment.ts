@@ -135,6 +135,9 @@ export const equipmentDetail = equipmentFacts
     }),
     carriedBy: z.object({ unitId: z.string(), display: z.string() }).nullable(),
     sitesOnly: z.boolean(),
+    unseenLeads: z
+      .array(z.string())
+      .meta({ description: 'Leads of the site it was last at where no reader stands.' }),
     asOf: instantSchema,
   })
   .meta({ id: 'EquipmentDetail' });

@@ -53,6 +53,7 @@ export const siteFeature = z.object({
     enRoute: count.meta({ description: 'Between sites, last read or left here.' }),
     quiet: count.meta({ description: 'Of those en route.' }),
     pastLimit: count.meta({ description: 'Of those on hand.' }),
+    unseenLeads: z.array(z.string()).meta({ description: 'Leads where no reader stands.' }),
   }),
 });
 export type SiteFeature = z.infer<typeof siteFeature>;

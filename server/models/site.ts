@@ -18,6 +18,8 @@ export class Site extends Model<InferAttributes<Site>, InferCreationAttributes<S
   declare timeZone: string;
   declare returnHours: CreationOptional<number>;
   declare dwellLimitHours: CreationOptional<number>;
+  /** JSON: `[{ "name": "South lead", "equipped": false }]`. */
+  declare leads: CreationOptional<string>;
   declare createdAt: CreationOptional<Date>;
 }
 
@@ -35,6 +37,7 @@ export function initSite(sequelize: Sequelize): typeof Site {
       timeZone: { type: DataTypes.STRING(64), allowNull: false },
       returnHours: DataTypes.DOUBLE,
       dwellLimitHours: DataTypes.DOUBLE,
+      leads: DataTypes.TEXT,
       createdAt: DataTypes.DATE(3),
     },
     { sequelize, tableName: 'sites', modelName: 'Site' },

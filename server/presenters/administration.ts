@@ -18,6 +18,7 @@ import type { Site } from '../models/site.js';
 import type { Tag } from '../models/tag.js';
 import type { Unit } from '../models/unit.js';
 import { rolesOf } from '../policies/actor.js';
+import { leadsOf } from './leads.js';
 
 export function presentOrganisation(organisation: Organisation): OrganisationView {
   const { code, name, kind } = organisation;
@@ -55,6 +56,7 @@ export function presentSite(
     timeZone: site.timeZone,
     returnHours: Number(site.returnHours),
     dwellLimitHours: Number(site.dwellLimitHours),
+    leads: leadsOf(site.leads),
     ...(heartbeat !== undefined && { heartbeat }),
   };
 }

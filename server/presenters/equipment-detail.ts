@@ -5,10 +5,12 @@ import {
   type EquipmentRecord,
   type IdentityRecord,
 } from './equipment.js';
+import { unseenLeads } from './leads.js';
 
 export interface UnitRecord extends EquipmentRecord {
   length_dm: number | null;
   axles: number | null;
+  site_leads: string | null;
 }
 
 export interface DatedIdentityRecord extends IdentityRecord {
@@ -56,6 +58,7 @@ export function presentEquipmentDetail(
     riding: [],
     carriedBy: null,
     sitesOnly: unit.sitesOnly,
+    unseenLeads: unseenLeads(unit.row.site_leads),
     asOf: now.toISOString(),
   };
 }

@@ -1,4 +1,5 @@
 import type { EdgeFeature, SiteFeature } from '../contract/map.js';
+import { unseenLeads } from './leads.js';
 
 export interface SiteRecord {
   code: string;
@@ -6,6 +7,7 @@ export interface SiteRecord {
   kind: string;
   latitude: number;
   longitude: number;
+  leads: string;
 }
 
 export interface CountRecord {
@@ -30,6 +32,7 @@ export function presentSiteFeature(site: SiteRecord, counts: CountRecord | null)
       enRoute: counts && counts.en_route,
       quiet: counts && counts.quiet,
       pastLimit: counts && counts.past_limit,
+      unseenLeads: unseenLeads(site.leads),
     },
   };
 }

@@ -15,6 +15,7 @@ export interface MapSiteRow {
   kind: string;
   latitude: number;
   longitude: number;
+  leads: string;
 }
 
 export type MapEdgeRow = EdgeRecord;
@@ -31,7 +32,7 @@ export interface MapCountRow {
 export function listMapSites(db: Database, box: Box | undefined): Promise<MapSiteRow[]> {
   return ask<MapSiteRow>(
     db,
-    sql`SELECT id, code, name, kind, latitude, longitude FROM sites s
+    sql`SELECT id, code, name, kind, latitude, longitude, leads FROM sites s
       WHERE ${box ? within(box, sql`s`) : sql`TRUE`} ORDER BY code`,
   );
 }

@@ -8,6 +8,7 @@ export interface EquipmentRow extends EquipmentRecord {
   length_dm: number | null;
   axles: number | null;
   site_id: number | null;
+  site_leads: string | null;
 }
 
 export interface IdentityRow {
@@ -33,7 +34,7 @@ const factsOf = (unitIds: readonly number[]): Sql => sql`
     o.code AS owner_code, o.name AS owner_name, l.at, l.state, l.track, l.direction, l.basis,
     l.pass_started_at, l.pass_ordinal, l.arrived_at, l.stay_first_seen_at, l.quiet_at, l.limit_at,
     l.site_id, st.code AS site_code, st.name AS site_name, st.latitude, st.longitude,
-    st.dwell_limit_hours, rp.code AS read_point_code, rp.name AS read_point_name,
+    st.leads AS site_leads, st.dwell_limit_hours, rp.code AS read_point_code, rp.name AS read_point_name,
     rs.code AS read_point_site_code
   FROM last_seen l
   JOIN units u ON u.id = l.unit_id

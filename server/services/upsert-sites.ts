@@ -8,8 +8,8 @@ import { siteIdsByCode } from '../queries/ids-by-code.js';
 import { changeConfiguration } from './change-configuration.js';
 
 /**
- * Stores sites by code, all or none, each with its node of the route graph. Hours that are left
- * out stay as they are.
+ * Stores sites by code, all or none, each with its node of the route graph. Hours and leads
+ * that are left out stay as they are.
  */
 export async function upsertSites(
   db: Database,
@@ -28,6 +28,7 @@ export async function upsertSites(
       ...item,
       returnHours: item.returnHours ?? byCode.get(item.code)?.returnHours ?? 12,
       dwellLimitHours: item.dwellLimitHours ?? byCode.get(item.code)?.dwellLimitHours ?? 96,
+      leads: item.leads ? JSON.stringify(item.leads) : (byCode.get(item.code)?.leads ?? '[]'),
     }));
     await Site.bulkCreate(rows, {
       updateOnDuplicate: [
@@ -38,6 +39,7 @@ export async function upsertSites(
         'timeZone',
         'returnHours',
         'dwellLimitHours',
+        'leads',
       ],
       transaction,
     });

@@ -28,3 +28,11 @@ export const listed = (words: string[], join = 'and'): string =>
 
 /** First letter large, for the head of a sentence. */
 export const capital = (text: string): string => text.charAt(0).toUpperCase() + text.slice(1);
+
+/** "Entries by the south lead are not seen": what leads without a reader keep from view. */
+export const sayUnseenLeads = (names: string[]): string =>
+  `Entries by ${listed(names.map((name) => `the ${uncapital(name)}`))} are not seen`;
+
+/** A name in the middle of a sentence; "N2 lead" keeps its letter. */
+const uncapital = (text: string): string =>
+  /^\p{Lu}\p{Ll}/u.test(text) ? text.charAt(0).toLowerCase() + text.slice(1) : text;

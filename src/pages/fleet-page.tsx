@@ -19,6 +19,7 @@ import { setPreferences, usePreferences } from '../lib/preferences';
 import { useMedia } from '../lib/use-media';
 import { useNow } from '../lib/use-now';
 import { useTitle } from '../lib/use-title';
+import { sayUnseenLeads } from '../lib/words';
 
 /** With fewer than this the table stands alone. */
 const worthAMap = 30;
@@ -116,6 +117,7 @@ function LedgerPanel({ isBeside, hasMap }: { isBeside: boolean; hasMap: boolean 
   const sites = (network?.sites ?? []).flatMap(({ code, name, onHand }) =>
     onHand === null ? [] : [{ value: code, label: name }],
   );
+  const unseen = network?.sites.find(({ code }) => code === filter.site)?.unseenLeads ?? [];
   return (
     <section aria-label="Cars and boxes" className="flex min-h-0 min-w-0 flex-1 flex-col">
       <div className="flex flex-wrap items-baseline justify-between gap-x-20 gap-y-4 pb-8">
@@ -134,6 +136,9 @@ function LedgerPanel({ isBeside, hasMap }: { isBeside: boolean; hasMap: boolean 
           {session ? <NewWatch session={session} filter={filter} sites={sites} /> : null}
         </span>
       </div>
+      {unseen.length > 0 ? (
+        <p className="pb-8 font-condensed text-table text-ink-soft">{sayUnseenLeads(unseen)}.</p>
+      ) : null}
       {isMapOpen && !isBeside ? (
         <div className="mb-16 flex h-[380px] flex-col">
           <NetworkPanel chosen={filter.site} onChoose={chooseSite} />

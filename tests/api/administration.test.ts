@@ -59,7 +59,9 @@ describe('a network loaded by script', () => {
   test('stands as it was sent, and the configuration moves on with each part', async () => {
     const before = await configVersion();
     const { body: site } = await admin.post('/api/sites').send(alder).expect(200);
-    expect(site).toEqual({ data: { ...alder, returnHours: 12, dwellLimitHours: 96 } });
+    expect(site).toEqual({
+      data: { ...alder, returnHours: 12, dwellLimitHours: 96, leads: [] },
+    });
     const cairn = { ...alder, code: 'CAIRN', name: 'Cairn', kind: 'line', returnHours: 6 };
     const { body: sites } = await admin.post('/api/sites').send([alder, cairn]).expect(200);
     expect(sites.data.map((one: { code: string }) => one.code)).toEqual(['ALDER', 'CAIRN']);
@@ -134,6 +136,35 @@ describe('a change', () => {
     const { name, site, code, kind } = north;
     const later = await admin.post('/api/read-points').send({ name, site, code, kind }).expect(200);
     expect(later.body.data).toMatchObject({ ...north, passGapSeconds: 240 });
+  });
+
+  test('of a site keeps its leads unless it lists others, and the map says which are not seen', async () => {
+    const leads = [
+      { name: 'North lead', equipped: true },
+      { name: 'South lead', equipped: false },
+    ];
+    const { body } = await admin
+      .post('/api/sites')
+      .send({ ...alder, leads })
+      .expect(200);
+    expect(body.data.leads).toEqual(leads);
+    const kept = await admin.post('/api/sites').send(alder).expect(200);
+    expect(kept.body.data.leads).toEqual(leads);
+    const map = await admin.get('/api/map').expect(200);
+    expect(map.body.features[0].properties.unseenLeads).toEqual(['South lead']);
+    const none = await admin
+      .post('/api/sites')
+      .send({ ...alder, leads: [] })
+      .expect(200);
+    expect(none.body.data.leads).toEqual([]);
+    const faults = await faultsOf('/api/sites', {
+      ...alder,
+      leads: [{ name: '', equipped: 'yes' }, { name: 'East lead' }],
+    });
+    expect(faults).toEqual(['/leads/0/name', '/leads/0/equipped', '/leads/1/equipped']);
+    expect(await faultsOf('/api/sites', { ...alder, leads: [leads[0], leads[0]] })).toEqual([
+      '/leads',
+    ]);
   });
 
   test('of an edge from its other end is a change of the same edge', async () => {
