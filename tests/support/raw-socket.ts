@@ -85,10 +85,14 @@ function takeAnswer(bytes: Buffer): { answer: RawAnswer; bytes: number } | null 
       return [line.slice(0, colon).toLowerCase(), line.slice(colon + 1).trim()];
     }),
   );
-  const length = Number(headers['content-length'] ?? 0);
+  const status = Number(first.split(' ')[1]);
+  // The server itself, where it refuses a head, sends chunks: the empty one, and no other.
+  const isChunked = headers['transfer-encoding'] === 'chunked';
+  const length = isChunked ? '0\r\n\r\n'.length : Number(headers['content-length'] ?? 0);
   const whole = end + 4 + length;
   if (bytes.length < whole) return null;
   const text = bytes.subarray(end + 4, whole).toString();
-  const body = text === '' ? {} : (JSON.parse(text) as Record<string, unknown>);
-  return { answer: { status: Number(first.split(' ')[1]), headers, body }, bytes: whole };
+  const isJson = /json/.test(headers['content-type'] ?? '');
+  const body = isJson ? (JSON.parse(text) as Record<string, unknown>) : {};
+  return { answer: { status, headers, body }, bytes: whole };
 }
