@@ -8,34 +8,29 @@ import {
   type LedgerRead,
   type ResolvedRead,
 } from '../domain/movements/resolve-read.js';
-import { visitsOf } from '../domain/movements/visits.js';
 import { byKeys, insertRows } from '../lib/bulk.js';
 import type { Database } from '../lib/database.js';
 import { withTransaction } from '../lib/database.js';
-import { foldPoint, markDirty, type DirtyUnits, type FreshFacts } from './fold-point.js';
+import { Changes } from './changes.js';
+import { factsByPoint } from './facts-by-point.js';
+import { foldPoints } from './fold-points.js';
 import type { LoadedNetwork } from './load-network.js';
 import type { Work } from './take-work.js';
 
-type Usable = ResolvedRead & { unit: number; read: UsableRead };
+/** A read with the unit that it names. */
+export type Usable = ResolvedRead & { unit: number; read: UsableRead };
 
-/**
- * First stage: folds reads and wheel records into passages and passes, read point by read point.
- * Answers which units changed from when on.
- */
+/** First stage: folds reads and wheel records into passages and passes. Answers what changed. */
 export async function foldReads(
   connection: PoolConnection,
   { network, strangerRanks }: LoadedNetwork,
-  work: Work,
+  wheels: Work['wheels'],
   usable: readonly Usable[],
-): Promise<DirtyUnits> {
-  const dirty: DirtyUnits = new Map();
-  await lowerRanks(connection, strangerRanks, usable, dirty);
-  const points = factsByPoint(network, work, usable);
-  for (const [readPointId, facts] of [...points].sort(([a], [b]) => a - b)) {
-    const point = network.readPoints.get(readPointId);
-    if (point) await foldPoint(connection, network, point, facts, dirty);
-  }
-  return dirty;
+): Promise<Changes> {
+  const changes = new Changes();
+  await lowerRanks(connection, strangerRanks, usable, changes);
+  await foldPoints(connection, network, factsByPoint(network, wheels, usable), changes);
+  return changes;
 }
 
 /** Reads that name a unit under this configuration; strangers get their rows here. */
@@ -54,15 +49,43 @@ export async function resolveReads(
     strangers.set(named.identity.compact, { identity: named.identity, tag: read.tag });
   }
   const made = await makeStrangers(db, [...strangers.values()]);
-  for (const [compact, { unit, rank }] of made) {
-    network.learn({ value: compact, unit, validFrom: null, validTo: null });
-    if (rank !== null) strangerRanks.set(unit, rank);
-  }
+  learn(network, strangerRanks, made);
   return resolved.flatMap(({ read, named }) => {
     const unit = named.unit ?? made.get(named.identity?.compact ?? '')?.unit;
     if (typeof unit !== 'number') return [];
     return [{ ...named, unit, read: { at: read.at, antenna: read.antenna, tag: read.tag } }];
   });
+}
+
+/** The units that reports are about, made where nobody knew of them, with the instants (ms). */
+export async function resolveReports(
+  db: Database,
+  { network, strangerRanks }: LoadedNetwork,
+  reports: Work['reports'],
+): Promise<{ unitId: number; at: number }[]> {
+  const strangers = new Map<string, { identity: Identity; tag: string }>();
+  for (const { compact, at } of reports) {
+    if (network.unitOfIdentity(compact, at) !== undefined) continue;
+    const resolved = resolveTag(compact);
+    if (resolved.kind === 'text') strangers.set(compact, { ...resolved, tag: compact });
+  }
+  const made = await makeStrangers(db, [...strangers.values()]);
+  learn(network, strangerRanks, made);
+  return reports.flatMap(({ compact, at }) => {
+    const unitId = network.unitOfIdentity(compact, at);
+    return typeof unitId === 'number' ? [{ unitId, at }] : [];
+  });
+}
+
+function learn(
+  network: LoadedNetwork['network'],
+  strangerRanks: Map<number, number>,
+  made: ReadonlyMap<string, Stranger>,
+): void {
+  for (const [compact, { unit, rank }] of made) {
+    network.learn({ value: compact, unit, validFrom: null, validTo: null });
+    if (rank !== null) strangerRanks.set(unit, rank);
+  }
 }
 
 type Stranger = { unit: number; rank: number | null };
@@ -128,7 +151,7 @@ async function lowerRanks(
   connection: PoolConnection,
   ranks: Map<number, number>,
   usable: readonly Usable[],
-  dirty: DirtyUnits,
+  changes: Changes,
 ): Promise<void> {
   for (const { unit, read } of usable) {
     const rank = ranks.get(unit);
@@ -141,39 +164,6 @@ async function lowerRanks(
       groupCode,
       unit,
     ]);
-    markDirty(dirty, unit, 0);
+    changes.unit(unit, 0);
   }
-}
-
-function factsByPoint(
-  network: LoadedNetwork['network'],
-  work: Work,
-  usable: readonly Usable[],
-): Map<number, FreshFacts> {
-  const facts = new Map<number, FreshFacts>();
-  const factsOf = (readPointId: number) => {
-    const known = facts.get(readPointId) ?? { visits: [], since: Infinity, until: -Infinity };
-    facts.set(readPointId, known);
-    return known;
-  };
-  const reads = new Map<string, { point: number; unit: number; reads: UsableRead[] }>();
-  for (const { readPointId, unit, read } of usable) {
-    const known = factsOf(readPointId);
-    known.since = Math.min(known.since, read.at);
-    known.until = Math.max(known.until, read.at);
-    const key = `${readPointId} ${unit}`;
-    const own = reads.get(key) ?? { point: readPointId, unit, reads: [] };
-    reads.set(key, own);
-    own.reads.push(read);
-  }
-  for (const { point, unit, reads: own } of reads.values()) {
-    const gapMs = network.readPoint(point).visitGapSeconds * 1000;
-    for (const visit of visitsOf(unit, own, gapMs)) factsOf(point).visits.push(visit);
-  }
-  for (const { readPointId, since, until } of work.wheels) {
-    const known = factsOf(readPointId);
-    known.since = Math.min(known.since, since);
-    known.until = Math.max(known.until, until);
-  }
-  return facts;
 }

@@ -6,23 +6,39 @@ import { foldHistory, type UnitHistory } from '../domain/movements/fold-history.
 import { changeableFrom, nothingKnown, type FoldState } from '../domain/movements/fold-state.js';
 import type { Sighting } from '../domain/movements/fold-unit.js';
 import { byKeys, inParts } from '../lib/bulk.js';
+import { configurationVersion, type LoadedNetwork } from './load-network.js';
+import type { Lane } from './take-work.js';
 import { writeHistories, type FoldedUnit } from './write-histories.js';
 
 const UNITS_A_PART = 500;
 
+/** The configuration has moved on since it was loaded: load it and begin again. */
+export class ConfigurationChanged extends Error {
+  constructor() {
+    super('the configuration has changed');
+    this.name = 'ConfigurationChanged';
+  }
+}
+
 /**
- * Second stage: folds the sightings of dirty units, from where they changed on, into stays, legs
- * and last seen. Answers the units done; fewer than `most` means that no dirty one is left.
+ * Second stage: folds the sightings of dirty units of one lane, from where they changed on, into
+ * stays, legs and last seen. Answers the units done. Whoever marks one of them meanwhile waits.
  */
 export async function foldUnits(
   connection: PoolConnection,
-  network: Network,
+  { network, version }: Pick<LoadedNetwork, 'network' | 'version'>,
+  lane: Lane,
   most: number,
 ): Promise<number[]> {
   const dirty = await connection.query<{ unit_id: number; from_at: Date }[]>(
-    'SELECT unit_id, from_at FROM dirty_units ORDER BY unit_id LIMIT ?',
-    [most],
+    'SELECT unit_id, from_at FROM dirty_units WHERE lane = ? ORDER BY unit_id LIMIT ? FOR UPDATE',
+    [lane, most],
   );
+  // A change of configuration marks units in its own transaction: what is marked must be folded
+  // under the configuration that it was marked for.
+  if (dirty.length && version !== (await configurationVersion(connection))) {
+    throw new ConfigurationChanged();
+  }
   for (const part of inParts(dirty, UNITS_A_PART)) {
     const starts = await startsOf(connection, part);
     const folded = await foldPart(connection, network, starts);
@@ -146,7 +162,7 @@ async function loadSightings(
     connection,
     `SELECT unit_id, read_point_id, first_at, first_antenna, first_tag, last_at, role, direction,
        pass_started_at, pass_ordinal
-     FROM passages FORCE INDEX (passages_unit) WHERE :keys`,
+     FROM passages FORCE INDEX (passages_unit) WHERE stray IS NULL AND (:keys)`,
     'unit_id = ? AND first_at >= ?',
     starts.map(({ unitId, beforeAt }) => [unitId, new Date(beforeAt)]),
   );

@@ -6,6 +6,8 @@ import {
   type Configuration,
   type Naming,
   type Place,
+  type SiteConfiguration,
+  type SiteLead,
 } from '../domain/movements/configuration.js';
 import type { RouteEdge, RouteNode } from '../domain/routes/route-graph.js';
 import { TEXT_RANK } from '../domain/movements/passages.js';
@@ -41,11 +43,18 @@ async function loadConfiguration(
   pool: Pick<Pool, 'query'>,
   units: readonly UnitRow[],
 ): Promise<Configuration> {
+  const nodes = await pool.query<(RouteNode & { code: string })[]>(
+    'SELECT id, code, site_id AS siteId FROM route_nodes',
+  );
+  const nodeIds = new Map(nodes.map(({ code, id }) => [code, id]));
   return {
-    sites: await pool.query(
-      `SELECT id, code, kind, return_hours AS returnHours, dwell_limit_hours AS dwellLimitHours
-       FROM sites`,
-    ),
+    sites: (
+      await pool.query<SiteRow[]>(
+        `SELECT id, code, kind, return_hours AS returnHours, dwell_limit_hours AS dwellLimitHours,
+           leads
+         FROM sites`,
+      )
+    ).map((row) => ({ ...row, leads: JSON.parse(row.leads) as SiteLead[] })),
     readPoints: (await pool.query<ReadPointRow[]>('SELECT * FROM read_points')).map((row) => ({
       id: row.id,
       siteId: row.site_id,
@@ -57,6 +66,7 @@ async function loadConfiguration(
       passGapSeconds: row.pass_gap_seconds,
       visitGapSeconds: row.visit_gap_seconds,
       drillMinutes: row.drill_minutes,
+      ...nodesToward(row.toward, nodeIds),
     })),
     antennas: await pool.query<AntennaConfiguration[]>(
       `SELECT site_id AS siteId, number, read_point_id AS readPointId, offset_m AS offsetM, side
@@ -75,7 +85,7 @@ async function loadConfiguration(
         'SELECT compact AS value, unit_id, valid_from, valid_to FROM identities ORDER BY id',
       ),
     ),
-    routeNodes: await pool.query<RouteNode[]>('SELECT id, site_id AS siteId FROM route_nodes'),
+    routeNodes: nodes.map(({ id, siteId }) => ({ id, siteId })),
     routeEdges: await pool.query<RouteEdge[]>(
       `SELECT from_node_id AS \`from\`, to_node_id AS \`to\`, rail_metres AS metres, kind
        FROM route_edges`,
@@ -90,6 +100,8 @@ interface UnitRow {
   group_code: number | null;
 }
 
+type SiteRow = Omit<SiteConfiguration, 'leads'> & { leads: string };
+
 interface ReadPointRow {
   id: number;
   site_id: number;
@@ -103,6 +115,7 @@ interface ReadPointRow {
   pass_gap_seconds: number;
   visit_gap_seconds: number;
   drill_minutes: number;
+  toward: string;
 }
 
 interface NamingRow {
@@ -110,6 +123,15 @@ interface NamingRow {
   unit_id: number;
   valid_from: Date | null;
   valid_to: Date | null;
+}
+
+/** Codes of nodes that are off the graph are left out. */
+function nodesToward(toward: string, nodeIds: Map<string, number>) {
+  const { decreasing = [], increasing = [] } = JSON.parse(toward) as Partial<
+    Record<'decreasing' | 'increasing', string[]>
+  >;
+  const known = (codes: readonly string[]) => codes.flatMap((code) => nodeIds.get(code) ?? []);
+  return { decreasingNodes: known(decreasing), increasingNodes: known(increasing) };
 }
 
 function placeOf(siteId: number | null, track: string | null): Place {

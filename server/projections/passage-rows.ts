@@ -1,6 +1,9 @@
 import type { UnitRef } from '../domain/movements/configuration.js';
 import { packEvidence, unpackEvidence } from '../domain/movements/pack-evidence.js';
-import type { PassMember, Pass } from '../domain/movements/passes.js';
+import type { Passage } from '../domain/movements/passages.js';
+import type { Pass, PassMember } from '../domain/movements/passes.js';
+import type { StrayPassage } from '../domain/movements/refold-point.js';
+import type { StrayReason } from '../domain/movements/strays.js';
 import type { Visit } from '../domain/movements/visits.js';
 import type { SqlValue } from '../lib/bulk.js';
 
@@ -17,8 +20,10 @@ export const PASSAGE_COLUMNS = [
   'direction',
   'direction_basis',
   'role',
+  'stray',
   'speed_kmh',
   'read_count',
+  'tag_count',
   'evidence',
 ] as const;
 
@@ -30,13 +35,16 @@ export interface PassageRow {
   first_antenna: number;
   first_tag: Buffer;
   last_at: Date;
-  pass_started_at: Date;
-  pass_ordinal: number;
+  /** Null: a stray, which is in no pass. */
+  pass_started_at: Date | null;
+  pass_ordinal: number | null;
   direction: string;
   direction_basis: string | null;
   role: string;
+  stray: StrayReason | null;
   speed_kmh: number | null;
   read_count: number;
+  tag_count: number;
   evidence: string;
 }
 
@@ -54,6 +62,7 @@ export const PASS_COLUMNS = [
   'clean_start',
 ] as const;
 
+/** A row of `passes` as the connector gives it. */
 export interface PassRow {
   read_point_id: number;
   started_at: Date;
@@ -67,8 +76,20 @@ export interface PassRow {
   clean_start: number;
 }
 
-export function passageValues(readPointId: number, pass: Pass, member: PassMember): SqlValue[] {
-  const { passage } = member;
+export function passageValues(
+  readPointId: number,
+  { startedAt, ordinal }: Pick<Pass, 'startedAt' | 'ordinal'>,
+  { passage, direction, basis, role }: PassMember,
+): SqlValue[] {
+  const place = [new Date(startedAt), ordinal, direction ?? 'unknown', basis, role, null];
+  return rowValues(readPointId, passage, place);
+}
+
+export function strayValues(readPointId: number, { passage, reason }: StrayPassage): SqlValue[] {
+  return rowValues(readPointId, passage, [null, null, 'unknown', null, 'stray', reason]);
+}
+
+function rowValues(readPointId: number, passage: Passage, place: readonly SqlValue[]): SqlValue[] {
   return [
     readPointId,
     new Date(passage.first.at),
@@ -76,13 +97,10 @@ export function passageValues(readPointId: number, pass: Pass, member: PassMembe
     passage.first.antenna,
     Buffer.from(passage.first.tag),
     new Date(passage.lastAt),
-    new Date(pass.startedAt),
-    pass.ordinal,
-    member.direction ?? 'unknown',
-    member.basis,
-    member.role,
+    ...place,
     passage.own.speedKmh,
     passage.readCount,
+    passage.tagCount,
     packEvidence(passage.visits),
   ];
 }

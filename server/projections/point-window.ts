@@ -6,6 +6,7 @@ import {
 } from '../domain/movements/configuration.js';
 import { WHEEL_REACH_MS, type WheelRecord } from '../domain/movements/own-direction.js';
 import { hasSeveralOffsets } from '../domain/movements/passages.js';
+import { ALONE_MS } from '../domain/movements/strays.js';
 import type { PassStart } from '../domain/movements/refold-point.js';
 import type { SqlValue } from '../lib/bulk.js';
 import type { PassageRow, PassRow } from './passage-rows.js';
@@ -13,6 +14,8 @@ import type { PassageRow, PassRow } from './passage-rows.js';
 /** The stored rows of a stretch of one read point's history. */
 export interface Window {
   from: PassStart | null;
+  /** Rows that begin up to here (ms) are in it. */
+  until: number;
   passages: PassageRow[];
   passes: PassRow[];
   /** Nothing is stored behind it. */
@@ -26,16 +29,17 @@ export async function startOfWindow(
   point: ReadPointConfiguration,
   since: number,
 ): Promise<PassStart | null> {
+  const reachMs = Math.max(point.visitGapSeconds * 1000, ALONE_MS);
   const touching = await firstAtOf(
     connection,
     'SELECT MIN(first_at) AS at FROM passages WHERE read_point_id = ? AND last_at >= ? AND first_at < ?',
-    [point.id, new Date(since - point.visitGapSeconds * 1000), new Date(since)],
+    [point.id, new Date(since - reachMs), new Date(since)],
   );
   const before = hasSeveralOffsets(network, point)
     ? await firstAtOf(
         connection,
         `SELECT MAX(first_at) AS at FROM passages
-         WHERE read_point_id = ? AND first_at < ? AND first_at >= ?`,
+         WHERE read_point_id = ? AND first_at < ? AND first_at >= ? AND stray IS NULL`,
         [point.id, new Date(since), new Date(since - LONGEST_STOP_MS)],
       )
     : null;
@@ -73,7 +77,7 @@ export async function loadWindow(
     'SELECT 1 FROM passages WHERE read_point_id = ? AND first_at > ? LIMIT 1',
     [readPointId, new Date(until)],
   );
-  return { from, passages, passes, complete: !later };
+  return { from, until, passages, passes, complete: !later };
 }
 
 /** Wheel records that bear on anything from `since` to `until` (ms). */

@@ -1,41 +1,42 @@
 import type { Pool } from 'mariadb';
 import { WHEEL_REACH_MS } from '../domain/movements/own-direction.js';
-import type { LedgerRead } from '../domain/movements/resolve-read.js';
+import { loadReads, loadReleased, type StoredRead } from './load-reads.js';
 
-/** Some of the queue, ready to fold: whole batches in the order they were taken in. */
+/** The queue's lanes: what is said now goes before what was said late. */
+export const LIVE = 0;
+export const LATE = 1;
+export type Lane = typeof LIVE | typeof LATE;
+
+/** Some of one lane of the queue, ready to fold: whole batches in the order they were taken in. */
 export interface Work {
+  lane: Lane;
   ids: number[];
-  reads: LedgerRead[];
+  reads: StoredRead[];
   /** Read points whose wheel records came in, with the span they bear on (ms). */
   wheels: { readPointId: number; since: number; until: number }[];
+  /** Identities that somebody reported on, with the instants they were seen at (ms). */
+  reports: { compact: string; at: number }[];
   readCount: number;
 }
 
 interface WorkRow {
   id: number;
-  kind: 'reads' | 'wheels';
+  kind: 'reads' | 'wheels' | 'released' | 'reports';
   read_count: number;
   payload: string | null;
-}
-
-interface ReadRow {
-  site_id: number;
-  antenna_no: number;
-  tag: Buffer;
-  read_at: Date;
-  hold_code: string | null;
 }
 
 const MOST_BATCHES = 500;
 
 /**
- * The head of the queue up to about `mostReads` reads (one batch at least), or null when it is
- * empty. Takes no locks: the rows are deleted in the transaction of their effects.
+ * Looks at the head of one lane of the queue, about `mostReads` reads of it (one batch at least);
+ * null when it is empty. Nothing is locked, so ingest never waits: the caller deletes the rows by
+ * `ids` in the transaction of their effects.
  */
-export async function takeWork(pool: Pool, mostReads: number): Promise<Work | null> {
+export async function takeWork(pool: Pool, lane: Lane, mostReads: number): Promise<Work | null> {
   const queue = await pool.query<WorkRow[]>(
-    'SELECT id, kind, read_count, payload FROM work ORDER BY id LIMIT ?',
-    [MOST_BATCHES],
+    'SELECT id, kind, read_count, payload FROM work WHERE lane = ? ORDER BY id LIMIT ?',
+    [lane, MOST_BATCHES],
   );
   const taken: WorkRow[] = [];
   let readCount = 0;
@@ -45,37 +46,40 @@ export async function takeWork(pool: Pool, mostReads: number): Promise<Work | nu
     readCount += row.read_count;
   }
   if (taken.length === 0) return null;
-  const batches = taken.filter((row) => row.kind === 'reads').map((row) => row.id);
-  const wheels = taken.filter((row) => row.kind === 'wheels').map(wheelSpan);
+  const ofKind = (kind: WorkRow['kind']) => taken.filter((row) => row.kind === kind);
+  const batches = ofKind('reads').map((row) => row.id);
+  const released = ofKind('released').flatMap(({ payload }) => parse<Released>(payload).reads);
   return {
+    lane,
     ids: taken.map((row) => row.id),
-    reads: await loadReads(pool, batches),
-    wheels,
+    reads: [...(await loadReads(pool, batches)), ...(await loadReleased(pool, released))],
+    wheels: ofKind('wheels').map(wheelSpan),
+    reports: ofKind('reports').flatMap(({ payload }) =>
+      parse<Reported>(payload).units.map(([compact, at]) => ({ compact, at: Date.parse(at) })),
+    ),
     readCount,
   };
 }
 
-async function loadReads(pool: Pool, batches: readonly number[]): Promise<LedgerRead[]> {
-  if (batches.length === 0) return [];
-  const rows = await pool.query<ReadRow[]>(
-    `SELECT site_id, antenna_no, tag, read_at, hold_code FROM \`reads\` WHERE batch_id IN (?)`,
-    [batches],
-  );
-  return rows.map((row) => ({
-    siteId: row.site_id,
-    antenna: row.antenna_no,
-    tag: row.tag.toString(),
-    at: row.read_at.getTime(),
-    holdCode: row.hold_code,
-  }));
+/** Batch, place in it, and time of each read that somebody released. */
+interface Released {
+  reads: [batchId: number, seq: number, readAt: string][];
 }
 
-function wheelSpan(row: WorkRow): Work['wheels'][number] {
-  const { readPointId, startedAt, endedAt } = JSON.parse(row.payload ?? '{}') as {
+interface Reported {
+  units: [compact: string, at: string][];
+}
+
+function parse<T>(payload: string | null): T {
+  return JSON.parse(payload ?? '{}') as T;
+}
+
+function wheelSpan({ payload }: WorkRow): Work['wheels'][number] {
+  const { readPointId, startedAt, endedAt } = parse<{
     readPointId: number;
     startedAt: string;
     endedAt: string;
-  };
+  }>(payload);
   const since = Date.parse(startedAt) - WHEEL_REACH_MS;
   return { readPointId, since, until: Date.parse(endedAt) + WHEEL_REACH_MS };
 }

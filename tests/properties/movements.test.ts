@@ -5,7 +5,13 @@ import { foldHistory } from '../../server/domain/movements/fold-history.js';
 import { nothingKnown } from '../../server/domain/movements/fold-state.js';
 import type { Sighting } from '../../server/domain/movements/fold-unit.js';
 import { historyOf, type History, type Ledger } from '../../server/domain/movements/history-of.js';
-import { formPasses } from '../../server/domain/movements/passes.js';
+import { pointRules } from '../../server/domain/movements/passages.js';
+import {
+  formPasses,
+  isUndirected,
+  withHistory,
+  type Pass,
+} from '../../server/domain/movements/passes.js';
 import type { LedgerRead } from '../../server/domain/movements/resolve-read.js';
 import { mergeVisits, visitsOf } from '../../server/domain/movements/visits.js';
 import { dumpOf, rowsOf } from '../support/dump-history.js';
@@ -202,13 +208,14 @@ describe('what the running projections build on', () => {
         const network = new Network(world.configuration);
         for (const [readPointId, passes] of historyOf(ledger, world.configuration).passes) {
           const wheels = ledger.wheels.filter((record) => record.readPointId === readPointId);
-          const rules = { network, point: network.readPoint(readPointId), wheels };
+          const rules = pointRules(network, network.readPoint(readPointId), wheels);
           const passages = passes.map(({ members }) => members.map(({ passage }) => passage));
           passes.forEach(({ cleanStart, reversal }, index) => {
             if (!cleanStart) return;
             starts += 1;
             const again = formPasses(rules, passages.slice(index).flat(), { reversal });
-            expect(again).toEqual(passes.slice(index));
+            // What history adds to them it tells from other read points.
+            expect(again).toEqual(passes.slice(index).map(withoutHistory));
           });
         }
       }),
@@ -245,3 +252,7 @@ describe('what the running projections build on', () => {
     expect(checked).toBeGreaterThan(1000);
   });
 });
+
+function withoutHistory(pass: Pass): Pass {
+  return isUndirected(pass) ? withHistory(pass, null) : pass;
+}

@@ -14,7 +14,7 @@ const HOUR_MS = 60 * MINUTE_MS;
  */
 export function disorderedCase(seed: number, least: number) {
   const random = new SeededRandom(seed);
-  const { configuration, points } = oddNetwork(random);
+  const { configuration, points, besides } = oddNetwork(random);
   const units = oddUnits();
   const reads: LedgerRead[] = [];
   const wheels: Ledger['wheels'][number][] = [];
@@ -26,8 +26,13 @@ export function disorderedCase(seed: number, least: number) {
     const cut = train.slice(0, random.whole(1, train.length));
     const direction = random.chance(0.5) ? 1 : -1;
     const startedAt = time;
+    const beside = random.chance(0.5) ? besides.get(point) : undefined;
     for (const unit of cut) {
       reads.push(...goBy(random, point, unit, direction, time));
+      if (beside && random.chance(0.6)) {
+        const later = time + random.whole(-35_000, 35_000);
+        reads.push(...goBy(random, beside, unit, direction, later).slice(0, random.whole(1, 9)));
+      }
       time += random.chance(0.3) ? 0 : random.whole(200, 9_000);
       if (random.chance(0.05)) time += gap(random);
     }
@@ -55,16 +60,27 @@ function gap(random: SeededRandom): number {
 function oddNetwork(random: SeededRandom) {
   const network = new NetworkBuilder();
   const kinds: Equipped[] = ['offsets', 'sensors', 'single'];
-  const yardA = network.site('QA');
+  const leads = [
+    { name: 'North lead', equipped: true },
+    { name: 'South lead', equipped: random.chance(0.5) },
+  ];
+  const yardA = network.site('QA', { leads });
   const line = network.site('QL', { kind: 'line' });
   const yardB = network.site('QB', { returnHours: 1 });
   const plant = network.site('QP', { kind: 'industry' });
   network.route(yardA, line, 40_000).route(line, yardB, 60_000).route(yardB, plant, 2_000);
   network.route(yardA, yardB, 104_000);
   const points: BuiltPoint[] = [
-    network.readPoint(yardA, random.pick(kinds), { decreasingPlace: at(yardA) }),
-    network.readPoint(line, random.pick(kinds)),
-    network.readPoint(yardB, random.pick(kinds), { increasingPlace: at(yardB) }),
+    network.readPoint(yardA, random.pick(kinds), {
+      decreasingPlace: at(yardA),
+      increasingNodes: [line, yardB],
+    }),
+    network.readPoint(line, random.pick(kinds), {
+      decreasingNodes: [yardA],
+      increasingNodes: [yardB],
+    }),
+    network.readPoint(yardB, random.pick(kinds), { increasingPlace: at(yardB), track: '1' }),
+    network.readPoint(yardB, random.pick(kinds), { increasingPlace: at(yardB), track: '2' }),
     network.readPoint(yardB, random.pick(kinds), {
       decreasingPlace: at(yardB),
       increasingPlace: at(plant),
@@ -76,7 +92,12 @@ function oddNetwork(random: SeededRandom) {
     network.readPoint(plant, 'single', { kind: 'spot', increasingPlace: at(plant, 'dock') }),
   ];
   for (const number of [1, 2, 3]) network.register(`QTKX${number}`, 'car');
-  return { configuration: network.build(), points };
+  const [, , first, second] = points as [BuiltPoint, BuiltPoint, BuiltPoint, BuiltPoint];
+  const besides = new Map([
+    [first, second],
+    [second, first],
+  ]);
+  return { configuration: network.build(), points, besides };
 }
 
 /** Tags by unit: cars (three registered), an engine, an end-of-train device, a box, plain texts. */

@@ -18,13 +18,15 @@ export async function dumpDatabase(db: Database, configuration: Configuration): 
     {
       passages: (await select<PassageRow>('passages')).map((row) => ({
         readPointId: row.read_point_id,
-        passStartedAt: row.pass_started_at.getTime(),
+        passStartedAt: row.pass_started_at?.getTime() ?? null,
         passOrdinal: row.pass_ordinal,
         unit: row.unit_id,
         firstAt: row.first_at.getTime(),
         lastAt: row.last_at.getTime(),
         readCount: row.read_count,
         role: row.role,
+        stray: row.stray,
+        tagCount: row.tag_count,
         direction: known(row.direction),
         basis: row.direction_basis,
         speedKmh: row.speed_kmh,

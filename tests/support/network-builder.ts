@@ -53,7 +53,15 @@ export class NetworkBuilder {
   /** Adds a site with a node of the same id on the route graph, and returns that id. */
   site(code: string, options: Partial<Omit<SiteConfiguration, 'id' | 'code'>> = {}): number {
     const id = this.sites.length + 1;
-    this.sites.push({ id, code, kind: 'yard', returnHours: 12, dwellLimitHours: 48, ...options });
+    this.sites.push({
+      id,
+      code,
+      kind: 'yard',
+      returnHours: 12,
+      dwellLimitHours: 48,
+      leads: [],
+      ...options,
+    });
     this.routeNodes.push({ id, siteId: id });
     return id;
   }
@@ -69,6 +77,8 @@ export class NetworkBuilder {
       passGapSeconds: 180,
       visitGapSeconds: 60,
       drillMinutes: 60,
+      decreasingNodes: [],
+      increasingNodes: [],
     };
     this.readPoints.push({ id, siteId, code: `P${id}`, ...defaults, ...options });
     const taken = this.antennas.filter((antenna) => antenna.siteId === siteId).length;

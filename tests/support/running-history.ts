@@ -4,6 +4,7 @@ import {
   type Configuration,
   type UnitRef,
 } from '../../server/domain/movements/configuration.js';
+import { directPasses } from '../../server/domain/movements/direct-passes.js';
 import type { UsableRead } from '../../server/domain/movements/evidence.js';
 import { foldHistory, type UnitHistory } from '../../server/domain/movements/fold-history.js';
 import { changeableFrom, nothingKnown } from '../../server/domain/movements/fold-state.js';
@@ -16,13 +17,30 @@ import {
   type UnitSighting,
 } from '../../server/domain/movements/history-of.js';
 import { WHEEL_REACH_MS } from '../../server/domain/movements/own-direction.js';
-import { hasSeveralOffsets } from '../../server/domain/movements/passages.js';
+import {
+  hasSeveralOffsets,
+  pointRules,
+  type Passage,
+} from '../../server/domain/movements/passages.js';
 import type { Pass } from '../../server/domain/movements/passes.js';
-import { refoldPoint } from '../../server/domain/movements/refold-point.js';
+import {
+  reachOfChange,
+  refoldPoint,
+  withFresh,
+  type StrayPassage,
+} from '../../server/domain/movements/refold-point.js';
 import { resolveRead } from '../../server/domain/movements/resolve-read.js';
+import { ALONE_MS, BESIDE_MS, PARALLEL_MS } from '../../server/domain/movements/strays.js';
 import { visitsOf, type Visit } from '../../server/domain/movements/visits.js';
 
 type Wheel = Ledger['wheels'][number];
+
+interface Facts {
+  visits: Visit[];
+  units: Set<UnitRef>;
+  since: number;
+  until: number;
+}
 
 /**
  * History kept up portion by portion in memory, with the stretches of read points and the
@@ -31,6 +49,7 @@ type Wheel = Ledger['wheels'][number];
 export class RunningHistory {
   private readonly network: Network;
   private readonly passes = new Map<number, Pass[]>();
+  private readonly strays = new Map<number, StrayPassage[]>();
   private readonly wheels: Wheel[] = [];
   private readonly units = new Map<UnitRef, UnitHistory>();
 
@@ -39,37 +58,53 @@ export class RunningHistory {
   }
 
   get history(): History {
-    return { passes: this.passes, units: this.units };
+    return { passes: this.passes, strays: this.strays, units: this.units };
   }
 
   /** Takes in a portion of the ledger in which nothing has been before. */
   take(portion: Ledger): void {
     this.wheels.push(...portion.wheels);
-    const dirty = new Map<UnitRef, number>();
+    const before = this.members();
+    const facts = new Map<number, Facts>();
     for (const readPointId of this.network.readPoints.keys()) {
-      this.foldPoint(readPointId, portion, dirty);
+      const own = this.factsOf(readPointId, portion);
+      if (own) facts.set(readPointId, own);
     }
-    for (const [unit, from] of dirty) this.foldUnit(unit, from);
+    for (const [readPointId, own] of facts) this.foldPoint(readPointId, own);
+    for (const [readPointId, own] of facts) {
+      for (const { id } of this.network.parallelTo(readPointId)) {
+        const [since, until] = [own.since - PARALLEL_MS, own.until + PARALLEL_MS];
+        this.foldPoint(id, { ...own, visits: [], since, until });
+      }
+    }
+    directPasses(this.network, this.passes);
+    for (const [unit, from] of differences(before, this.members())) this.foldUnit(unit, from);
   }
 
-  private foldPoint(readPointId: number, portion: Ledger, dirty: Map<UnitRef, number>): void {
-    const point = this.network.readPoint(readPointId);
+  private factsOf(readPointId: number, portion: Ledger): Facts | null {
     const reads = this.usableReads(readPointId, portion);
     const records = portion.wheels.filter((record) => record.readPointId === readPointId);
-    const since = Math.min(
-      ...[...reads.values()].flat().map((read) => read.at),
-      ...records.map((record) => record.startedAt - WHEEL_REACH_MS),
-    );
-    const until = Math.max(
-      ...[...reads.values()].flat().map((read) => read.at),
-      ...records.map((record) => record.endedAt + WHEEL_REACH_MS),
-    );
-    if (since === Infinity) return;
+    const times = [...reads.values()].flat().map((read) => read.at);
+    const since = Math.min(...times, ...records.map((one) => one.startedAt - WHEEL_REACH_MS));
+    const until = Math.max(...times, ...records.map((one) => one.endedAt + WHEEL_REACH_MS));
+    if (since === Infinity) return null;
+    const gapMs = this.network.readPoint(readPointId).visitGapSeconds * 1000;
+    const visits = [...reads].flatMap(([unit, own]) => visitsOf(unit, own, gapMs));
+    return { visits, units: new Set(reads.keys()), since, until };
+  }
+
+  private foldPoint(readPointId: number, facts: Facts): void {
+    const point = this.network.readPoint(readPointId);
     const gapMs = point.visitGapSeconds * 1000;
     const stored = this.passes.get(readPointId) ?? [];
-    const members = stored.flatMap((pass) => pass.members.map(({ passage }) => passage));
-    const touching = members.filter((p) => p.lastAt >= since - gapMs && p.first.at < since);
-    const before = members.filter(
+    const strays = this.strays.get(readPointId) ?? [];
+    const crossing = stored.flatMap((pass) => pass.members.map(({ passage }) => passage));
+    const all = [...crossing, ...strays.map(({ passage }) => passage)];
+    const reach = reachOfChange({ point }, facts, touchedBy(facts, all, gapMs));
+    const { since } = reach;
+    const reachMs = Math.max(gapMs, ALONE_MS);
+    const touching = all.filter((p) => p.lastAt >= since - reachMs && p.first.at < since);
+    const before = crossing.filter(
       (p) => p.first.at < since && p.first.at >= since - LONGEST_STOP_MS,
     );
     const earliest = Math.min(
@@ -78,30 +113,59 @@ export class RunningHistory {
       ...(hasSeveralOffsets(this.network, point) ? before.slice(-1).map((p) => p.first.at) : []),
     );
     const from = stored.findLastIndex((pass) => pass.cleanStart && pass.startedAt < earliest);
+    const start = stored[from]?.startedAt ?? -Infinity;
     const stretch = stored.slice(Math.max(from, 0));
-    const visits = stretch.flatMap((pass) =>
-      pass.members.flatMap(({ passage }) =>
-        passage.visits.map((evidence): Visit => ({ unit: passage.unit, evidence })),
-      ),
-    );
-    const fresh = [...reads].flatMap(([unit, own]) => visitsOf(unit, own, gapMs));
+    const inStretch = all.filter((p) => p.first.at >= start);
+    const here = visitsIn(crossing.concat(besideOf(strays)).filter((p) => p.first.at < start));
+    const parallel = this.network
+      .parallelTo(readPointId)
+      .flatMap(({ id }) => visitsIn(this.passagesAt(id)));
     const wheels = this.wheels.filter((record) => record.readPointId === readPointId);
-    const { passes, settledAt } = refoldPoint(
-      { network: this.network, point, wheels },
-      { from: stored[from] ?? null, visits, fresh, changedUntil: until, starts: stretch },
-    );
+    const refolded = refoldPoint(pointRules(this.network, point, wheels), {
+      from: stored[from] ?? null,
+      visits: withFresh(visitsIn(inStretch), facts.visits, gapMs),
+      around: { here, parallel },
+      changedUntil: reach.until,
+      starts: stretch,
+    });
+    const { passes, settledAt } = refolded;
     const kept = settledAt
       ? stretch.findIndex((pass) => pass.startedAt === settledAt.startedAt)
       : stretch.length;
-    const replaced = stretch.slice(0, kept);
     this.passes.set(readPointId, [
       ...stored.slice(0, Math.max(from, 0)),
       ...passes,
       ...stretch.slice(kept),
     ]);
-    for (const { passage } of [...replaced, ...passes].flatMap((pass) => pass.members)) {
-      dirty.set(passage.unit, Math.min(dirty.get(passage.unit) ?? Infinity, passage.first.at));
+    const end = settledAt?.startedAt ?? Infinity;
+    this.strays.set(readPointId, [
+      ...strays.filter(({ passage: { first } }) => first.at < start || first.at >= end),
+      ...refolded.strays,
+    ]);
+  }
+
+  private passagesAt(readPointId: number): Passage[] {
+    const passes = this.passes.get(readPointId) ?? [];
+    const strays = this.strays.get(readPointId) ?? [];
+    return [
+      ...passes.flatMap((pass) => pass.members.map(({ passage }) => passage)),
+      ...strays.map(({ passage }) => passage),
+    ];
+  }
+
+  /** Every passage with what its unit's history takes from it. */
+  private members(): Map<string, { unit: UnitRef; at: number; value: string }> {
+    const members = new Map<string, { unit: UnitRef; at: number; value: string }>();
+    for (const [readPointId, passes] of this.passes) {
+      for (const { startedAt, ordinal, members: own } of passes) {
+        for (const { passage, role, direction } of own) {
+          const { unit, first, lastAt, tagCount } = passage;
+          const value = [startedAt, ordinal, role, direction, lastAt, tagCount].join(' ');
+          members.set(`${readPointId} ${unit} ${first.at}`, { unit, at: first.at, value });
+        }
+      }
     }
+    return members;
   }
 
   private usableReads(readPointId: number, portion: Ledger): Map<UnitRef, UsableRead[]> {
@@ -168,4 +232,42 @@ export class RunningHistory {
       .filter((sighting) => sighting.unit === unit)
       .sort(compareSightings);
   }
+}
+
+function visitsIn(passages: readonly Passage[]): Visit[] {
+  return passages.flatMap(({ unit, visits }) => visits.map((evidence) => ({ unit, evidence })));
+}
+
+function besideOf(strays: readonly StrayPassage[]): Passage[] {
+  return strays.flatMap(({ passage, reason }) => (reason === 'beside' ? [passage] : []));
+}
+
+/** Stored passages of the units concerned that are near enough to come out otherwise. */
+function touchedBy({ units, since, until }: Facts, all: readonly Passage[], gapMs: number) {
+  const spans = all
+    .filter(({ unit }) => units.has(unit))
+    .map(({ first, lastAt }) => ({ firstAt: first.at, lastAt }));
+  const within = (from: number, to: number) =>
+    spans.filter(({ firstAt, lastAt }) => lastAt >= from && firstAt <= to);
+  const joined = within(since - gapMs, until + gapMs);
+  const first = Math.min(since, ...joined.map(({ firstAt }) => firstAt));
+  const last = Math.max(until, ...joined.map(({ lastAt }) => lastAt));
+  return within(first - BESIDE_MS, last + BESIDE_MS);
+}
+
+type Members = Map<string, { unit: UnitRef; at: number; value: string }>;
+
+/** Units whose passages differ, and the earliest difference of each. */
+function differences(before: Members, after: Members): Map<UnitRef, number> {
+  const dirty = new Map<UnitRef, number>();
+  for (const [one, other] of [
+    [before, after],
+    [after, before],
+  ] as const) {
+    for (const [key, { unit, at, value }] of one) {
+      if (other.get(key)?.value === value) continue;
+      dirty.set(unit, Math.min(dirty.get(unit) ?? Infinity, at));
+    }
+  }
+  return dirty;
 }

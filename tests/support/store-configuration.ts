@@ -23,6 +23,7 @@ export async function storeConfiguration(db: Database, network: Configuration): 
         time_zone: 'America/Chicago',
         return_hours: site.returnHours,
         dwell_limit_hours: site.dwellLimitHours,
+        leads: JSON.stringify(site.leads),
       })),
     );
     await insert(
@@ -41,6 +42,10 @@ export async function storeConfiguration(db: Database, network: Configuration): 
         pass_gap_seconds: point.passGapSeconds,
         visit_gap_seconds: point.visitGapSeconds,
         drill_minutes: point.drillMinutes,
+        toward: JSON.stringify({
+          decreasing: point.decreasingNodes.map((id) => `N${id}`),
+          increasing: point.increasingNodes.map((id) => `N${id}`),
+        }),
       })),
     );
     await insert(

@@ -24,6 +24,8 @@ export function tagOf(unit: string, side: 'left' | 'right' = 'left'): string {
   return encodeAei({ groupCode: GROUP_OF_MARK[initial] ?? 19, initial, number, side });
 }
 
+export const STOOD_MS = 61_000;
+
 /** What readers and wheel sensors said, put down one report at a time. */
 export class Trackside {
   readonly ledger: Ledger & { reads: LedgerRead[]; wheels: Ledger['wheels'][number][] } = {
@@ -38,6 +40,15 @@ export class Trackside {
     const { siteId, number } = point.antennas[antenna] as BuiltPoint['antennas'][number];
     const tag = tagOf(unit, side);
     this.ledger.reads.push({ siteId, antenna: number, tag, at: time(clock), holdCode: null });
+    return this;
+  }
+
+  /** The unit stands in the beam of the first antenna from `clock` on for STOOD_MS: presence. */
+  stand(point: BuiltPoint, unit: string, clock: string): this {
+    for (const later of [0, 45_000, STOOD_MS]) {
+      const instant = new Date(time(clock) + later).toISOString().slice(8, 23);
+      this.read(point, 0, unit, instant);
+    }
     return this;
   }
 

@@ -38,9 +38,18 @@ export function twoYards(equipped: Equipped): TwoYards {
   const yardB = network.site('QB');
   const plant = network.site('QP', { kind: 'industry' });
   network.route(yardA, lineSite, 40_000).route(lineSite, yardB, 60_000).route(yardB, plant, 2_000);
-  const leadA = network.readPoint(yardA, equipped, { decreasingPlace: at(yardA) });
-  const line = network.readPoint(lineSite, equipped);
-  const leadB = network.readPoint(yardB, equipped, { increasingPlace: at(yardB) });
+  const leadA = network.readPoint(yardA, equipped, {
+    decreasingPlace: at(yardA),
+    increasingNodes: [lineSite],
+  });
+  const line = network.readPoint(lineSite, equipped, {
+    decreasingNodes: [yardA],
+    increasingNodes: [yardB],
+  });
+  const leadB = network.readPoint(yardB, equipped, {
+    increasingPlace: at(yardB),
+    decreasingNodes: [lineSite],
+  });
   const gate = network.readPoint(yardB, equipped, {
     decreasingPlace: at(yardB),
     increasingPlace: at(plant),

@@ -5,13 +5,16 @@ import type { LastSeen } from './last-seen.js';
 /** One passage as history shows it. */
 export interface DumpedPassage {
   readPointId: number;
-  passStartedAt: number;
-  passOrdinal: number;
+  /** Null for a stray, which is in no pass. */
+  passStartedAt: number | null;
+  passOrdinal: number | null;
   unit: UnitRef;
   firstAt: number;
   lastAt: number;
   readCount: number;
+  tagCount: number;
   role: string;
+  stray: string | null;
   direction: string | null;
   basis: string | null;
   speedKmh: number | null;

@@ -9,6 +9,11 @@ export type Direction = 'increasing' | 'decreasing';
 /** Where a crossing leads: a site (with track where known), or null for the open line. */
 export type Place = { siteId: number; track: string | null } | null;
 
+/** The site of a place; null for the open line. */
+export function siteOfPlace(place: Place): number | null {
+  return place?.siteId ?? null;
+}
+
 export interface SiteConfiguration {
   id: number;
   code: string;
@@ -16,6 +21,14 @@ export interface SiteConfiguration {
   /** A unit that goes out to the line and is back within this has only been switched. */
   returnHours: number;
   dwellLimitHours: number;
+  /** The tracks by which it is entered or left, as far as somebody listed them. */
+  leads: readonly SiteLead[];
+}
+
+/** A lead that is not equipped lets cars in and out unseen. */
+export interface SiteLead {
+  name: string;
+  equipped: boolean;
 }
 
 export interface ReadPointConfiguration {
@@ -29,6 +42,9 @@ export interface ReadPointConfiguration {
   passGapSeconds: number;
   visitGapSeconds: number;
   drillMinutes: number;
+  /** Nodes of the route graph next on the line, on the side where the open line is. */
+  decreasingNodes: readonly number[];
+  increasingNodes: readonly number[];
 }
 
 export interface AntennaConfiguration {
@@ -82,6 +98,8 @@ export class Network {
   readonly routes: RouteGraph;
   private readonly antennas = new Map<number, AntennaConfiguration>();
   private readonly offsets = new Map<number, Set<number>>();
+  private readonly antennaCounts = new Map<number, number>();
+  private readonly parallels = new Map<number, ReadPointConfiguration[]>();
   private readonly units: ReadonlyMap<UnitRef, UnitConfiguration>;
   private readonly tags: ReadonlyMap<string, Naming[]>;
   private readonly identities: Map<string, Naming[]>;
@@ -93,6 +111,12 @@ export class Network {
       this.antennas.set(antennaKey(antenna.siteId, antenna.number), antenna);
       const offsets = this.offsets.get(antenna.readPointId) ?? new Set();
       this.offsets.set(antenna.readPointId, offsets.add(antenna.offsetM));
+      const count = this.antennaCounts.get(antenna.readPointId) ?? 0;
+      this.antennaCounts.set(antenna.readPointId, count + 1);
+    }
+    for (const point of configuration.readPoints) {
+      const beside = configuration.readPoints.filter((other) => areParallel(point, other));
+      if (beside.length) this.parallels.set(point.id, beside);
     }
     this.units = new Map(configuration.units.map((unit) => [unit.unit, unit]));
     this.tags = byValue(configuration.tags);
@@ -123,6 +147,15 @@ export class Network {
     return this.offsets.get(readPointId)?.size ?? 0;
   }
 
+  antennaCountOf(readPointId: number): number {
+    return this.antennaCounts.get(readPointId) ?? 0;
+  }
+
+  /** Read points of the same site between the same two places on another track. */
+  parallelTo(readPointId: number): readonly ReadPointConfiguration[] {
+    return this.parallels.get(readPointId) ?? [];
+  }
+
   /** The unit a registered tag names at `at` (ms), or undefined. */
   unitOfTag(value: string, at: number): UnitRef | undefined {
     return holderAt(this.tags.get(value), at);
@@ -143,6 +176,18 @@ export class Network {
     if (known) known.push(naming);
     else this.identities.set(naming.value, [naming]);
   }
+}
+
+function areParallel(a: ReadPointConfiguration, b: ReadPointConfiguration): boolean {
+  return (
+    a.id !== b.id &&
+    a.siteId === b.siteId &&
+    a.kind === 'line' &&
+    b.kind === 'line' &&
+    a.track !== b.track &&
+    a.decreasingPlace?.siteId === b.decreasingPlace?.siteId &&
+    a.increasingPlace?.siteId === b.increasingPlace?.siteId
+  );
 }
 
 function antennaKey(siteId: number, number: number): number {

@@ -5,15 +5,17 @@ import {
   type ReadPointConfiguration,
   type UnitRef,
 } from './configuration.js';
+import { directPasses } from './direct-passes.js';
 import { compareText, type UsableRead } from './evidence.js';
 import { foldHistory, type UnitHistory } from './fold-history.js';
 import { nothingKnown } from './fold-state.js';
 import type { Sighting } from './fold-unit.js';
 import type { WheelRecord } from './own-direction.js';
-import { joinVisits } from './passages.js';
-import { formPasses, type Pass } from './passes.js';
+import { pointRules } from './passages.js';
+import type { Pass } from './passes.js';
+import { foldVisits, type StrayPassage } from './refold-point.js';
 import { resolveRead, type LedgerRead } from './resolve-read.js';
-import { visitsOf } from './visits.js';
+import { visitsOf, type Visit } from './visits.js';
 
 /** Everything that was ever reported, in any order, repeats included. */
 export interface Ledger {
@@ -24,6 +26,7 @@ export interface Ledger {
 /** What the ledger means under one configuration. */
 export interface History {
   passes: Map<number, Pass[]>;
+  strays: Map<number, StrayPassage[]>;
   units: Map<UnitRef, UnitHistory>;
 }
 
@@ -33,17 +36,12 @@ export interface History {
  */
 export function historyOf(ledger: Ledger, configuration: Configuration): History {
   const network = new Network(configuration);
-  const passes = new Map<number, Pass[]>();
+  const { passes, strays } = passesOf(network, ledger);
+  directPasses(network, passes);
   const sightings = new Map<UnitRef, UnitSighting[]>();
-  for (const [readPointId, units] of readsByPoint(network, ledger.reads)) {
+  for (const [readPointId, ofPoint] of passes) {
     const point = network.readPoint(readPointId);
-    const wheels = ledger.wheels.filter((record) => record.readPointId === readPointId);
-    const rules = { network, point, wheels };
-    const gapMs = point.visitGapSeconds * 1000;
-    const visits = [...units].flatMap(([unit, reads]) => visitsOf(unit, reads, gapMs));
-    const formed = formPasses(rules, joinVisits(rules, visits));
-    passes.set(readPointId, formed);
-    for (const sighting of formed.flatMap((pass) => sightingsOf(network, point, pass))) {
+    for (const sighting of ofPoint.flatMap((pass) => sightingsOf(network, point, pass))) {
       const known = sightings.get(sighting.unit);
       if (known) known.push(sighting);
       else sightings.set(sighting.unit, [sighting]);
@@ -56,7 +54,28 @@ export function historyOf(ledger: Ledger, configuration: Configuration): History
     const folded = { kind: kindOfUnit(own), registered };
     units.set(unit, foldHistory(network, folded, nothingKnown(), own));
   }
-  return { passes, units };
+  return { passes, strays, units };
+}
+
+/** Passes and strays of each read point, directions as far as their own reads tell them. */
+function passesOf(network: Network, ledger: Ledger): Pick<History, 'passes' | 'strays'> {
+  const visits = new Map<number, Visit[]>();
+  for (const [readPointId, units] of readsByPoint(network, ledger.reads)) {
+    const gapMs = network.readPoint(readPointId).visitGapSeconds * 1000;
+    const own = [...units].flatMap(([unit, reads]) => visitsOf(unit, reads, gapMs));
+    visits.set(readPointId, own);
+  }
+  const passes = new Map<number, Pass[]>();
+  const strays = new Map<number, StrayPassage[]>();
+  for (const [readPointId, own] of visits) {
+    const wheels = ledger.wheels.filter((record) => record.readPointId === readPointId);
+    const rules = pointRules(network, network.readPoint(readPointId), wheels);
+    const beside = network.parallelTo(readPointId).flatMap(({ id }) => visits.get(id) ?? []);
+    const formed = foldVisits(rules, own, { here: [], parallel: beside });
+    passes.set(readPointId, formed.passes);
+    strays.set(readPointId, formed.strays);
+  }
+  return { passes, strays };
 }
 
 /** A sighting with what orders it among the unit's others. */

@@ -32,6 +32,8 @@ export interface Passage {
   first: UsableRead;
   lastAt: number;
   readCount: number;
+  /** Different tags among its reads: two are hardly ever on the wrong car together. */
+  tagCount: number;
   own: OwnMovement;
 }
 
@@ -39,8 +41,17 @@ export interface Passage {
 export interface PointRules {
   network: Network;
   point: ReadPointConfiguration;
-  /** Wheel records of this read point near the visits, in any order. */
+  /** Wheel records of this read point near the visits, by `startedAt`. */
   wheels: readonly WheelRecord[];
+}
+
+/** The rules of a read point over wheel records in any order. */
+export function pointRules(
+  network: Network,
+  point: ReadPointConfiguration,
+  wheels: readonly WheelRecord[],
+): PointRules {
+  return { network, point, wheels: [...wheels].sort((a, b) => a.startedAt - b.startedAt) };
 }
 
 /**
@@ -48,16 +59,14 @@ export interface PointRules {
  * between which no other unit came are one passage where it may have stopped between the antennas.
  */
 export function joinVisits(rules: PointRules, visits: readonly Visit[]): Passage[] {
-  const wheels = [...rules.wheels].sort((a, b) => a.startedAt - b.startedAt);
-  const ordered = { ...rules, wheels };
   const severalOffsets = hasSeveralOffsets(rules.network, rules.point);
   const passages: Passage[] = [];
   for (const visit of [...visits].sort(compareVisits)) {
-    const passage = describe(ordered, visit.unit, [visit.evidence]);
+    const passage = describePassage(rules, visit.unit, [visit.evidence]);
     const before = passages.at(-1);
     if (severalOffsets && before && stoppedBetween(before, passage)) {
       const joined = [...before.visits, visit.evidence];
-      passages[passages.length - 1] = describe(ordered, visit.unit, joined);
+      passages[passages.length - 1] = describePassage(rules, visit.unit, joined);
     } else {
       passages.push(passage);
     }
@@ -78,7 +87,8 @@ function stoppedBetween(before: Passage, after: Passage): boolean {
   );
 }
 
-function describe(
+/** A unit's visits (in order) as one passage, with what it says by itself. */
+export function describePassage(
   { network, point, wheels }: PointRules,
   unit: UnitRef,
   visits: Evidence[],
@@ -92,7 +102,9 @@ function describe(
   const isEndOfTrain = kind === 'endOfTrain';
   const own = ownMovement(visits, span, antennaOf, wheels, { isEndOfTrain, severalOffsets });
   const readCount = visits.reduce((sum, visit) => sum + readCountOf(visit), 0);
-  return { unit, kind, kindRank, visits, first, lastAt, readCount, own };
+  const tags = new Set(visits.flatMap(groupsOf).map(({ tag }) => tag));
+  const tagCount = Math.min(tags.size, 255);
+  return { unit, kind, kindRank, visits, first, lastAt, readCount, tagCount, own };
 }
 
 export const REGISTER_RANK = -1;

@@ -5,11 +5,14 @@ import { hasSeveralOffsets, type Passage, type PointRules } from './passages.js'
 /** What a passage is in its pass. */
 export type PassageRole = 'crossing' | 'presence' | 'returned';
 
+/** How a direction is known; from where the units were before and after where nothing else tells. */
+export type DirectionBasis = 'sensors' | 'antennas' | 'history';
+
 export interface PassMember {
   passage: Passage;
   role: PassageRole;
   direction: Direction | null;
-  basis: 'sensors' | 'antennas' | null;
+  basis: DirectionBasis | null;
 }
 
 /** A train or cut going by a read point: consecutive passages, each unit once. */
@@ -19,7 +22,7 @@ export interface Pass {
   ordinal: number;
   endedAt: number;
   direction: Direction | null;
-  basis: 'sensors' | 'antennas' | null;
+  basis: DirectionBasis | null;
   speedKmh: number | null;
   /** It began because the train before it turned back. */
   reversal: boolean;
@@ -36,7 +39,8 @@ interface Draft {
   cleanStart: boolean;
 }
 
-const STANDING_MS = 60_000;
+/** A passage without direction that lasts longer is a car that stands. */
+export const STANDING_MS = 60_000;
 const SLOW_KMH = 8;
 const AFTER_END_OF_TRAIN_MS = 20_000;
 const BEFORE_LOCOMOTIVE_MS = 60_000;
@@ -168,6 +172,24 @@ function finish(rules: PointRules, drafts: readonly Draft[], draft: Draft, index
     : new Set<Passage>();
   const members = passages.map((passage) => memberOf(pass, passage, besideCut.has(passage)));
   return { ...pass, members };
+}
+
+/**
+ * A pass of which its own reads tell no direction, with the one that history tells (null: none).
+ * Whoever did not turn back went with it.
+ */
+export function withHistory(pass: Pass, direction: Direction | null): Pass {
+  const basis = direction && 'history';
+  const members = pass.members.map((member): PassMember => {
+    if (member.role === 'returned') return member;
+    return { ...member, role: direction ? 'crossing' : 'presence', direction, basis };
+  });
+  return { ...pass, direction, basis, members };
+}
+
+/** Nothing that was read of the pass itself tells its direction. */
+export function isUndirected({ basis }: Pick<Pass, 'basis'>): boolean {
+  return basis === null || basis === 'history';
 }
 
 function directionOf(passages: readonly Passage[]): Pick<Pass, 'direction' | 'basis'> {

@@ -60,6 +60,23 @@ export class RouteGraph {
     return route;
   }
 
+  /** The node of a site; undefined when it is off the graph. */
+  nodeOf(siteId: number): number | undefined {
+    return this.nodeOfSite.get(siteId);
+  }
+
+  /** Metres of the shortest way between two nodes without the edges that join an `a` and a `b`. */
+  metresAvoiding(
+    from: number,
+    to: number,
+    { a, b }: { a: readonly number[]; b: readonly number[] },
+  ): number | null {
+    const isCut = (edge: RouteEdge) =>
+      (a.includes(edge.from) && b.includes(edge.to)) ||
+      (a.includes(edge.to) && b.includes(edge.from));
+    return this.shortest(from, to, isCut)?.metres ?? null;
+  }
+
   private addStep(node: number, step: Step): void {
     const steps = this.steps.get(node);
     if (steps) steps.push(step);
@@ -70,17 +87,17 @@ export class RouteGraph {
     const from = this.nodeOfSite.get(siteA);
     const to = this.nodeOfSite.get(siteB);
     if (from === undefined || to === undefined) return null;
-    const best = this.shortest(from, to, null);
+    const best = this.shortest(from, to, () => false);
     if (!best) return null;
     const railMetres = best.edges.reduce((sum, e) => sum + (e.kind === 'rail' ? e.metres : 0), 0);
     const estimated = best.edges.some((edge) => {
-      const other = this.shortest(from, to, edge);
+      const other = this.shortest(from, to, (one) => one === edge);
       return other !== null && other.metres <= best.metres * SAME_LENGTH;
     });
     return { railMetres, estimated };
   }
 
-  private shortest(from: number, to: number, without: RouteEdge | null): Path | null {
+  private shortest(from: number, to: number, isCut: (edge: RouteEdge) => boolean): Path | null {
     const best = new Map<number, Path>([[from, { metres: 0, edges: [] }]]);
     const open = new Set([from]);
     for (;;) {
@@ -90,7 +107,7 @@ export class RouteGraph {
       if (node === to) return path;
       open.delete(node);
       for (const { edge, to: next } of this.steps.get(node) ?? []) {
-        if (edge === without) continue;
+        if (isCut(edge)) continue;
         const metres = path.metres + edge.metres;
         if (metres < (best.get(next)?.metres ?? Infinity)) {
           best.set(next, { metres, edges: [...path.edges, edge] });

@@ -32,7 +32,7 @@ describe('over a read point between two sites', () => {
       { departureFinalAt: time('11:00') },
       { arrivalFinalAt: time('11:00') },
     ]);
-    const seenAgain = intoPlant().read(gate, 0, CAR, '10:30');
+    const seenAgain = intoPlant().stand(gate, CAR, '10:30');
     expect(seenAgain.stays(CAR)).toMatchObject([
       { departureFinalAt: null },
       { arrivalFinalAt: null },

@@ -1,5 +1,5 @@
 import { describe, expect, test } from 'vitest';
-import { Trackside, time } from '../../support/trackside.js';
+import { STOOD_MS, Trackside, time } from '../../support/trackside.js';
 import { twoYards } from '../../support/two-yards.js';
 
 const CAR = 'QTKX1';
@@ -45,7 +45,7 @@ describe('a gap of hours is no reversal', () => {
 describe('seen between two other sites', () => {
   test('it is not on hand where it was before', () => {
     const track = new Trackside(world.configuration).cross(world.leadA, CAR, '08:00', 'decreasing');
-    track.read(world.gate, 0, CAR, '16:00').cross(world.leadB, CAR, '20:00', 'increasing');
+    track.stand(world.gate, CAR, '16:00').cross(world.leadB, CAR, '20:00', 'increasing');
     expect(track.stays(CAR)[0]).toMatchObject({
       siteId: world.yardA,
       departureBounds: { earliest: time('08:00'), latest: time('16:00') },
@@ -53,8 +53,8 @@ describe('seen between two other sites', () => {
   });
   test('last seen is not yard A', () => {
     const track = new Trackside(world.configuration).cross(world.leadA, CAR, '08:00', 'decreasing');
-    track.read(world.gate, 0, CAR, '16:00');
-    expect(track.lastSeen(CAR)).toMatchObject({ at: time('16:00'), state: 'enRoute' });
+    track.stand(world.gate, CAR, '16:00');
+    expect(track.lastSeen(CAR)).toMatchObject({ at: time('16:00') + STOOD_MS, state: 'enRoute' });
   });
 });
 
@@ -72,7 +72,7 @@ describe('outward elsewhere with a stay open', () => {
 describe('provisional', () => {
   test('ends when anything later is known', () => {
     const track = new Trackside(world.configuration).cross(world.leadA, CAR, '08:00', 'increasing');
-    track.read(world.gate, 0, CAR, '12:00');
+    track.stand(world.gate, CAR, '12:00');
     expect(track.stays(CAR)).toMatchObject([{ departureFinalAt: null }]);
   });
 });
@@ -105,7 +105,7 @@ describe('leg over a gate seen without direction', () => {
   test('counts the place where it was seen', () => {
     const track = new Trackside(world.configuration)
       .cross(world.leadA, CAR, '08:00', 'increasing')
-      .read(world.gate, 0, CAR, '12:00')
+      .stand(world.gate, CAR, '12:00')
       .cross(world.leadA, CAR, '20:00', 'decreasing');
     expect(track.legs(CAR)).toMatchObject([{ railMetres: 200_000 }]);
   });

@@ -24,7 +24,9 @@ describe('passages', () => {
     ['10:01:00.001', 2],
   ])('reads belong together up to the visit gap of 60 s: a read at %s', (clock, count) => {
     const { point, track } = lead('sensors');
-    track.read(point, 0, 'QTKX1', '10:00:00').read(point, 0, 'QTKX1', clock);
+    for (const instant of ['10:00:00', clock]) {
+      track.read(point, 0, 'QTKX1', instant).read(point, 1, 'QTKX1', instant, 'right');
+    }
     expect(track.passes(point).flatMap((pass) => pass.members)).toHaveLength(count);
   });
 

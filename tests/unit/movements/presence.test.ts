@@ -1,6 +1,6 @@
 import { describe, expect, test } from 'vitest';
 import { NetworkBuilder, at } from '../../support/network-builder.js';
-import { Trackside, time } from '../../support/trackside.js';
+import { STOOD_MS, Trackside, time } from '../../support/trackside.js';
 import { twoYards } from '../../support/two-yards.js';
 
 const world = twoYards('sensors');
@@ -14,14 +14,14 @@ function trackside(): Trackside {
 describe('seen at a lead without direction', () => {
   test('extends an open stay, however long ago it was seen', () => {
     const track = trackside().cross(leadA, CAR, '08:00', 'decreasing');
-    track.read(leadA, 0, CAR, '5T09:00');
+    track.stand(leadA, CAR, '5T09:00');
     expect(track.stays(CAR)).toMatchObject([
-      { arrivedAt: time('08:00'), lastSeenAt: time('5T09:00'), departedAt: null },
+      { arrivedAt: time('08:00'), lastSeenAt: time('5T09:00') + STOOD_MS, departedAt: null },
     ]);
   });
 
   test('opens one that was inferred, between its last two sightings', () => {
-    const track = trackside().cross(line, CAR, '12:00', 'decreasing').read(leadA, 0, CAR, '15:00');
+    const track = trackside().cross(line, CAR, '12:00', 'decreasing').stand(leadA, CAR, '15:00');
     expect(track.stays(CAR)).toMatchObject([
       {
         siteId: yardA,
@@ -36,8 +36,8 @@ describe('seen at a lead without direction', () => {
     ['3T03:00:00.000', '3T03:00:00.000', 'read'],
     ['3T03:00:00.001', '15:00', 'inferred'],
   ])('a crossing in at %s after it: arrived %s, %s', (crossed, arrived, basis) => {
-    const track = trackside().cross(line, CAR, '12:00', 'decreasing').read(leadA, 0, CAR, '15:00');
-    track.read(leadA, 0, CAR, '3T02:00').cross(leadA, CAR, crossed, 'decreasing');
+    const track = trackside().cross(line, CAR, '12:00', 'decreasing').stand(leadA, CAR, '15:00');
+    track.stand(leadA, CAR, '3T02:00').cross(leadA, CAR, crossed, 'decreasing');
     expect(track.stays(CAR)).toMatchObject([
       { firstSeenAt: time('15:00'), arrivedAt: time(arrived), arrivalBasis: basis },
     ]);
@@ -45,7 +45,7 @@ describe('seen at a lead without direction', () => {
 
   test('the arrival so set is that of the leg, too', () => {
     const track = trackside().cross(leadB, CAR, '06:00', 'decreasing');
-    track.read(leadA, 0, CAR, '15:00').cross(leadA, CAR, '15:10', 'decreasing');
+    track.stand(leadA, CAR, '15:00').cross(leadA, CAR, '15:10', 'decreasing');
     expect(track.legs(CAR)).toMatchObject([
       { departedAt: time('06:00'), arrivedAt: time('15:10') },
     ]);
@@ -53,13 +53,13 @@ describe('seen at a lead without direction', () => {
 
   test.each(['10:05', '10:30'])('at %s, shortly after it went out, means nothing', (clock) => {
     const track = trackside().cross(leadA, CAR, '08:00', 'decreasing');
-    track.cross(leadA, CAR, '10:00', 'increasing').read(leadA, 0, CAR, clock);
+    track.cross(leadA, CAR, '10:00', 'increasing').stand(leadA, CAR, clock);
     expect(track.stays(CAR)).toMatchObject([{ departedAt: time('10:00'), excursions: 0 }]);
   });
 
   test.each(['10:30:00.001', '22:00'])('at %s, later, reopens that stay', (clock) => {
     const track = trackside().cross(leadA, CAR, '08:00', 'decreasing');
-    track.cross(leadA, CAR, '10:00', 'increasing').read(leadA, 0, CAR, clock);
+    track.cross(leadA, CAR, '10:00', 'increasing').stand(leadA, CAR, clock);
     expect(track.stays(CAR)).toMatchObject([
       { arrivedAt: time('08:00'), departedAt: null, excursions: 1 },
     ]);
@@ -67,7 +67,7 @@ describe('seen at a lead without direction', () => {
 
   test('after the return time it opens a new stay', () => {
     const track = trackside().cross(leadA, CAR, '08:00', 'decreasing');
-    track.cross(leadA, CAR, '10:00', 'increasing').read(leadA, 0, CAR, '22:00:00.001');
+    track.cross(leadA, CAR, '10:00', 'increasing').stand(leadA, CAR, '22:00:00.001');
     expect(track.stays(CAR)).toMatchObject([
       { departedAt: time('10:00'), departureBasis: 'read' },
       {
@@ -78,7 +78,7 @@ describe('seen at a lead without direction', () => {
   });
 
   test('at another yard it ends the stay before, inferred', () => {
-    const track = trackside().cross(leadA, CAR, '08:00', 'decreasing').read(leadB, 0, CAR, '18:00');
+    const track = trackside().cross(leadA, CAR, '08:00', 'decreasing').stand(leadB, CAR, '18:00');
     expect(track.stays(CAR)).toMatchObject([
       { siteId: yardA, departedAt: time('14:40'), departureBasis: 'inferred' },
       { siteId: yardB, arrivedAt: time('18:00'), arrivalBasis: 'inferred' },
@@ -93,16 +93,17 @@ describe('seen without direction between two sites', () => {
   ])('it is where it already was: %s', (_, siteId) => {
     const track = trackside().cross(leadB, CAR, '08:00', 'increasing');
     if (siteId === plant) track.cross(gate, CAR, '09:00', 'increasing');
-    track.read(gate, 0, CAR, '12:00');
+    track.stand(gate, CAR, '12:00');
     const stays = track.stays(CAR);
-    expect(stays.at(-1)).toMatchObject({ siteId, departedAt: null, lastSeenAt: time('12:00') });
+    const seen = time('12:00') + STOOD_MS;
+    expect(stays.at(-1)).toMatchObject({ siteId, departedAt: null, lastSeenAt: seen });
     expect(stays).toHaveLength(siteId === plant ? 2 : 1);
   });
 
   test('it is at neither where it was at neither', () => {
-    const track = trackside().read(gate, 0, CAR, '12:00');
+    const track = trackside().stand(gate, CAR, '12:00');
     expect(track.stays(CAR)).toEqual([]);
-    expect(track.lastSeen(CAR)).toMatchObject({ state: 'enRoute', at: time('12:00') });
+    expect(track.lastSeen(CAR)).toMatchObject({ state: 'enRoute', at: time('12:00') + STOOD_MS });
   });
 });
 
@@ -114,7 +115,8 @@ describe('a spot read point', () => {
     const spot = network.readPoint(industry, 'single', {
       kind: 'spot',
       track: 'D1',
-      decreasingPlace: at(industry),
+      decreasingPlace: at(industry, 'D1'),
+      increasingPlace: at(industry, 'D1'),
     });
     const entry = network.readPoint(industry, 'sensors', { decreasingPlace: at(industry) });
     const passing = network.readPoint(lineSite, 'sensors');
@@ -144,8 +146,8 @@ describe('a spot read point', () => {
 
   test('seen at the lead afterwards it is still on that track', () => {
     const { spot, entry, track } = dock();
-    track.read(spot, 0, CAR, '13:00').read(entry, 0, CAR, '14:00');
-    expect(track.lastSeen(CAR)).toMatchObject({ at: time('14:00'), track: 'D1' });
+    track.read(spot, 0, CAR, '13:00').stand(entry, CAR, '14:00');
+    expect(track.lastSeen(CAR)).toMatchObject({ at: time('14:00') + STOOD_MS, track: 'D1' });
   });
 
   test('reopens a stay that it seemed to leave minutes ago', () => {

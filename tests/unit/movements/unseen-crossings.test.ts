@@ -1,6 +1,6 @@
 import { describe, expect, test } from 'vitest';
 import { CAR, car } from '../../support/car-between-yards.js';
-import { Trackside, time } from '../../support/trackside.js';
+import { STOOD_MS, Trackside, time } from '../../support/trackside.js';
 import { twoYards } from '../../support/two-yards.js';
 
 // Yard A - 40 km - line point L - 60 km - yard B. At 30 km/h: A-L 80 min, L-B 120, A-B 200.
@@ -101,12 +101,12 @@ describe('crossings that nobody saw', () => {
   test('it had not left before it was last seen there', () => {
     const { track, intoA, intoB } = car(world);
     intoA('08:00');
-    track.read(leadA, 0, CAR, '16:00');
+    track.stand(leadA, CAR, '16:00');
     intoB('18:00');
     expect(track.stays(CAR)).toMatchObject([
       {
-        departedAt: time('16:00'),
-        departureBounds: { earliest: time('16:00'), latest: time('18:00') },
+        departedAt: time('16:00') + STOOD_MS,
+        departureBounds: { earliest: time('16:00') + STOOD_MS, latest: time('18:00') },
       },
       {},
     ]);
