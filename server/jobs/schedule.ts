@@ -23,7 +23,8 @@ export function startJobs(context: Context, jobs: Job[] = allJobs): RunningJobs 
       underWay.add(running);
       return running;
     };
-    return new Cron(`*/${job.everySeconds} * * * * *`, { protect: true, unref: true }, once);
+    const seconds = job.everySeconds === 60 ? '0' : `*/${job.everySeconds}`;
+    return new Cron(`${seconds} * * * * *`, { protect: true, unref: true }, once);
   });
   return {
     async stop() {
