@@ -58,4 +58,5 @@ test('it says which credential a route wants', async () => {
   expect(paths['/api/health']?.get?.security).toEqual([]);
   expect(paths['/api/sites']?.get?.security).toEqual([{ session: [] }]);
   expect(paths['/api/ingest/reads']?.post?.security).toEqual([{ readerToken: [] }]);
+  expect(paths['/api/ingest/reports']?.post?.security).toEqual([{ reportToken: [] }]);
 });

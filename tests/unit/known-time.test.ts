@@ -12,6 +12,11 @@ describe('how a time is known', () => {
     expect(said({})).toEqual({ said: 'Mon 14:00', how: 'read' });
   });
 
+  test('reported, and seen by eye', () => {
+    expect(said({ basis: 'report' })).toEqual({ said: 'Mon 14:00', how: 'reported' });
+    expect(said({ basis: 'hand' })).toEqual({ said: 'Mon 14:00', how: 'seen by eye' });
+  });
+
   test('inferred, with its bounds and the day once', () => {
     const bounds = { earliest: '2026-11-30T17:20:00.000Z', latest: '2026-11-30T21:05:00.000Z' };
     expect(said({ basis: 'inferred', bounds })).toEqual({
