@@ -22,7 +22,9 @@ export const travelDirections = ['increasing', 'decreasing', 'unknown'] as const
 export const movementBases = ['read', 'report', 'hand', 'inferred', 'unknown'] as const;
 export const lastSeenBases = ['read', 'riding', 'report', 'hand'] as const;
 export const directionBases = ['sensors', 'antennas', 'history'] as const;
-export const passageRoles = ['crossing', 'presence', 'returned'] as const;
+export const passageRoles = ['crossing', 'presence', 'returned', 'stray'] as const;
+/** Why a stray is in no pass: it stood beside the track, or went by on the next one. */
+export const strayReasons = ['beside', 'parallel'] as const;
 export const tagSides = ['left', 'right'] as const;
 
 const flag = z

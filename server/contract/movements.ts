@@ -5,6 +5,7 @@ import {
   lastSeenBases,
   movementBases,
   passageRoles,
+  strayReasons,
   tagSides,
   travelDirections,
 } from './equipment.js';
@@ -106,10 +107,13 @@ export const movementsAnswer = z.object({
 });
 export type MovementsAnswer = z.infer<typeof movementsAnswer>;
 
-/** All passages of the unit in one pass. `sides` are the tag sides that answered. */
+/**
+ * All passages of the unit in one pass; of a stray, all beside one reader on a UTC day. `sides`
+ * are the tag sides that answered.
+ */
 export const sightingSchema = z
   .object({
-    passId: z.string(),
+    passId: z.string().nullable().meta({ description: 'Null: a stray, which counts in no pass.' }),
     site: namedSchema,
     readPoint: namedSchema,
     track: z.string().nullable(),
@@ -119,6 +123,7 @@ export const sightingSchema = z
     directionBasis: z.enum(directionBases).nullable(),
     basis: z.enum(lastSeenBases),
     role: z.enum(passageRoles),
+    stray: z.enum(strayReasons).nullable(),
     speedKmh: z.number().nullable(),
     antennas: z.array(
       z.object({
@@ -150,7 +155,7 @@ export const rawReadSchema = z
     rssi: z.number().nullable(),
     count: z.number().int().nullable(),
     receivedAt: instantSchema,
-    passId: z.string(),
+    passId: z.string().nullable(),
   })
   .meta({ id: 'RawRead' });
 export type RawReadView = z.infer<typeof rawReadSchema>;

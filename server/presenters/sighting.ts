@@ -13,8 +13,10 @@ export interface PassageRecord {
   read_point_track: string | null;
   first_at: Date;
   last_at: Date;
-  pass_started_at: Date;
-  pass_ordinal: number;
+  /** Null: a stray, which is in no pass. */
+  pass_started_at: Date | null;
+  pass_ordinal: number | null;
+  stray: string | null;
   direction: string;
   direction_basis: string | null;
   role: string;
@@ -34,9 +36,9 @@ export interface Sides {
   ofTag: (rawTag: string) => Side | null;
 }
 
-const ROLES = ['crossing', 'returned', 'presence'] as const;
+const ROLES = ['crossing', 'returned', 'presence', 'stray'] as const;
 
-/** All passages of a unit in one pass (at least one) as one sighting. */
+/** All passages of a unit in one pass, or strays that go together (at least one), as one sighting. */
 export function presentSighting(
   passages: readonly [PassageRecord, ...PassageRecord[]],
   runs: readonly RunRecord[],
@@ -55,6 +57,7 @@ export function presentSighting(
     directionBasis: directed.direction_basis as SightingView['directionBasis'],
     basis: 'read',
     role: ROLES.find((role) => passages.some((passage) => passage.role === role)) ?? 'presence',
+    stray: first.stray as SightingView['stray'],
     speedKmh: directed.speed_kmh,
     antennas: antennasOf(first.site_id, runs, sides),
     sides: (['left', 'right'] as const).filter((side) =>
@@ -112,11 +115,12 @@ function placeOf(passage: PassageRecord) {
   };
 }
 
-function passOf(passage: PassageRecord): string {
+function passOf(passage: PassageRecord): string | null {
+  if (!passage.pass_started_at) return null;
   return passIdOf({
     siteCode: passage.site_code,
     readPointCode: passage.read_point_code,
     startedAt: passage.pass_started_at,
-    ordinal: passage.pass_ordinal,
+    ordinal: passage.pass_ordinal ?? 0,
   });
 }

@@ -89,6 +89,7 @@ describe('sightings', () => {
           directionBasis: 'antennas',
           basis: 'read',
           role: 'crossing',
+          stray: null,
           speedKmh: expect.any(Number),
           antennas: [
             { number: 1, side: 'left', reads: 2 },
@@ -119,6 +120,56 @@ describe('sightings', () => {
     const span = { from: at(3_000), to: at(7_200) };
     const { body } = await agent.get(`${UNIT}/sightings`).query(span).expect(200);
     expect(body.data).toMatchObject([{ startedAt: at(3_600) }]);
+  });
+});
+
+describe('a car beside the track', () => {
+  /** One tag at one antenna, every ten minutes. */
+  const beside = [0, 1, 2, 3].map((n) => ({ antenna: 1, tag: LEFT, readAt: at(3_600 + n * 600) }));
+
+  test('is shown once a day, in no pass, and moves nothing', async () => {
+    await read(alder, [...inward(0), ...beside]);
+    const { agent } = await openPortal();
+    const { body } = await agent.get(`${UNIT}/sightings`).expect(200);
+    expect(sightingsAnswer.parse(body)).toEqual(body);
+    expect(body.data).toMatchObject([
+      {
+        passId: null,
+        role: 'stray',
+        stray: 'beside',
+        startedAt: at(3_600),
+        endedAt: at(5_400),
+        direction: 'unknown',
+        passages: 4,
+        reads: 4,
+      },
+      { role: 'crossing', stray: null, startedAt: at(0) },
+    ]);
+    const reads = await agent.get(`${UNIT}/reads`).expect(200);
+    expect(readsAnswer.parse(reads.body)).toEqual(reads.body);
+    const passIds = reads.body.data.map((row: { passId: string | null }) => row.passId);
+    expect(passIds.slice(0, 4)).toEqual([null, null, null, null]);
+    expect(passIds[4]).toMatch(/^ALDER-N1-/);
+    const unit = await agent.get(UNIT).expect(200);
+    expect(unit.body.data.lastSeen.at).toBe(at(1));
+  });
+
+  test('keeps its place on the pages', async () => {
+    const nextDay = beside.map((one) => ({
+      ...one,
+      readAt: new Date(Date.parse(one.readAt) - 86_400_000).toISOString(),
+    }));
+    await read(alder, [...inward(0), ...beside, ...nextDay]);
+    const { agent } = await openPortal();
+    const started: string[] = [];
+    let cursor = '';
+    do {
+      const page: string = cursor ? `&cursor=${cursor}` : '';
+      const { body } = await agent.get(`${UNIT}/sightings?limit=1${page}`).expect(200);
+      started.push(...body.data.map((row: { startedAt: string }) => row.startedAt));
+      cursor = body.next ?? '';
+    } while (cursor);
+    expect(started).toEqual([at(3_600), at(0), at(3_600 - 86_400)]);
   });
 });
 

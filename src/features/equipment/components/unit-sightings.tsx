@@ -42,7 +42,7 @@ export function UnitSightings({ unitId, zone, now }: Props) {
         caption="Passes it was read in"
         columns={sightingColumns(zone, now, distance)}
         rows={rows}
-        keyOf={(row) => row.passId + row.startedAt}
+        keyOf={(row) => `${row.passId ?? row.readPoint.code} ${row.startedAt}`}
         margin={(row) => <SightingMark sighting={row} />}
         narrow={
           isNarrow
@@ -84,11 +84,22 @@ const roles = {
   returned: 'came up to it and went back',
 } as const;
 
+const strays = {
+  beside: 'read beside the track, not counted',
+  parallel: 'heard from the next track',
+} as const;
+
+const bases = {
+  sensors: 'by wheel sensors',
+  antennas: 'by antennas',
+  history: 'from where its cars were before and after',
+} as const;
+
 function sayMeaning(
-  { role, speedKmh, directionBasis }: SightingView,
+  { role, stray, speedKmh, directionBasis }: SightingView,
   distance: Preferences['distance'],
 ): string {
-  const bases = { sensors: 'by wheel sensors', antennas: 'by antennas', history: 'from history' };
+  if (role === 'stray') return strays[stray ?? 'beside'];
   const speed = speedKmh === null ? '' : ` at ${formatSpeed(speedKmh, distance)}`;
   const how = role === 'crossing' && directionBasis ? `, direction ${bases[directionBasis]}` : '';
   return `${roles[role]}${speed}${how}`;
