@@ -3,7 +3,8 @@ import { expect, test } from 'vitest';
 import { buildPerson, PASSWORD } from '../support/factories.js';
 import { buildWatch } from '../support/watches.js';
 import { expectNoAxeFindings } from './support/browser.js';
-import { buildCars, buildYards, cross } from './support/railway.js';
+import { carTag } from '../support/ingest.js';
+import { buildCars, buildYards, cross, sendReads } from './support/railway.js';
 import { alertRow, heading, ledgerRows, signIn } from './support/screens.js';
 import { usePortal } from './support/use-portal.js';
 
@@ -85,4 +86,37 @@ test('Alerts and watches can be used by everyone', async () => {
   await page.getByRole('button', { name: /^Change/ }).click();
   await page.getByText(/^It covers/).waitFor();
   await expectAccessible(page, 'the dialog of a change');
+});
+
+test('what is set aside, and what is done about it, can be used by everyone', async () => {
+  const { alder } = await buildYards(db, portal());
+  const administrator = await buildPerson(db);
+  const now = portal().clock.now().getTime();
+  const ahead = new Date(now + 3_600_000).toISOString();
+  const readAt = new Date(now).toISOString();
+  await sendReads(portal(), alder, [
+    { antenna: 1, tag: carTag(1), readAt: ahead },
+    { antenna: 9, tag: carTag(1), readAt },
+    // An EPC of the GS1 rail kind (GIAI-96), as in the standards tests.
+    { antenna: 1, tag: '3414257BF400000000003039', readAt },
+    { antenna: 1, tag: 'NO READ', readAt },
+  ]);
+  const page = await open();
+  await signIn(page, administrator.email, PASSWORD);
+  await page.goto('/set-aside');
+  await heading(page, /^4 reads are set aside/).waitFor();
+  await expectAccessible(page, 'Set aside');
+  await page.getByRole('button', { name: /^Release/ }).click();
+  await page.getByText('can not be taken back').waitFor();
+  await expectAccessible(page, 'the dialog of a release');
+  await page.keyboard.press('Escape');
+  await page.getByRole('button', { name: /^Add the antenna/ }).click();
+  await page.getByRole('button', { name: 'Add the antenna', exact: true }).click();
+  await page.getByText('Which side is wanted.').waitFor();
+  await expectAccessible(page, 'the dialog of an antenna, with faults');
+  await page.goto('/set-aside?code=unmapped-epc');
+  await page.getByRole('table', { name: 'Reads that are set aside' }).waitFor();
+  await expectAccessible(page, 'reads that are set aside');
+  await page.getByRole('button', { name: /^Say what wears it/ }).click();
+  await expectAccessible(page, 'the dialog of a tag');
 });

@@ -24,10 +24,13 @@ export interface WatchedPage {
   close: () => Promise<void>;
 }
 
-/** Asking who is signed in, and for a car that one may not see: a browser reports these answers. */
+/**
+ * Asking who is signed in, and for a car that one may not see or that is not on the register: a
+ * browser reports these answers.
+ */
 const isAnswer = (text: string, url: string): boolean =>
   (text.includes('status of 401') && /\/api\//.test(url)) ||
-  (text.includes('status of 404') && /\/api\/equipment\//.test(url));
+  (text.includes('status of 404') && /\/api\/(equipment|register)\//.test(url));
 
 /** Opens a page of its own cookie jar; addresses without host go to `address`. */
 export async function openPage(

@@ -95,13 +95,26 @@ export async function cross(
     })),
   );
   portal.clock.advance(numbers.length * SECONDS_BETWEEN_CARS * 1_000);
+  expect(await sendReads(portal, yard, reads)).toMatchObject({
+    accepted: reads.length,
+    problems: [],
+  });
+}
+
+/** Sends reads as the yard's reader does, waits until they are taken up, and gives the door's answer. */
+export async function sendReads(
+  portal: Portal,
+  { site, token }: Yard,
+  reads: { antenna: number; tag: string; readAt: string }[],
+): Promise<unknown> {
   const response = await fetch(`${portal.address}/api/ingest/reads`, {
     method: 'POST',
-    headers: { authorization: `Bearer ${yard.token}`, 'content-type': 'application/json' },
-    body: JSON.stringify({ site: yard.site.code, reads }),
+    headers: { authorization: `Bearer ${token}`, 'content-type': 'application/json' },
+    body: JSON.stringify({ site: site.code, reads }),
   });
-  expect(await response.json()).toMatchObject({ accepted: reads.length, problems: [] });
+  const answer: unknown = await response.json();
   await soon(() => lagOf(portal)).toBe(0);
+  return answer;
 }
 
 async function lagOf({ address }: Portal): Promise<number> {
