@@ -1,6 +1,3 @@
-import net from 'node:net';
-import type { AddressInfo } from 'node:net';
-import { once } from 'node:events';
 import request from 'supertest';
 import { describe, expect, test } from 'vitest';
 import { buildContext } from '../support/context.js';
@@ -12,7 +9,7 @@ const context = buildContext(db);
 const app = buildIngestApp(context);
 const read = () => ({ antenna: 1, tag: carTag(1), readAt: context.clock.now().toISOString() });
 
-const post = (token: string, type: string, body: string | Buffer) =>
+const post = (token: string, type: string, body: string) =>
   request(app)
     .post('/api/ingest/reads')
     .auth(token, { type: 'bearer' })
@@ -41,53 +38,14 @@ describe('who may send', () => {
 
 describe('a body that is refused whole', () => {
   test.each([
-    ['no JSON', '{"reads": [', ''],
-    ['no object', '[]', ''],
     ['no list of reads', '{"reads": {}}', '/reads'],
     ['no reads at all', '{"site": "ALDER"}', '/reads'],
     ['a site that is no text', '{"site": 5, "reads": []}', '/site'],
-    ['nesting over 32 deep', `{"reads": [${'['.repeat(31)}${']'.repeat(31)}]}`, undefined],
-  ])('400 for %s', async (_what, body, pointer) => {
+  ])('400 with a pointer for %s', async (_what, body, pointer) => {
     const { token } = await buildReader(db);
     const answer = await post(token, 'application/json', body).expect(400);
     expect(answer.type).toBe('application/problem+json');
-    if (pointer) expect(answer.body).toMatchObject({ errors: [{ pointer }] });
-  });
-
-  test('nesting of 32 is taken, and brackets within text are none', async () => {
-    const { token } = await buildReader(db);
-    const body = `{"reads": [${'['.repeat(30)}"${'['.repeat(99)}\\"]["${']'.repeat(30)}]}`;
-    await post(token, 'application/json', body).expect(200);
-  });
-
-  test('400 for bytes that are no UTF-8', async () => {
-    const { token } = await buildReader(db);
-    const body = Buffer.from([...Buffer.from('{"reads": ["'), 0xc3, ...Buffer.from('"]}')]);
-    const { body: problem } = await post(token, 'application/json', body).expect(400);
-    expect(problem).toMatchObject({ detail: 'The body is not UTF-8.' });
-  });
-
-  test('413 over 5,000 reads; 5,000 are taken', async () => {
-    const { token } = await buildReader(db);
-    const many = (length: number) => ({ reads: Array.from({ length }, () => 0) });
-    await postReads(app, token, many(5_001)).expect(413);
-    const { body } = await postReads(app, token, many(5_000)).expect(200);
-    expect(body).toMatchObject({ rejected: 5_000 });
-    await post(token, 'application/x-ndjson', '0\n'.repeat(5_001)).expect(413);
-  });
-
-  test('413 over 2 MB, told beforehand or not', async () => {
-    const { token } = await buildReader(db);
-    const large = `{"reads": [], "filler": "${'x'.repeat(2 * 1024 * 1024)}"}`;
-    await post(token, 'application/json', large).expect(413);
-    const chunked = request(app)
-      .post('/api/ingest/reads')
-      .auth(token, { type: 'bearer' })
-      .set('Content-Type', 'application/json')
-      .set('Transfer-Encoding', 'chunked');
-    chunked.write(large.slice(0, 1_000_000));
-    chunked.write(large.slice(1_000_000));
-    await chunked.expect(413);
+    expect(answer.body).toMatchObject({ errors: [{ pointer }] });
   });
 
   test.each(['text/plain', 'application/json; charset=iso-8859-1', 'application/jsonp'])(
@@ -98,31 +56,14 @@ describe('a body that is refused whole', () => {
     },
   );
 
-  test('415 for a compressed body, 400 for a query parameter', async () => {
+  test('400 for a query parameter', async () => {
     const { token } = await buildReader(db);
-    await post(token, 'application/json', '{}').set('Content-Encoding', 'gzip').expect(415);
     const { body } = await request(app)
       .post('/api/ingest/reads?site=A')
       .auth(token, { type: 'bearer' })
       .send({ reads: [] })
       .expect(400);
     expect(body).toMatchObject({ errors: [{ pointer: '?site' }] });
-  });
-
-  test('408 when the body stops coming', async () => {
-    const { token } = await buildReader(db);
-    const server = buildIngestApp(context, { idleMs: 100 }).listen(0, '127.0.0.1');
-    await once(server, 'listening');
-    const socket = net.connect((server.address() as AddressInfo).port, '127.0.0.1');
-    socket.write(
-      'POST /api/ingest/reads HTTP/1.1\r\nHost: reader\r\nContent-Type: application/json\r\n' +
-        `Authorization: Bearer ${token}\r\nContent-Length: 500\r\n\r\n{"reads": [`,
-    );
-    const [head] = (await once(socket, 'data')) as [Buffer];
-    expect(head.toString()).toMatch(/^HTTP\/1\.1 408 /);
-    socket.destroy();
-    server.close();
-    await once(server, 'close');
   });
 });
 
