@@ -9,6 +9,8 @@ export interface AlertMailLine {
   display: string;
   kind: string;
   siteName: string | null;
+  /** How the car was last known: `read`, `report` or `hand`. */
+  basis: string;
   since: Date;
   /** It was there before `since`. */
   atLeast: boolean;
@@ -84,12 +86,14 @@ function stateOf(line: AlertMailLine, kind: WatchKind, now: Date): string {
   return `Past its limit, ${line.atLeast ? 'at least ' : ''}${age}`;
 }
 
+const lastKnown: Record<string, string> = { report: 'Last reported', hand: 'Last seen by eye' };
+
 function lineOf(line: AlertMailLine, data: AlertMailData) {
   const at = clockTime(line.since, data.timeZone);
   const site = line.siteName ?? 'a place without a name';
   const where =
     data.watch.kind === 'quiet'
-      ? `Last read at ${site}, ${at}`
+      ? `${lastKnown[line.basis] ?? 'Last read'} at ${site}, ${at}`
       : `At ${site} since ${line.atLeast ? 'before ' : ''}${at}`;
   return {
     display: line.display,

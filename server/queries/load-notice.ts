@@ -13,6 +13,8 @@ export interface NoticeLine {
   name: { unitId: string; display: string };
   kind: string;
   siteName: string | null;
+  /** How it was last known. */
+  basis: string;
   since: Date;
   atLeast: boolean;
 }
@@ -45,6 +47,7 @@ interface LineRow {
   unit_id: number;
   kind: string;
   site_name: string | null;
+  basis: string | null;
   since_at: Date;
   at_least: number;
 }
@@ -88,7 +91,7 @@ export async function loadNotice(
     ),
     ask<LineRow>(
       db,
-      sql`SELECT a.unit_id, u.kind, p.name AS site_name, ${since} AS since_at, ${atLeast} AS at_least
+      sql`SELECT a.unit_id, u.kind, p.name AS site_name, ls.basis, ${since} AS since_at, ${atLeast} AS at_least
           FROM alerts a JOIN (${fromLasting}) ON ${ofAlert}
             LEFT JOIN sites p ON p.id = ${siteId}
           WHERE a.notice_id = ${noticeId} AND a.state = 'open' AND ${inSight} AND ${raises}
@@ -117,6 +120,7 @@ async function linesFrom(db: Database, rows: LineRow[], now: Date): Promise<Noti
     name: names.get(row.unit_id) ?? { unitId: '', display: 'a car without a number' },
     kind: row.kind,
     siteName: row.site_name,
+    basis: row.basis ?? 'read',
     since: row.since_at,
     atLeast: row.at_least === 1,
   }));

@@ -8,6 +8,7 @@ const line = {
   display: 'QTKX 40127',
   kind: 'car',
   siteName: 'Alder Bend Yard',
+  basis: 'read',
   since: new Date('2026-03-04T15:00:00.000Z'),
   atLeast: false,
 };
@@ -40,6 +41,13 @@ describe('a mail about one car', () => {
     expect(text).toContain(
       'Times on the clock of America/Chicago. As of Sun 8 Mar 2026 11:00 CDT.',
     );
+  });
+
+  test('does not call read what was only reported or seen by eye', () => {
+    const textOf = (basis: string) =>
+      writeAlertMail({ ...quiet, lines: [{ ...line, basis }] }).text;
+    expect(textOf('report')).toContain('Last reported at Alder Bend Yard, Wed 4 Mar 2026');
+    expect(textOf('hand')).toContain('Last seen by eye at Alder Bend Yard, Wed 4 Mar 2026');
   });
 
   test('links the car and the list of alerts in both parts', () => {
