@@ -76,12 +76,14 @@ export function presentLeg(row: LegRecord): LegView {
 
 const isAhead = (instant: Date | null, now: Date): boolean => instant !== null && now < instant;
 
-/** Only what was observed has no bounds. */
+/** What was observed has no bounds; a report may have: not there, so gone since it was last seen. */
 function boundsOf(
   basis: string | null,
   earliest: Date | null,
   latest: Date | null,
 ): StayView['arrivalBounds'] {
-  if (basis !== 'inferred' && basis !== 'unknown') return null;
+  const isReckoned = basis === 'inferred' || basis === 'unknown';
+  const isSaid = (basis === 'report' || basis === 'hand') && (earliest ?? latest) !== null;
+  if (!isReckoned && !isSaid) return null;
   return { earliest: instantOrNull(earliest), latest: instantOrNull(latest) };
 }

@@ -17,6 +17,14 @@ describe('how a time is known', () => {
     expect(said({ basis: 'hand' })).toEqual({ said: 'Mon 14:00', how: 'seen by eye' });
   });
 
+  test('gone when somebody looked, with since when that can be', () => {
+    const bounds = { earliest: '2026-11-30T17:20:00.000Z', latest: at };
+    expect(said({ basis: 'hand', bounds })).toEqual({
+      said: 'by Mon 14:00',
+      how: 'seen by eye, between Mon 11:20 and 14:00',
+    });
+  });
+
   test('inferred, with its bounds and the day once', () => {
     const bounds = { earliest: '2026-11-30T17:20:00.000Z', latest: '2026-11-30T21:05:00.000Z' };
     expect(said({ basis: 'inferred', bounds })).toEqual({

@@ -17,8 +17,8 @@ export function sayKnownTime(time: KnownTime, zone: string, now: number) {
   const written = at ? formatInstant(at, zone, now) : '';
   const ways: Record<NonNullable<KnownTime['basis']>, { said: string; how: string }> = {
     read: { said: written, how: 'read' },
-    report: { said: written, how: 'reported' },
-    hand: { said: written, how: 'seen by eye' },
+    report: sayReported('reported', written, bounds, zone, now),
+    hand: sayReported('seen by eye', written, bounds, zone, now),
     inferred: {
       said: written && `about ${written}`,
       how: `inferred${sayBounds(bounds, zone, now)}`,
@@ -27,6 +27,12 @@ export function sayKnownTime(time: KnownTime, zone: string, now: number) {
   };
   const way = basis ? ways[basis] : { said: written, how: '' };
   return provisional ? { said: way.said, how: 'may only be switching' } : way;
+}
+
+/** What somebody said. With bounds it is the latest it can be: looked for there, and gone. */
+function sayReported(how: string, written: string, bounds: Bounds, zone: string, now: number) {
+  if (!bounds) return { said: written, how };
+  return { said: written && `by ${written}`, how: `${how}${sayBounds(bounds, zone, now)}` };
 }
 
 /** " between 11:20 and 15:05", with the day where they fall on two. */
