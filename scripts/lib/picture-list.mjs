@@ -28,6 +28,14 @@ async function lookUp(page) {
   await page.getByRole('option').first().waitFor();
 }
 
+async function askToRelease(page) {
+  await page
+    .getByRole('button', { name: /^Release/ })
+    .first()
+    .click();
+  await page.getByText('can not be taken back').waitFor();
+}
+
 /** Every screen: who sees it, where, and what is done before the picture. */
 export const screens = [
   { name: 'sign-in', path: '/sign-in' },
@@ -45,6 +53,9 @@ export const screens = [
   { name: 'watches', path: '/watches', email: owner, hasEmpty: true },
   { name: 'watch-quiet', path: '/fleet', email: owner, act: askToBeTold },
   { name: 'watch-standing', path: '/fleet?site=ALDER', email: dispatcher, act: askToBeTold },
+  { name: 'set-aside', path: '/set-aside', email: admin, hasEmpty: true, isWhole: true },
+  { name: 'set-aside-tags', path: '/set-aside?code=unmapped-epc', email: admin },
+  { name: 'set-aside-release', path: '/set-aside', email: admin, act: askToRelease },
   { name: 'what-to-look-at', path: '/what-to-look-at', email: admin },
   { name: 'what-to-look-at-owner', path: '/what-to-look-at', email: owner },
   { name: 'look-up', path: '/alerts', email: owner, act: lookUp },
@@ -57,6 +68,7 @@ export const emptyAnswers = [
   [/\/api\/equipment(\?.*)?$/, nothing],
   [/\/api\/alerts(\?.*)?$/, { ...nothing, count: 0 }],
   [/\/api\/watches(\?.*)?$/, nothing],
+  [/\/api\/held-reads(\?.*)?$/, { ...nothing, counts: [] }],
   [/\/api\/map/, { type: 'FeatureCollection', features: [] }],
   [
     /\/api\/fleet\/summary/,

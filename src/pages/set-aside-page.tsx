@@ -15,6 +15,9 @@ import { paths } from '../lib/paths';
 import { useTitle } from '../lib/use-title';
 import type { HeldGroupView, HoldCode } from '../lib/wire';
 
+/** How long the screen looks often, after something was done, for its effect. */
+const TAKES_EFFECT_MS = 60_000;
+
 /** Reads that are set aside, by reason, each with the one thing that can be done. */
 export function SetAsidePage() {
   useTitle('Set aside');
@@ -35,13 +38,15 @@ export function SetAsidePage() {
 }
 
 function SetAside({ zone }: { zone: string }) {
-  const held = useQuery(heldGroupsQuery);
+  const [quickUntil, setQuickUntil] = useState(0);
+  const held = useQuery(heldGroupsQuery(quickUntil));
   const client = useQueryClient();
   const [acting, setActing] = useState<Acting | null>(null);
   const [said, setSaid] = useState('');
   const done = (says: string) => {
     setActing(null);
     setSaid(says);
+    setQuickUntil(Date.now() + TAKES_EFFECT_MS);
     void client.invalidateQueries({ queryKey: ['set-aside'] });
   };
   return (

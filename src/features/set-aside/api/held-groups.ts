@@ -3,12 +3,16 @@ import { get } from '../../../lib/api-client';
 import { api } from '../../../lib/paths';
 import type { HeldGroupView, HeldListAnswer } from '../../../lib/wire';
 
-/** What is set aside, by site and reason; asked again every twenty seconds, for no event tells of it. */
-export const heldGroupsQuery = queryOptions({
-  queryKey: ['set-aside', 'groups'],
-  queryFn: ({ signal }) => fetchAll(signal),
-  refetchInterval: 20_000,
-});
+/**
+ * What is set aside, by site and reason; asked again every twenty seconds, for no event tells of
+ * it, and every two until `quickUntil` (ms), while something that was done takes effect.
+ */
+export const heldGroupsQuery = (quickUntil = 0) =>
+  queryOptions({
+    queryKey: ['set-aside', 'groups'],
+    queryFn: ({ signal }) => fetchAll(signal),
+    refetchInterval: () => (Date.now() < quickUntil ? 2_000 : 20_000),
+  });
 
 /** All pages: there are at most as many groups as sites times reasons. */
 async function fetchAll(signal: AbortSignal): Promise<Omit<HeldListAnswer, 'next'>> {
