@@ -1,30 +1,15 @@
 import type { Page } from 'playwright-core';
-import { expect, test } from 'vitest';
+import { test } from 'vitest';
 import { buildPerson, PASSWORD } from '../support/factories.js';
 import { buildWatch } from '../support/watches.js';
-import { expectNoAxeFindings } from './support/browser.js';
 import { carTag } from '../support/ingest.js';
+import { expectAccessible } from './support/expect-accessible.js';
 import { buildCars, buildYards, cross, sendReads } from './support/railway.js';
 import { alertRow, heading, ledgerRows, signIn } from './support/screens.js';
 import { usePortal } from './support/use-portal.js';
 
 const { db, portal, open } = usePortal(100);
 const numbers = Array.from({ length: 32 }, (_, index) => index + 1);
-
-/** Looks at the page as it stands in both widths, on light and dark paper, and whether 320 px do. */
-async function expectAccessible(page: Page, what: string): Promise<void> {
-  for (const width of [1440, 360]) {
-    await page.setViewportSize({ width, height: 900 });
-    await page.emulateMedia({ colorScheme: 'light' });
-    await expectNoAxeFindings(page, `${what}, ${width} px, light`);
-    await page.emulateMedia({ colorScheme: 'dark' });
-    await expectNoAxeFindings(page, `${what}, ${width} px, dark`, 'colours');
-  }
-  await page.setViewportSize({ width: 320, height: 900 });
-  const across = await page.evaluate(() => document.documentElement.scrollWidth);
-  expect(across, `${what} in 320 px`).toBe(320);
-  await page.setViewportSize({ width: 1440, height: 900 });
-}
 
 /** A fleet with a quiet car, one past its limit, a watch and its alerts; its owner is signed in. */
 async function signedIn(): Promise<Page> {

@@ -10,6 +10,7 @@ import { sendOutbox } from '../../../server/jobs/send-outbox.js';
 import type { Context } from '../../../server/lib/context.js';
 import type { Database } from '../../../server/lib/database.js';
 import { createProjector } from '../../../server/projections/projector.js';
+import { demoCases } from '../../../server/simulator/demo-cases.js';
 import { readMailbox, type KeptMail } from '../../../server/smtp-fake/read-mailbox.js';
 import { startSmtpFake } from '../../../server/smtp-fake/start-smtp-fake.js';
 import { buildClock, buildContext, type TestClock } from '../../support/context.js';
@@ -41,7 +42,8 @@ export async function startPortal(db: Database, hoursAgo: number): Promise<Porta
   const env = { smtpUrl: mail.url, publicUrl: address, port };
   const context = buildContext(db, { env, clock });
   const projector = createProjector(context);
-  server.on('request', createApp(context, { projectorLagMs: () => projector.lagMs() }));
+  const projectorLagMs = () => projector.lagMs();
+  server.on('request', createApp(context, { projectorLagMs, demoCases }));
   projector.start();
   return {
     address,
