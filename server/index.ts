@@ -8,7 +8,7 @@ import type { Context } from './lib/context.js';
 import { openDatabase } from './lib/database.js';
 import { LiveEvents } from './lib/live-events.js';
 import { createLogger } from './lib/logger.js';
-import { createProjector } from './projections/projector.js';
+import { createProjector, type Projector } from './projections/projector.js';
 import type { SeedProgress } from './simulator/seed-traffic.js';
 
 /** What the start script is told; `ready` once requests are answered. */
@@ -30,7 +30,7 @@ process.on('unhandledRejection', (error) => void fail(error));
 
 await start(readEnv()).catch(fail);
 
-/** Nothing listens before the schema is there, the demo is seeded and all reads are taken up. */
+/** Nothing listens before the demo is seeded and what waits is taken up. */
 async function start(settings: Env): Promise<void> {
   const env = settings.demo && !settings.smtpUrl ? await keepMail(settings) : settings;
   const db = openDatabase(env.databaseUrl);
@@ -38,7 +38,7 @@ async function start(settings: Env): Promise<void> {
   const context: Context = { env, db, clock: systemClock, logger, liveEvents: new LiveEvents() };
   const seededUntil = env.demo ? await seed(context) : null;
   const projector = createProjector(context);
-  await projector.drain();
+  await takeUp(context, projector);
   projector.start();
   stops.push(() => projector.stop());
   await listen(context, {
@@ -49,6 +49,24 @@ async function start(settings: Env): Promise<void> {
   stops.push(() => jobs.stop());
   if (seededUntil) await simulate(context, seededUntil);
   tell({ ready: true });
+}
+
+/**
+ * Folds what has waited since before this start, and no more: another server may be at it, or keep
+ * the queue from ever being empty. A failure is left to the projector, which tries again; readers
+ * come first.
+ */
+async function takeUp({ clock }: Context, projector: Projector): Promise<void> {
+  const begun = clock.now().getTime();
+  try {
+    for (;;) {
+      const { reads, units } = await projector.runOnce();
+      const isOld = (await projector.lagMs()) > clock.now().getTime() - begun;
+      if ((reads === 0 && units === 0) || !isOld) return;
+    }
+  } catch (error) {
+    logger.error({ err: error }, 'what waits could not be taken up yet');
+  }
 }
 
 async function listen(context: Context, parts: AppParts): Promise<void> {
