@@ -26,9 +26,17 @@ const TIMEOUTS = { connectionTimeout: 10_000, greetingTimeout: 10_000, socketTim
 
 /** Failures that nodemailer names and that come before the mail itself is sent. */
 const BEFORE_THE_MAIL = new Set(['EDNS', 'ETLS', 'EAUTH', 'EENVELOPE', 'ECONFIG']);
+const TIMEOUTS_BEFORE_THE_MAIL = new Set([
+  'CONNECT_TIMEOUT',
+  'GREETING_TIMEOUT',
+  'UPGRADE_TIMEOUT',
+]);
+
+/** Commands that a mail server answers with this mail in view; any other is about the line. */
+const ABOUT_THE_MAIL = new Set(['MAIL FROM', 'RCPT TO', 'DATA']);
 
 /** A transport to an `smtp://` or `smtps://` address; a new line for each mail. */
-export function openTransport(smtpUrl: string): Transport {
+export function openTransport(smtpUrl: string, timeouts: Partial<typeof TIMEOUTS> = {}): Transport {
   const address = new URL(smtpUrl);
   const secure = address.protocol === 'smtps:';
   const transporter = createTransport({
@@ -44,6 +52,7 @@ export function openTransport(smtpUrl: string): Transport {
         }
       : {}),
     ...TIMEOUTS,
+    ...timeouts,
     disableFileAccess: true,
     disableUrlAccess: true,
   });
@@ -65,15 +74,30 @@ async function handOver(transporter: Transporter, mail: OutgoingMail): Promise<D
 }
 
 function whyNot(error: unknown): Delivery {
-  const { code, responseCode, syscall, message } = error as {
+  const {
+    code = '',
+    command = '',
+    responseCode,
+    syscall,
+    timeoutType = '',
+    message,
+  } = error as {
     code?: string;
+    command?: string;
     responseCode?: number;
     syscall?: string;
+    timeoutType?: string;
     message?: string;
   };
   const detail = oneLine(message ?? String(error));
-  if (responseCode) return { outcome: 'refused', permanent: responseCode >= 500, detail };
-  if (syscall === 'connect' || BEFORE_THE_MAIL.has(code ?? '')) {
+  // A server that is shut, or a password that is wrong, will be mended; the mail is not at fault.
+  const permanent = (responseCode ?? 0) >= 500 && ABOUT_THE_MAIL.has(command);
+  if (responseCode) return { outcome: 'refused', permanent, detail };
+  if (
+    syscall === 'connect' ||
+    BEFORE_THE_MAIL.has(code) ||
+    TIMEOUTS_BEFORE_THE_MAIL.has(timeoutType)
+  ) {
     return { outcome: 'refused', permanent: false, detail };
   }
   return { outcome: 'unclear', detail };
