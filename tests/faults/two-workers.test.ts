@@ -158,3 +158,22 @@ it(
     await expectWholeHistory(db, configuration, ledger);
   },
 );
+
+it('answer both, though the queue is never empty and the other one is at it', async () => {
+  await prepare(498);
+  // A worker on another machine, and a batch that it has not come to yet.
+  await db.pool.query(
+    `INSERT INTO worker_leases (name, holder, epoch, expires_at)
+     VALUES ('projector', 'another machine', 1, NOW(3) + INTERVAL 60 SECOND)`,
+  );
+  await db.pool.query(
+    `INSERT INTO work (kind, lane, read_count, received_at) VALUES ('reads', 0, 0, NOW(3))`,
+  );
+  const server = await launch(options());
+  await server.ready;
+  const health = await fetch(`${server.address}/api/health`);
+  expect(health.status).toBe(200);
+  expect(await health.json()).toMatchObject({ projectorLagMs: expect.any(Number) });
+  expect(await isTakenUp(db)).toBe(false);
+  expect((await projectorLease()).holder).toBe('another machine');
+});
