@@ -3,6 +3,7 @@ import { ingestReads } from '../../server/ingest/ingest-reads.js';
 import { monthStart } from '../../server/lib/month-start.js';
 import { readsPartitions } from '../../server/queries/reads-partitions.js';
 import { makePartitions } from '../../server/services/make-partitions.js';
+import { retireMonth } from '../../server/services/retire-month.js';
 import { buildContext } from '../support/context.js';
 import { buildReader, carTag, storedReads } from '../support/ingest.js';
 import { useOwnDatabase } from '../support/own-database.js';
@@ -28,6 +29,18 @@ async function send(readAt: Date, number = 1): Promise<void> {
 beforeEach(async () => {
   context.clock.set(monthStart(new Date(), (ahead += 2) - 12));
   await db.pool.query('DELETE FROM `reads`');
+});
+
+test('what is set aside as too old stays until the month turns', async () => {
+  const first = (await readsPartitions(db))[0];
+  context.clock.set(new Date());
+  await send(monthStart(context.clock.now(), -20));
+  expect(await retireMonth(context, hasty)).toBe('none');
+  expect(await storedReads(db)).toMatchObject([{ hold_code: 'too-old' }]);
+  context.clock.set(new Date(monthStart(new Date(), 1).getTime() + 2 * 3_600_000));
+  expect(await retireMonth(context, hasty)).toBe('dropped');
+  expect(await storedReads(db)).toEqual([]);
+  expect((await readsPartitions(db)).map(({ name }) => name)).not.toContain(first?.name);
 });
 
 test('twelve months ahead have a partition of their own, once, in order', async () => {
