@@ -2,7 +2,7 @@ import { z } from 'zod';
 import { dataOf, namedSchema, roles } from './common.js';
 
 /** The sections of the header, in the order in which they stand for this person. */
-export const sections = ['fleet', 'alerts', 'setAside', 'rework'] as const;
+export const sections = ['fleet', 'alerts', 'setAside', 'rework', 'doubts'] as const;
 export type Section = (typeof sections)[number];
 
 /** What `POST /api/session` takes. Nothing here says which passwords are in use. */

@@ -1,5 +1,6 @@
 import { sections, type Section, type SessionAnswer, type User } from '../contract/session.js';
 import type { Actor } from '../policies/actor.js';
+import { maySeeDoubts } from '../policies/doubt-policy.js';
 import { maySeeHeldReads } from '../policies/held-read-policy.js';
 import { maySeeRebuilds } from '../policies/rebuild-policy.js';
 
@@ -25,6 +26,7 @@ export function presentSession(
 ): SessionAnswer['data'] {
   const mayOpen = (section: Section) => {
     if (section === 'setAside') return maySeeHeldReads(actor);
+    if (section === 'doubts') return maySeeDoubts(actor);
     return section !== 'rework' || maySeeRebuilds(actor);
   };
   return {

@@ -47,10 +47,10 @@ export async function findOpenableUnits(
   return access;
 }
 
-/** True for read points `rp` that stand at, or open into, one of the sites. */
-export const readPointOfSites = (siteIds: readonly number[]): Sql => sql`(
-  rp.site_id IN (${siteIds}) OR rp.decreasing_site_id IN (${siteIds})
-  OR rp.increasing_site_id IN (${siteIds}))`;
+/** True for read points `rp`, or another name, that stand at, or open into, one of the sites. */
+export const readPointOfSites = (siteIds: readonly number[], rp: Sql = sql`rp`): Sql => sql`(
+  ${rp}.site_id IN (${siteIds}) OR ${rp}.decreasing_site_id IN (${siteIds})
+  OR ${rp}.increasing_site_id IN (${siteIds}))`;
 
 function onceThere(unitIds: readonly number[], siteIds: readonly number[]): Sql[] {
   return [

@@ -5,6 +5,7 @@ import { alertsOperations, alertsRoutes } from './alerts.js';
 import { antennasOperations, antennasRoutes } from './antennas.js';
 import { demoCasesOperations } from './demo-cases.js';
 import { demoMailboxOperations, demoMailboxRoutes } from './demo-mailbox.js';
+import { doubtsOperations, doubtsRoutes } from './doubts.js';
 import { equipmentOperations, equipmentRoutes } from './equipment.js';
 import { eventsOperations, eventsRoutes } from './events.js';
 import { fleetOperations, fleetRoutes } from './fleet.js';
@@ -48,6 +49,7 @@ export function portalRouters(context: Context, projectorLagMs: () => Promise<nu
     equipmentRoutes(context),
     handReportsRoutes(context),
     fleetRoutes(context, projectorLagMs),
+    doubtsRoutes(context),
     mapRoutes(context),
     lookUpRoutes(context),
     eventsRoutes(context),
@@ -72,6 +74,7 @@ export const allOperations: Operation[] = [
   ...equipmentOperations,
   ...handReportsOperations,
   ...fleetOperations,
+  ...doubtsOperations,
   ...mapOperations,
   ...lookUpOperations,
   ...eventsOperations,

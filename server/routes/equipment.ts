@@ -1,4 +1,5 @@
 import { Router } from 'express';
+import { doubtsQuery, unitDoubtsAnswer } from '../contract/doubts.js';
 import {
   equipmentDetailAnswer,
   equipmentListAnswer,
@@ -24,6 +25,7 @@ import { listUnitIds } from '../queries/list-unit-ids.js';
 import { loadEquipment } from '../queries/load-equipment.js';
 import { unitSourcesOf } from '../queries/narrow-units.js';
 import { unitHandlers } from './unit-handlers.js';
+import { unitDoubtsHandler } from './doubts.js';
 import { unitReportsHandler } from './unit-reports.js';
 
 const list = { query: equipmentQuery };
@@ -31,6 +33,7 @@ const unit = { params: unitParams };
 const movements = { params: unitParams, query: movementsQuery };
 const sightings = { params: unitParams, query: sightingsQuery };
 const reads = { params: unitParams, query: readsQuery };
+const doubts = { params: unitParams, query: doubtsQuery };
 const reports = { params: unitParams, query: unitReportsQuery };
 
 /** The list of equipment, one unit, and its history. */
@@ -65,6 +68,12 @@ export function equipmentRoutes(context: Context): Router {
     guard,
     validate(reports),
     unitReportsHandler(context, reports),
+  );
+  router.get(
+    '/equipment/:unitId/doubts',
+    guard,
+    validate(doubts),
+    unitDoubtsHandler(context, doubts),
   );
   return router;
 }
@@ -115,5 +124,13 @@ export const equipmentOperations: Operation[] = [
     params: unitParams,
     query: unitReportsQuery,
     response: unitReportsAnswer,
+  },
+  {
+    method: 'get',
+    path: '/api/equipment/:unitId/doubts',
+    summary: 'List sightings of a unit that no train could join, the latest first',
+    params: unitParams,
+    query: doubtsQuery,
+    response: unitDoubtsAnswer,
   },
 ];

@@ -9,6 +9,7 @@ import {
   sitePolicy,
 } from '../../server/policies/administration-policy.js';
 import { alertPolicy } from '../../server/policies/alert-policy.js';
+import { maySeeDoubts } from '../../server/policies/doubt-policy.js';
 import { mayReleaseReads, maySeeHeldReads } from '../../server/policies/held-read-policy.js';
 import { maySeeMail } from '../../server/policies/mail-policy.js';
 import { authorize, authorizeAll, permissions } from '../../server/policies/policy.js';
@@ -125,6 +126,7 @@ describe('who may do what with units, watches, alerts and mail', () => {
     ],
     ['see the mail that went out', maySeeMail, 'yes no no no'],
     ['see reads that are set aside', maySeeHeldReads, 'yes no no no'],
+    ['see which sightings fit no train', maySeeDoubts, 'yes no no no'],
     ['release reads', mayReleaseReads, 'yes no no no'],
     ['see what is made anew', maySeeRebuilds, 'yes no no no'],
     ['stop what waits', (actor) => rebuildPolicy.stop(actor, { state: 'waiting' }), 'yes no no no'],
