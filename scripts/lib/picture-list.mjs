@@ -36,6 +36,12 @@ async function askToRelease(page) {
   await page.getByText('can not be taken back').waitFor();
 }
 
+async function reportWhatISaw(page) {
+  await openFirstCar(page);
+  await page.getByRole('button', { name: 'Report what I saw' }).click();
+  await page.getByRole('button', { name: 'Report it as of now' }).waitFor();
+}
+
 /** Every screen: who sees it, where, and what is done before the picture. */
 export const screens = [
   { name: 'sign-in', path: '/sign-in' },
@@ -47,6 +53,12 @@ export const screens = [
   { name: 'fleet-administrator', path: '/fleet', email: admin },
   { name: 'fleet-nothing-left', path: '/fleet?search=QQQ', email: owner },
   { name: 'unit', path: '/fleet', email: owner, act: openFirstCar, isWhole: true },
+  {
+    name: 'unit-seen-by-eye',
+    path: '/fleet',
+    email: 'clerk@fishplate.example',
+    act: reportWhatISaw,
+  },
   { name: 'unit-unknown', path: '/equipment/QZZZ1', email: owner },
   { name: 'alerts', path: '/alerts', email: owner, hasEmpty: true },
   { name: 'alerts-cleared', path: '/alerts?state=cleared', email: owner },
