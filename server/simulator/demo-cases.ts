@@ -94,7 +94,7 @@ const rows: Row[] = [
   [
     'stops',
     'A train that stops over the reader',
-    'The first train stands over the reader of Rowan Quarry for some minutes and goes on: one pass.',
+    'The first train stands over the reader of Rowan Quarry for more than two minutes and goes on: one pass.',
     [branchCars.stopsOver],
     'ROWAN',
   ],

@@ -35,6 +35,8 @@ export interface SeedOptions {
   until: Date;
   /** At most this many days back; 45 unless said otherwise. */
   days?: number;
+  /** Takes in the traffic of these sites alone; of all unless said otherwise. */
+  only?: readonly string[];
   onProgress?: (progress: SeedProgress) => void;
 }
 
@@ -65,7 +67,7 @@ export async function seedTraffic(context: Context, options: SeedOptions): Promi
 
 /** The first half of `seedTraffic`: the reads are in the queue, and nothing is made of them yet. */
 export async function feedTraffic(context: Context, options: SeedOptions): Promise<number> {
-  const { until, days = 45, onProgress = () => undefined } = options;
+  const { until, days = 45, only, onProgress = () => undefined } = options;
   const doors = { sites: await demoSites(context.db), tellers: await whoTells(context.db) };
   const to = until.getTime();
   const last = await lastReceived(context.db, doors.sites);
@@ -75,7 +77,8 @@ export async function feedTraffic(context: Context, options: SeedOptions): Promi
   let stored = 0;
   for (let at = from; at < to; at += SLICE_MS) {
     const end = Math.min(at + SLICE_MS, to);
-    stored += await takeIn(context, doors, traffic.between(at, end));
+    const sent = traffic.between(at, end).filter(({ site }) => only?.includes(site) ?? true);
+    stored += await takeIn(context, doors, sent);
     onProgress({ done: Math.ceil((end - from) / HOUR), total, unit: 'hours of traffic' });
   }
   return stored;

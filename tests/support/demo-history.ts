@@ -6,7 +6,7 @@ import type {
 } from '../../server/domain/movements/configuration.js';
 import type { History, Ledger } from '../../server/domain/movements/history-of.js';
 import type { Sent, SentRead } from '../../server/simulator/traffic.js';
-import type { TrueCrossing } from '../../server/simulator/truth-between.js';
+import type { TrueCrossing, TrueStray } from '../../server/simulator/truth-between.js';
 import { towardOf } from '../../server/simulator/world/toward.js';
 import { world, type DemoReadPoint } from '../../server/simulator/world.js';
 
@@ -131,7 +131,13 @@ export function demoLedger(sent: Sent[]): Ledger {
 
 /** What was made of the reads, in the words of the truth; instants in milliseconds. */
 export interface Found {
-  passages: { point: string; unit: string; at: number; direction: Direction | null }[];
+  passages: {
+    point: string;
+    unit: string;
+    at: number;
+    direction: Direction | null;
+    isCrossing: boolean;
+  }[];
   stays: { site: string; unit: string; arrivedAt: number | null; departedAt: number | null }[];
 }
 
@@ -144,11 +150,12 @@ export function foundIn({ passes, units }: History): Found {
     passages: [...passes].flatMap(([pointId, ofPoint]) =>
       ofPoint
         .flatMap(({ members }) => members)
-        .map(({ passage, direction }) => ({
+        .map(({ passage, direction, role }) => ({
           point: required(pointKeys.get(pointId)),
           unit: String(passage.unit),
           at: passage.first.at,
           direction,
+          isCrossing: role === 'crossing',
         })),
     ),
     stays: [...units].flatMap(([unit, { stays }]) =>
@@ -167,6 +174,8 @@ export interface Agreement {
   crossings: number;
   directionRight: number;
   directionWrong: number;
+  /** Read, and no direction known; the rest was not read at all. */
+  directionUnknown: number;
   /** Of the true arrivals and departures, those found within a minute. */
   arrivals: number;
   departures: number;
@@ -195,8 +204,8 @@ export function agreementOf(
   const directions = real.map((crossing) => {
     const { site, readPoint, unit, at } = crossing;
     const seen = passages.get(`${site} ${readPoint} ${unit}`) ?? [];
-    const known = seen.find((passage) => Math.abs(passage.at - at) < MINUTE)?.direction ?? null;
-    return { known, true: crossing.direction };
+    const close = seen.find((passage) => Math.abs(passage.at - at) < MINUTE);
+    return { isRead: Boolean(close), known: close?.direction ?? null, true: crossing.direction };
   });
   const shareOf = (right: boolean) =>
     directions.filter(({ known, true: real }) => known !== null && (known === real) === right)
@@ -205,6 +214,8 @@ export function agreementOf(
     crossings: real.length,
     directionRight: shareOf(true),
     directionWrong: shareOf(false),
+    directionUnknown:
+      directions.filter(({ isRead, known }) => isRead && known === null).length / real.length,
     arrivals: shareWithin(found, real, 'arrive', 'arrivedAt'),
     departures: shareWithin(found, real, 'depart', 'departedAt'),
   };
@@ -222,6 +233,18 @@ function shareWithin(
     stays.get(`${site} ${unit}`)?.some((stay) => Math.abs((stay[field] ?? 0) - at) <= MINUTE),
   );
   return close.length / wanted.length;
+}
+
+/** Of the units that were heard where they did not go by, the share that were told to have. */
+export function movedByStrays(found: Found, strays: TrueStray[]): number {
+  const crossings = found.passages.filter(({ isCrossing }) => isCrossing);
+  const passages = grouped(crossings, ({ point, unit }) => `${point} ${unit}`);
+  const moved = strays.filter(({ site, readPoint, unit, at }) =>
+    passages
+      .get(`${site} ${readPoint} ${unit}`)
+      ?.some((passage) => Math.abs(passage.at - at) < MINUTE),
+  );
+  return moved.length / strays.length;
 }
 
 function grouped<T>(values: T[], keyOf: (value: T) => string): Map<string, T[]> {

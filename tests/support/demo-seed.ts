@@ -29,8 +29,11 @@ export async function seedDemo(db: Database): Promise<void> {
 
 /** What the projector wrote, to compare with the truth. */
 export async function foundInDatabase({ pool }: Database): Promise<Found> {
-  const passages = await pool.query<{ point: string; unit: string; at: Date; direction: string }[]>(
-    `SELECT CONCAT(s.code, ' ', r.code) AS point, u.unit_key AS unit, p.first_at AS at, p.direction
+  const passages = await pool.query<
+    { point: string; unit: string; at: Date; direction: string; role: string }[]
+  >(
+    `SELECT CONCAT(s.code, ' ', r.code) AS point, u.unit_key AS unit, p.first_at AS at, p.direction,
+         p.role
        FROM passages p JOIN read_points r ON r.id = p.read_point_id
        JOIN sites s ON s.id = r.site_id JOIN units u ON u.id = p.unit_id`,
   );
@@ -41,11 +44,12 @@ export async function foundInDatabase({ pool }: Database): Promise<Found> {
        FROM stays y JOIN sites s ON s.id = y.site_id JOIN units u ON u.id = y.unit_id`,
   );
   return {
-    passages: passages.map(({ point, unit, at, direction }) => ({
+    passages: passages.map(({ point, unit, at, direction, role }) => ({
       point,
       unit,
       at: at.getTime(),
       direction: direction === 'increasing' || direction === 'decreasing' ? direction : null,
+      isCrossing: role === 'crossing',
     })),
     stays: stays.map(({ site, unit, arrived_at, departed_at }) => ({
       site,

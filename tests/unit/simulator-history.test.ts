@@ -1,13 +1,14 @@
 import { describe, expect, it } from 'vitest';
 import { historyOf } from '../../server/domain/movements/history-of.js';
 import { trafficBetween } from '../../server/simulator/traffic.js';
-import { truthBetween } from '../../server/simulator/truth-between.js';
+import { strayTruthBetween, truthBetween } from '../../server/simulator/truth-between.js';
 import {
   agreementLine,
   agreementOf,
   demoConfiguration,
   demoLedger,
   foundIn,
+  movedByStrays,
 } from '../support/demo-history.js';
 
 const DAY = 86_400_000;
@@ -30,5 +31,28 @@ describe('what the rules make of two weeks of invented traffic', () => {
     expect(agreement.directionWrong).toBeLessThanOrEqual(wrong);
     expect(agreement.arrivals).toBeGreaterThanOrEqual(arrivals);
     expect(agreement.departures).toBeGreaterThanOrEqual(departures);
+  });
+
+  it('agrees with the truth at the site with one antenna, where history tells direction', () => {
+    // Cars that are only ever sorted here are seen nowhere else, so that nothing can tell.
+    const trains = truth.filter(({ purpose }) => purpose === 'arrive' || purpose === 'depart');
+    const agreement = agreementOf(found, trains, 'single');
+    console.info(agreementLine('single', agreement));
+    const { crossings, directionRight, directionWrong, directionUnknown } = agreement;
+    expect(crossings).toBeGreaterThan(100);
+    // It hears one side of a train: some have no tag there.
+    const read = directionRight + directionWrong + directionUnknown;
+    expect(read).toBeGreaterThan(0.8);
+    expect(directionRight / read).toBeGreaterThanOrEqual(0.922);
+    expect(directionWrong / read).toBeLessThanOrEqual(0.018);
+  });
+
+  it('lets nothing move that was heard from the next track, from beside it, or standing', () => {
+    const strays = strayTruthBetween(from, from + 14 * DAY);
+    for (const why of ['parallel', 'beside', 'beam'] as const) {
+      const ofKind = strays.filter((stray) => stray.why === why);
+      expect(ofKind.length, why).toBeGreaterThan(50);
+      expect(movedByStrays(found, ofKind), why).toBe(0);
+    }
   });
 });

@@ -30,7 +30,7 @@ function firstTrain(round: Round): Pass[] {
   const train = (at: number) => trainOf(round, 'first', at);
   const back = (at: number) => trainOf(round, 'first', at, true);
   const engine = () => lightEngine('first');
-  const halt = { atM: 70, seconds: 400, backM: 0 };
+  const halt = { atM: 76, seconds: 140, backM: 0 };
   return [
     pass(round, 'first out of Pipit', 2, { ...outOf(storage), vehicles: train }),
     pass(round, 'first by Linnet', 3, { ...by('decreasing'), vehicles: train }),
