@@ -22,8 +22,8 @@ const rows: Row[] = [
   ],
   [
     'slow-clock',
-    'A clock that is 40 s behind',
-    'Passes at Pipit Storage Tracks and at Marten Falls Line show 40 s early.',
+    'A clock that is 40\u00a0s behind',
+    'Passes at Pipit Storage Tracks and at Marten Falls Line show 40\u00a0s early.',
     [branchCars.history],
     'PIPIT',
   ],

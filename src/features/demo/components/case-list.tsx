@@ -10,11 +10,11 @@ export function CaseList({ cases, screens }: { cases: DemoCaseView[]; screens: s
         <li
           key={each.id}
           id={each.id}
-          className="grid gap-x-32 gap-y-4 border-b border-rule py-12 md:grid-cols-[minmax(0,1fr)_17rem]"
+          className="grid gap-x-32 gap-y-4 border-b border-rule py-12 md:grid-cols-[minmax(0,44rem)_15rem]"
         >
           <div>
             <h2 className="font-medium">{each.title}</h2>
-            <p className="max-w-[44rem] text-ink-soft">{each.says}</p>
+            <p className="text-ink-soft">{each.says}</p>
           </div>
           <Where each={each} mayOpen={each.screen !== null && screens.includes(each.screen)} />
         </li>
