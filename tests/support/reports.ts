@@ -14,8 +14,8 @@ export async function buildReporter(
   return { organisation, token: await replaceReportToken(context, organisation.id) };
 }
 
-/** Posts to the door for movement reports as JSON. */
-export const postReports = (app: Express, token: string, body: object) =>
+/** Posts to the door for movement reports as JSON; `app` may be the address of a server. */
+export const postReports = (app: Express | string, token: string, body: object) =>
   request(app).post('/api/ingest/reports').auth(token, { type: 'bearer' }).send(body);
 
 /** Movement reports as they are stored, by reference. */
