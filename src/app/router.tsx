@@ -55,6 +55,13 @@ export const createRouter = () =>
           ),
         },
         {
+          path: '/doubts',
+          lazy: page(
+            () => import('../pages/doubts-page'),
+            (module) => module.DoubtsPage,
+          ),
+        },
+        {
           path: '/set-aside',
           lazy: page(
             () => import('../pages/set-aside-page'),

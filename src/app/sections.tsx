@@ -7,6 +7,7 @@ const known: Record<string, { word: string; to: string }> = {
   fleet: { word: 'Fleet', to: paths.fleet() },
   alerts: { word: 'Alerts', to: paths.alerts() },
   setAside: { word: 'Set aside', to: paths.setAside() },
+  doubts: { word: 'Doubts', to: paths.doubts },
 };
 
 /** The sections that the server says this person may open, in the server's order. */

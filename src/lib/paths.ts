@@ -9,6 +9,7 @@ export const paths = {
   alerts: (filter: { state?: string; watch?: string | number } = {}) =>
     `/alerts${queryString(filter)}`,
   watches: '/watches',
+  doubts: '/doubts',
   setAside: (filter: { code?: string; site?: string } = {}) => `/set-aside${queryString(filter)}`,
   demoMailbox: '/demo/mailbox',
   demoCases: '/what-to-look-at',
@@ -56,6 +57,8 @@ export const api = {
   movements: (unitId: string) => `${equipment(unitId)}/movements`,
   sightings: (unitId: string) => `${equipment(unitId)}/sightings`,
   reads: (unitId: string) => `${equipment(unitId)}/reads`,
+  unitDoubts: (unitId: string) => `${equipment(unitId)}/doubts`,
+  doubts: '/api/doubts',
   unitReports: (unitId: string) => `${equipment(unitId)}/reports`,
   handReports: (site: string) => `/api/sites/${encodeURIComponent(site)}/hand-reports`,
   retractions: (site: string) => `/api/sites/${encodeURIComponent(site)}/hand-reports/retractions`,

@@ -5,6 +5,7 @@ export type { AntennaInput } from '../../server/contract/administration';
 export type { ReadPointView } from '../../server/contract/administration-answers';
 export type { AlertState, AlertView, AlertListAnswer } from '../../server/contract/alerts';
 export type { DemoCasesAnswer, DemoCaseView } from '../../server/contract/demo-cases';
+export type { DoubtsAnswer, DoubtView, UnitDoubtsAnswer } from '../../server/contract/doubts';
 export type {
   EquipmentDetail,
   EquipmentDetailAnswer,

@@ -3,6 +3,7 @@ import { useQuery } from '@tanstack/react-query';
 import { Link, useNavigate, useParams } from 'react-router-dom';
 import { ErrorNotice, LoadingSentence } from '../components/ui/notice';
 import { Sentence } from '../components/ui/sentence';
+import { UnitDoubts } from '../features/doubts/components/unit-doubts';
 import { unitQuery } from '../features/equipment/api/unit';
 import { UnitHeading } from '../features/equipment/components/unit-heading';
 import { UnitJourney, useJourneySpan } from '../features/equipment/components/unit-journey';
@@ -28,7 +29,7 @@ const chapters = [
   { id: 'reports', word: 'Reports' },
   { id: 'journey', word: 'Journey' },
   { id: 'miles', word: 'Miles' },
-  { id: 'tags', word: 'Tags' },
+  { id: 'tags', word: 'Tags and marks' },
   { id: 'reads', word: 'Raw reads' },
 ];
 
@@ -114,6 +115,7 @@ function UnitDocument({ answer: { data: unit, can }, session }: DocumentProps) {
           <UnitNow unit={unit} zone={zone} />
         </UnitSection>
         <UnitSection id="how-we-know" heading="How we know">
+          <UnitDoubts unitId={unit.unitId} zone={zone} now={now} />
           <UnitSightings unitId={unit.unitId} zone={zone} now={now} />
         </UnitSection>
         <UnitSection id="reports" heading="Reports">
@@ -125,7 +127,7 @@ function UnitDocument({ answer: { data: unit, can }, session }: DocumentProps) {
         <UnitSection id="miles" heading="Miles">
           <UnitMiles unitId={unit.unitId} kind={unit.kind} />
         </UnitSection>
-        <UnitSection id="tags" heading="Tags">
+        <UnitSection id="tags" heading="Tags and marks">
           <UnitTags unit={unit} zone={zone} now={now} />
         </UnitSection>
         <UnitSection id="reads" heading="Raw reads">

@@ -1,5 +1,6 @@
+import { Fragment } from 'react';
 import { Link } from 'react-router-dom';
-import { LargeMark } from '../../../components/ui/mark';
+import { LargeMark, Mark } from '../../../components/ui/mark';
 import { formatDuration } from '../../../lib/durations';
 import { paths } from '../../../lib/paths';
 import { formatInstant } from '../../../lib/times';
@@ -19,11 +20,30 @@ export function UnitHeading({ unit, zone, now }: Props) {
     <div className="pt-20">
       <p className="font-condensed text-table text-ink-soft">{sayWhat(unit)}</p>
       <LargeMark>{unit.display}</LargeMark>
+      <Formerly unit={unit} />
       <h1 className="mt-4 max-w-[900px] text-sentence-narrow font-normal text-pretty sm:text-sentence">
         <span className="only-heard">{unit.display}: </span>
         <Whereabouts unit={unit} zone={zone} now={now} />
       </h1>
     </div>
+  );
+}
+
+/** "formerly QTKX 40127", so that who came by an old number knows that this is the car. */
+function Formerly({ unit }: { unit: EquipmentDetail }) {
+  const former = unit.identities.filter(({ current }) => !current);
+  if (former.length === 0) return null;
+  const displays = [...new Set(former.map(({ display }) => display))];
+  return (
+    <p className="text-ink-soft">
+      formerly{' '}
+      {displays.map((display, index) => (
+        <Fragment key={display}>
+          {index > 0 ? ', ' : null}
+          <Mark>{display}</Mark>
+        </Fragment>
+      ))}
+    </p>
   );
 }
 
