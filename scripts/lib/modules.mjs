@@ -38,7 +38,7 @@ async function installWhenChanged() {
   const wanted = createHash('sha256').update(readFileSync(lockFile)).digest('hex');
   if (readHolder(stamp) === wanted) return 'present';
   if (isInstalledAsLocked()) {
-    writeFileSync(stamp, wanted);
+    remember(wanted);
     return 'present';
   }
   const user = otherUser();
@@ -51,6 +51,15 @@ async function installWhenChanged() {
   await run('npm', parameters, { env: environment({ NODE_ENV: '' }) });
   writeFileSync(stamp, wanted);
   return 'installed';
+}
+
+/** Packages that somebody else installed are looked through at each start instead. */
+function remember(wanted) {
+  try {
+    writeFileSync(stamp, wanted);
+  } catch (error) {
+    if (error.code !== 'EACCES' && error.code !== 'EROFS') throw error;
+  }
 }
 
 function otherUser() {
