@@ -16,9 +16,10 @@ interface Props {
 const meanings: Record<string, string> = {
   quiet: 'no read for longer than its limit while not standing at a site',
   'past its limit': 'it stands longer than the site allows',
-  'en route': 'its last crossing led out to the line',
-  'on hand': 'its last crossing led into the site, and none has led out since',
-  'never read': 'no reader has reported one of its tags',
+  'en route': 'its last crossing led out to the line, or it was reported gone',
+  'on hand':
+    'its last crossing led into the site, or it was reported there, and nothing says it has left',
+  'never read': 'no reader has read one of its tags, and nobody has reported it',
 };
 
 /** The facts of this moment, one a line. */
