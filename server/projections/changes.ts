@@ -1,11 +1,6 @@
-import type { PassStart } from '../domain/movements/refold-point.js';
+import type { PassKey } from '../domain/movements/passes.js';
 import type { Placed } from './neighbours.js';
 import type { PassageRow } from './passage-rows.js';
-
-/** What tells passes apart; instants in ms. */
-export interface PassKey extends Pick<PassStart, 'startedAt' | 'ordinal'> {
-  readPointId: number;
-}
 
 /** A key as text, to look up by. */
 export function passKeyOf({ readPointId, startedAt, ordinal }: PassKey): string {

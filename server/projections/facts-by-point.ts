@@ -24,10 +24,11 @@ export function factsByPoint(
   };
   for (const { point, visit } of visitsByPoint(network, usable)) {
     const [since, until] = [firstRead(visit.evidence).at, lastReadAt(visit.evidence)];
-    add(point, { visits: [visit], unitIds: new Set([visit.unit as number]), since, until });
+    const unitIds = new Set([visit.unit as number]);
+    add(point, { visits: [visit], unitIds, since, until, sensed: false });
   }
   for (const { readPointId, since, until } of wheels) {
-    add(readPointId, { visits: [], unitIds: new Set(), since, until });
+    add(readPointId, { visits: [], unitIds: new Set(), since, until, sensed: true });
   }
   return new Map([...pieces].map(([readPointId, facts]) => [readPointId, together(facts)]));
 }
@@ -61,6 +62,7 @@ export function together(pieces: readonly FreshFacts[]): FreshFacts[] {
     last.visits.push(...piece.visits);
     for (const unitId of piece.unitIds) last.unitIds.add(unitId);
     last.until = Math.max(last.until, piece.until);
+    last.sensed ||= piece.sensed;
   }
   return joined;
 }

@@ -1,5 +1,6 @@
 import type { PoolConnection } from 'mariadb';
 import type { Network, ReadPointConfiguration } from '../domain/movements/configuration.js';
+import { firstRead, lastReadAt } from '../domain/movements/evidence.js';
 import { pointRules } from '../domain/movements/passages.js';
 import { isUndirected, withHistory, type Pass } from '../domain/movements/passes.js';
 import {
@@ -24,6 +25,8 @@ export interface FreshFacts {
   /** Earliest and latest instant that they can bear on, ms. */
   since: number;
   until: number;
+  /** A wheel record is among them: any visit then may have another direction. */
+  sensed: boolean;
   /** Stored visits that begin in it ([from, to), ms) give way to the new ones. */
   instead?: { from: number; to: number };
 }
@@ -40,7 +43,7 @@ export async function foldPoint(
   facts: FreshFacts,
   changes: Changes,
 ): Promise<void> {
-  const touched = await touchedSpans(connection, network, point, facts, [...facts.unitIds]);
+  const touched = await touchedSpans(connection, network, point, facts);
   const reach = reachOfChange({ point }, facts, touched);
   const from = await startOfWindow(connection, network, point, reach.since);
   for (let further = FIRST_REACH_MS; ; further *= REACH_GROWTH) {
@@ -66,13 +69,12 @@ async function refold(
     const firstAt = row.first_at.getTime();
     return !instead || firstAt < instead.from || firstAt >= instead.to;
   });
-  const firsts = stored.map((row) => row.first_at.getTime());
-  const lasts = stored.map((row) => row.last_at.getTime());
-  const since = Math.min(facts.since, ...firsts);
-  const until = Math.max(facts.until, ...lasts);
-  const wheels = await loadWheels(connection, point.id, since, until);
   const visits = withFresh(stored.flatMap(visitsOfRow), facts.visits, point.visitGapSeconds * 1000);
   const around = await loadSurroundings(connection, network, point, window, visits);
+  const judged = [...visits, ...around.here].map(({ evidence }) => evidence);
+  const since = Math.min(facts.since, ...judged.map((evidence) => firstRead(evidence).at));
+  const until = Math.max(facts.until, ...judged.map(lastReadAt));
+  const wheels = await loadWheels(connection, point.id, since, until);
   return refoldPoint(pointRules(network, point, wheels), {
     from: window.from,
     visits,

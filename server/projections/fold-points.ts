@@ -45,7 +45,13 @@ function besides(
   for (const [readPointId, ofPoint] of facts) {
     for (const { id } of network.parallelTo(readPointId)) {
       const echoes = ofPoint.map(({ unitIds, since, until }) => {
-        return { visits: [], unitIds, since: since - PARALLEL_MS, until: until + PARALLEL_MS };
+        return {
+          visits: [],
+          unitIds,
+          since: since - PARALLEL_MS,
+          until: until + PARALLEL_MS,
+          sensed: false,
+        };
       });
       beside.set(id, together([...(beside.get(id) ?? []), ...echoes]));
     }

@@ -1,11 +1,11 @@
 import type { PoolConnection } from 'mariadb';
 import type { EquipmentKind } from '../domain/identifiers/equipment-groups.js';
 import type { Network } from '../domain/movements/configuration.js';
-import { compareText } from '../domain/movements/evidence.js';
-import { foldHistory, type UnitHistory } from '../domain/movements/fold-history.js';
+import { foldHistory } from '../domain/movements/fold-history.js';
 import { changeableFrom, nothingKnown, type FoldState } from '../domain/movements/fold-state.js';
-import type { Sighting } from '../domain/movements/fold-unit.js';
 import { byKeys, inParts } from '../lib/bulk.js';
+import { KnownCompanions } from './known-companions.js';
+import { loadFacts } from './load-facts.js';
 import { configurationVersion, type LoadedNetwork } from './load-network.js';
 import type { Lane } from './take-work.js';
 import { writeHistories, type FoldedUnit } from './write-histories.js';
@@ -89,9 +89,9 @@ async function foldPart(
   starts: readonly UnitStart[],
 ): Promise<FoldedUnit[]> {
   const kinds = await loadKinds(connection, starts);
-  const sightings = await loadSightings(connection, network, starts);
+  const facts = await loadFacts(connection, network, starts);
   const emptied = starts.filter(
-    ({ unitId, beforeAt }) => beforeAt > 0 && !sightings.get(unitId)?.length,
+    ({ unitId, beforeAt }) => beforeAt > 0 && !facts.get(unitId)?.length,
   );
   if (emptied.length) {
     const afresh = emptied.map(({ unitId }) => ({ unitId, beforeAt: 0, state: nothingKnown() }));
@@ -101,13 +101,21 @@ async function foldPart(
       ...(await foldPart(connection, network, afresh)),
     ];
   }
-  return starts.map((start) => {
-    const own = sightings.get(start.unitId) ?? [];
+  const known = new KnownCompanions(connection, network);
+  const fold = (start: UnitStart): FoldedUnit => {
     const { kind, ownerId, registered } = kinds.get(start.unitId) as UnitRow;
-    const history: UnitHistory = foldHistory(network, { kind, registered }, start.state, own);
+    const own = facts.get(start.unitId) ?? [];
+    const companions = known.of(start.unitId);
+    const history = foldHistory(network, { kind, registered }, start.state, own, companions);
     const changeable = changeableFrom(start.state, start.beforeAt);
-    return { start, changeable, ownerId, registered, history, last: own.at(-1) ?? null };
-  });
+    return { start, changeable, ownerId, registered, history };
+  };
+  // A fold that needed to know who was with it is done again once that is known.
+  let folded = starts.map(fold);
+  while (await known.learn()) {
+    folded = folded.map((one) => (known.lacked(one.start.unitId) ? fold(one.start) : one));
+  }
+  return folded;
 }
 
 interface UnitRow {
@@ -131,67 +139,5 @@ async function loadKinds(
       row.id,
       { kind: row.kind, ownerId: row.owner_id, registered: Boolean(row.registered) },
     ]),
-  );
-}
-
-/** A sighting as it is loaded, with what the last-seen row needs. */
-export interface LoadedSighting extends Sighting {
-  passStartedAt: Date;
-  passOrdinal: number;
-}
-
-interface SightingRow {
-  unit_id: number;
-  read_point_id: number;
-  first_at: Date;
-  first_antenna: number;
-  first_tag: Buffer;
-  last_at: Date;
-  role: Sighting['role'];
-  direction: 'increasing' | 'decreasing' | 'unknown';
-  pass_started_at: Date;
-  pass_ordinal: number;
-}
-
-async function loadSightings(
-  connection: PoolConnection,
-  network: Network,
-  starts: readonly UnitStart[],
-): Promise<Map<number, LoadedSighting[]>> {
-  const rows = await byKeys<SightingRow>(
-    connection,
-    `SELECT unit_id, read_point_id, first_at, first_antenna, first_tag, last_at, role, direction,
-       pass_started_at, pass_ordinal
-     FROM passages FORCE INDEX (passages_unit) WHERE stray IS NULL AND (:keys)`,
-    'unit_id = ? AND first_at >= ?',
-    starts.map(({ unitId, beforeAt }) => [unitId, new Date(beforeAt)]),
-  );
-  rows.sort((a, b) => compareRows(network, a, b));
-  const sightings = new Map<number, LoadedSighting[]>();
-  for (const row of rows) {
-    const own = sightings.get(row.unit_id) ?? [];
-    sightings.set(row.unit_id, own);
-    own.push({
-      readPointId: row.read_point_id,
-      firstAt: row.first_at.getTime(),
-      lastAt: row.last_at.getTime(),
-      role: row.role,
-      direction: row.direction === 'unknown' ? null : row.direction,
-      passStartedAt: row.pass_started_at,
-      passOrdinal: row.pass_ordinal,
-    });
-  }
-  return sightings;
-}
-
-/** The total order of sightings: time, site code, antenna number, tag. */
-function compareRows(network: Network, a: SightingRow, b: SightingRow): number {
-  const siteCode = (row: SightingRow) =>
-    network.site(network.readPoint(row.read_point_id).siteId).code;
-  return (
-    a.first_at.getTime() - b.first_at.getTime() ||
-    compareText(siteCode(a), siteCode(b)) ||
-    a.first_antenna - b.first_antenna ||
-    compareText(a.first_tag.toString(), b.first_tag.toString())
   );
 }

@@ -1,3 +1,4 @@
+import type { Doubt } from '../domain/movements/doubt.js';
 import type { Leg, Stay } from '../domain/movements/fold-state.js';
 import type { SqlValue } from '../lib/bulk.js';
 import { FAR, NEVER_SEEN } from '../lib/sentinels.js';
@@ -73,6 +74,29 @@ export function legValues(unitId: number, leg: Leg): SqlValue[] {
   ];
 }
 
+/** Columns of `doubts`, the key first, in the order `doubtValues` gives them. */
+export const DOUBT_COLUMNS = [
+  'unit_id',
+  'at',
+  'read_point_id',
+  'previous_read_point_id',
+  'previous_at',
+  'rail_metres',
+  'corroborated_by',
+] as const;
+
+export function doubtValues(unitId: number, doubt: Doubt): SqlValue[] {
+  return [
+    unitId,
+    new Date(doubt.at),
+    doubt.readPointId,
+    doubt.previousReadPointId,
+    new Date(doubt.previousAt),
+    doubt.railMetres,
+    doubt.corroboratedBy,
+  ];
+}
+
 /** Columns of `last_seen`, in the order `lastSeenValues` gives them. */
 export const LAST_SEEN_COLUMNS = [
   'unit_id',
@@ -93,7 +117,7 @@ export const LAST_SEEN_COLUMNS = [
 ] as const;
 
 /** A unit without any sighting is `unseen`, its instants the sentinels. */
-export function lastSeenValues({ start, history, last }: FoldedUnit): SqlValue[] {
+export function lastSeenValues({ start, history }: FoldedUnit): SqlValue[] {
   const seen = history.lastSeen;
   if (!seen) return unseenValues(start.unitId);
   return [
@@ -104,9 +128,9 @@ export function lastSeenValues({ start, history, last }: FoldedUnit): SqlValue[]
     seen.track,
     seen.readPointId,
     seen.direction ?? 'unknown',
-    'read',
-    last?.passStartedAt ?? null,
-    last?.passOrdinal ?? null,
+    seen.basis,
+    instant(seen.pass?.startedAt),
+    seen.pass?.ordinal ?? null,
     seen.staySiteId,
     instant(seen.stayFirstSeenAt),
     instant(seen.arrivedAt),

@@ -1,6 +1,7 @@
 import type { PoolConnection } from 'mariadb';
 import { byKeys } from '../lib/bulk.js';
-import type { Changes, PassKey } from './changes.js';
+import type { PassKey } from '../domain/movements/passes.js';
+import type { Changes } from './changes.js';
 import type { NeighbourRow } from './neighbours.js';
 
 type Member = Pick<NeighbourRow, 'unit_id' | 'first_at' | 'last_at'>;

@@ -66,6 +66,7 @@ export async function foldSlice(
     unitIds: new Set([...stored.map((row) => row.unit_id), ...byUnit.keys()]),
     since: from,
     until: to,
+    sensed: false,
     instead: { from, to },
   };
   await foldPoints(connection, network, new Map([[point.id, [facts]]]), changes);

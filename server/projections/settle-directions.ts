@@ -5,9 +5,9 @@ import {
   type Adjacent,
   type Voter,
 } from '../domain/movements/direction-by-history.js';
-import { STANDING_MS } from '../domain/movements/passes.js';
+import { STANDING_MS, type PassKey } from '../domain/movements/passes.js';
 import { byKeys } from '../lib/bulk.js';
-import { passKeyOf, passOfRow, type Changes, type PassKey } from './changes.js';
+import { passKeyOf, passOfRow, type Changes } from './changes.js';
 import { neighboursOf, type NeighbourRow, type Neighbours } from './neighbours.js';
 import type { PassRow } from './passage-rows.js';
 

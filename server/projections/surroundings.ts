@@ -10,6 +10,7 @@ import {
   type Surroundings,
 } from '../domain/movements/strays.js';
 import type { Visit } from '../domain/movements/visits.js';
+import type { FreshFacts } from './fold-point.js';
 import { visitsOfRow, type PassageRow } from './passage-rows.js';
 import type { Window } from './point-window.js';
 
@@ -24,10 +25,12 @@ export async function touchedSpans(
   connection: PoolConnection,
   network: Network,
   point: ReadPointConfiguration,
-  { since, until }: { since: number; until: number },
-  unitIds: readonly number[],
+  facts: Pick<FreshFacts, 'since' | 'until' | 'unitIds' | 'sensed'>,
 ): Promise<Span[]> {
-  if (unitIds.length === 0 || !canHaveStrays(network, point)) return [];
+  if (!canHaveStrays(network, point)) return [];
+  const { since, until } = facts;
+  const unitIds = await touchedUnits(connection, point, facts);
+  if (unitIds.length === 0) return [];
   const load = async (from: number, to: number): Promise<Span[]> => {
     const rows = await connection.query<Pick<PassageRow, 'first_at' | 'last_at'>[]>(
       `SELECT first_at, last_at FROM passages FORCE INDEX (passages_last)
@@ -45,6 +48,21 @@ export async function touchedSpans(
   const first = Math.min(since, ...joined.map(({ firstAt }) => firstAt));
   const last = Math.max(until, ...joined.map(({ lastAt }) => lastAt));
   return load(first - BESIDE_MS, last + BESIDE_MS);
+}
+
+/** A wheel record bears on every visit that it covers. */
+async function touchedUnits(
+  connection: PoolConnection,
+  point: ReadPointConfiguration,
+  { since, until, unitIds, sensed }: Pick<FreshFacts, 'since' | 'until' | 'unitIds' | 'sensed'>,
+): Promise<number[]> {
+  if (!sensed) return [...unitIds];
+  const rows = await connection.query<{ unit_id: number }[]>(
+    `SELECT DISTINCT unit_id FROM passages FORCE INDEX (passages_last)
+     WHERE read_point_id = ? AND last_at >= ? AND first_at <= ?`,
+    [point.id, new Date(since), new Date(until)],
+  );
+  return [...new Set([...unitIds, ...rows.map((row) => row.unit_id)])];
 }
 
 /** What else of this read point and of those beside it bears on the strays of a stretch. */

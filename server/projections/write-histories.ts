@@ -3,8 +3,10 @@ import type { UnitHistory } from '../domain/movements/fold-history.js';
 import type { Changeable } from '../domain/movements/fold-state.js';
 import { byKeys, insertRows, type SqlValue } from '../lib/bulk.js';
 import { NEVER_SEEN } from '../lib/sentinels.js';
-import type { LoadedSighting, UnitStart } from './fold-units.js';
+import type { UnitStart } from './fold-units.js';
 import {
+  doubtValues,
+  DOUBT_COLUMNS,
   lastSeenValues,
   LAST_SEEN_COLUMNS,
   legValues,
@@ -24,7 +26,6 @@ export interface FoldedUnit {
   ownerId: number | null;
   registered: boolean;
   history: UnitHistory;
-  last: LoadedSighting | null;
 }
 
 /** Writes what changed of the folded units' stays, legs, last seen and checkpoints. */
@@ -37,14 +38,25 @@ export async function writeHistories(
     columns: STAY_COLUMNS,
     orderedBy: 'first_seen_at',
     key: ['unit_id', 'first_seen_at', 'site_id'],
+    isChangeable: ({ includes }, firstSeenAt, siteId) => includes({ siteId, firstSeenAt }),
     rowsOf: ({ start, history }) => history.stays.map((stay) => stayValues(start.unitId, stay)),
+    former: rememberFormerStays,
   });
   await writeDifferences(connection, units, {
     table: 'legs',
     columns: LEG_COLUMNS,
     orderedBy: 'to_first_seen_at',
     key: ['unit_id', 'to_first_seen_at', 'to_site_id'],
+    isChangeable: ({ includes }, firstSeenAt, siteId) => includes({ siteId, firstSeenAt }),
     rowsOf: ({ start, history }) => history.legs.map((leg) => legValues(start.unitId, leg)),
+  });
+  await writeDifferences(connection, units, {
+    table: 'doubts',
+    columns: DOUBT_COLUMNS,
+    orderedBy: 'at',
+    key: ['unit_id', 'at', 'read_point_id'],
+    isChangeable: ({ doubtsSince }, at) => at >= doubtsSince,
+    rowsOf: ({ start, history }) => history.doubts.map((one) => doubtValues(start.unitId, one)),
   });
   await writeLastSeen(connection, units);
   await writeCheckpoints(connection, units);
@@ -55,32 +67,37 @@ interface Target {
   columns: readonly string[];
   orderedBy: string;
   key: readonly [string, string, string];
+  /** Whether a stored row, by its instant (ms) and place, may be otherwise now. */
+  isChangeable: (changeable: Changeable, at: number, placeId: number) => boolean;
+  /** Hears of the keys of rows that have gone. */
+  former?: (connection: PoolConnection, keys: readonly SqlValue[][]) => Promise<void>;
   rowsOf: (unit: FoldedUnit) => SqlValue[][];
 }
 
 async function writeDifferences(
   connection: PoolConnection,
   units: readonly FoldedUnit[],
-  { table, columns, orderedBy, key, rowsOf }: Target,
+  { table, columns, orderedBy, key, isChangeable, rowsOf, former }: Target,
 ): Promise<void> {
   const rows = await byKeys<Record<string, SqlValue>>(
     connection,
     `SELECT * FROM ${table} FORCE INDEX (PRIMARY) WHERE :keys`,
     `unit_id = ? AND ${orderedBy} >= ?`,
-    units.map((unit) => [unit.start.unitId, new Date(unit.changeable.since)]),
+    units.map(({ start, changeable }) => {
+      const since = Math.min(changeable.since, changeable.doubtsSince);
+      return [start.unitId, new Date(since)];
+    }),
   );
   const keyOf = (values: readonly (SqlValue | undefined)[]) =>
     values.map((value) => (value instanceof Date ? value.getTime() : value)).join(' ');
   const changeable = new Map(units.map((unit) => [unit.start.unitId, unit.changeable]));
   const stored = new Map<string, Record<string, SqlValue>>();
   for (const row of rows) {
-    const [unitId, firstSeenAt, siteId] = key.map((column) => row[column]) as [
-      number,
-      Date,
-      number,
-    ];
-    const isOurs = changeable.get(unitId)?.includes({ siteId, firstSeenAt: firstSeenAt.getTime() });
-    if (isOurs) stored.set(keyOf([unitId, firstSeenAt, siteId]), row);
+    const [unitId, at, placeId] = key.map((column) => row[column]) as [number, Date, number];
+    const own = changeable.get(unitId);
+    if (own && isChangeable(own, at.getTime(), placeId)) {
+      stored.set(keyOf([unitId, at, placeId]), row);
+    }
   }
   const changed: SqlValue[][] = [];
   for (const values of units.flatMap(rowsOf)) {
@@ -89,13 +106,23 @@ async function writeDifferences(
     stored.delete(name);
     if (!row || !isSame(columns, row, values)) changed.push(values);
   }
+  const gone = [...stored.values()].map((row) => key.map((column) => row[column] ?? null));
   await byKeys(
     connection,
     `DELETE FROM ${table} WHERE :keys`,
     key.map((column) => `${column} = ?`).join(' AND '),
-    [...stored.values()].map((row) => key.map((column) => row[column] ?? null)),
+    gone,
   );
+  await former?.(connection, gone);
   await insertRows(connection, table, columns, changed, columns.slice(key.length));
+}
+
+/** Links to a stay that has gone lead to the one that the unit had then. */
+async function rememberFormerStays(
+  connection: PoolConnection,
+  keys: readonly SqlValue[][],
+): Promise<void> {
+  await insertRows(connection, 'stay_aliases', ['unit_id', 'first_seen_at', 'site_id'], keys);
 }
 
 async function writeLastSeen(

@@ -3,8 +3,8 @@ import { describe, expect, test } from 'vitest';
 import { Network, type Configuration } from '../../server/domain/movements/configuration.js';
 import { foldHistory } from '../../server/domain/movements/fold-history.js';
 import { nothingKnown } from '../../server/domain/movements/fold-state.js';
-import type { Sighting } from '../../server/domain/movements/fold-unit.js';
-import { historyOf, type History, type Ledger } from '../../server/domain/movements/history-of.js';
+import { sightingsByUnit, companionsIn } from '../../server/domain/movements/unit-facts.js';
+import { historyOf, type Ledger } from '../../server/domain/movements/history-of.js';
 import { pointRules } from '../../server/domain/movements/passages.js';
 import {
   formPasses,
@@ -54,19 +54,6 @@ function disordered(ledger: Ledger, configuration: Configuration, random: Seeded
 
 function keyOf({ siteId, antenna, at, tag }: LedgerRead): string {
   return `${siteId} ${antenna} ${at} ${tag}`;
-}
-
-function sightingsOf(history: History): Map<unknown, Sighting[]> {
-  const units = new Map<unknown, Sighting[]>();
-  for (const row of rowsOf(history).passages) {
-    const { unit, readPointId, firstAt, lastAt } = row;
-    const { role, direction } = row as Pick<Sighting, 'role' | 'direction'>;
-    const sightings = units.get(unit) ?? [];
-    units.set(unit, sightings);
-    sightings.push({ readPointId, firstAt, lastAt, role, direction });
-  }
-  for (const sightings of units.values()) sightings.sort((a, b) => a.firstAt - b.firstAt);
-  return units;
 }
 
 describe('history', () => {
@@ -230,16 +217,15 @@ describe('what the running projections build on', () => {
       fc.property(equipped, seeds, (kind, seed) => {
         const { world, ledger } = day(kind, seed, 0.05);
         const network = new Network(world.configuration);
-        for (const sightings of sightingsOf(historyOf(ledger, world.configuration)).values()) {
-          const whole = foldHistory(
-            network,
-            { kind: 'car', registered: true },
-            nothingKnown(),
-            sightings,
-          );
+        const units = sightingsByUnit(network, historyOf(ledger, world.configuration).passes);
+        const companionsOf = companionsIn(network, units);
+        const car = { kind: 'car', registered: true } as const;
+        for (const [unit, sightings] of units) {
+          const companions = companionsOf(unit);
+          const whole = foldHistory(network, car, nothingKnown(), sightings, companions);
           for (const { beforeAt, state } of whole.checkpoints) {
             const rest = sightings.filter(({ firstAt }) => firstAt >= beforeAt);
-            const part = foldHistory(network, { kind: 'car', registered: true }, state, rest);
+            const part = foldHistory(network, car, state, rest, companions);
             expect(part.lastSeen).toEqual(whole.lastSeen);
             expect(part.stays).toEqual(whole.stays.slice(whole.stays.length - part.stays.length));
             expect(part.legs).toEqual(whole.legs.slice(whole.legs.length - part.legs.length));

@@ -1,5 +1,6 @@
 import { canonicalDump } from '../../server/domain/movements/canonical-dump.js';
 import { Network, type Configuration } from '../../server/domain/movements/configuration.js';
+import type { Doubt } from '../../server/domain/movements/doubt.js';
 import type { Bounds, Leg, Stay } from '../../server/domain/movements/fold-state.js';
 import type { LastSeen } from '../../server/domain/movements/last-seen.js';
 import type { Database } from '../../server/lib/database.js';
@@ -47,6 +48,10 @@ export async function dumpDatabase(db: Database, configuration: Configuration): 
       lastSeen: (await select<Row>('last_seen'))
         .filter((row) => row['state'] !== 'unseen')
         .map((row) => ({ unit: row['unit_id']!, ...lastSeenOf(row) })),
+      doubts: (await select<Row>('doubts')).map((row) => ({
+        unit: row['unit_id']!,
+        ...doubtOf(row),
+      })),
     },
     (unit) => keys.get(unit as number) as string,
   );
@@ -92,12 +97,31 @@ function lastSeenOf(row: Row): LastSeen {
     siteId: row['site_id']!,
     track: row['track']!,
     readPointId: row['read_point_id']!,
+    pass: passOf(row),
+    basis: row['basis']!,
     direction: known(row['direction']!) as LastSeen['direction'],
     staySiteId: row['stay_site_id']!,
     stayFirstSeenAt: ms(row, 'stay_first_seen_at'),
     arrivedAt: ms(row, 'arrived_at'),
     quietAt: limit(row, 'quiet_at'),
     limitAt: limit(row, 'limit_at'),
+  };
+}
+
+function passOf(row: Row): LastSeen['pass'] {
+  const startedAt = ms(row, 'pass_started_at');
+  if (startedAt === null) return null;
+  return { readPointId: row['read_point_id']!, startedAt, ordinal: row['pass_ordinal']! };
+}
+
+function doubtOf(row: Row): Doubt {
+  return {
+    at: ms(row, 'at') as number,
+    readPointId: row['read_point_id']!,
+    previousReadPointId: row['previous_read_point_id']!,
+    previousAt: ms(row, 'previous_at') as number,
+    railMetres: row['rail_metres']!,
+    corroboratedBy: row['corroborated_by']!,
   };
 }
 

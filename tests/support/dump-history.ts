@@ -5,7 +5,14 @@ import { historyOf, type History, type Ledger } from '../../server/domain/moveme
 
 /** History from the whole ledger as the plain rows that a canonical dump is made of. */
 export function rowsOf(history: History): DumpedHistory {
-  const rows: DumpedHistory = { passages: [], passes: [], stays: [], legs: [], lastSeen: [] };
+  const rows: DumpedHistory = {
+    passages: [],
+    passes: [],
+    stays: [],
+    legs: [],
+    lastSeen: [],
+    doubts: [],
+  };
   for (const [readPointId, passes] of history.passes) {
     for (const { members, cleanStart: _, ...pass } of passes) {
       rows.passes.push({ readPointId, size: members.length, ...pass });
@@ -23,7 +30,8 @@ export function rowsOf(history: History): DumpedHistory {
       rows.passages.push({ readPointId, ...ofPass, ...plainRow(passage), ...told });
     }
   }
-  for (const [unit, { stays, legs, lastSeen }] of history.units) {
+  for (const [unit, { stays, legs, lastSeen, doubts }] of history.units) {
+    rows.doubts.push(...doubts.map((doubt) => ({ ...doubt, unit })));
     rows.stays.push(...stays.map((stay) => ({ ...stay, unit })));
     rows.legs.push(...legs.map((leg) => ({ ...leg, unit })));
     if (lastSeen) rows.lastSeen.push({ ...lastSeen, unit });

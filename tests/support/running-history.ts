@@ -8,21 +8,25 @@ import { directPasses } from '../../server/domain/movements/direct-passes.js';
 import type { UsableRead } from '../../server/domain/movements/evidence.js';
 import { foldHistory, type UnitHistory } from '../../server/domain/movements/fold-history.js';
 import { changeableFrom, nothingKnown } from '../../server/domain/movements/fold-state.js';
+import type { EquipmentKind } from '../../server/domain/identifiers/equipment-groups.js';
+import type { Companions } from '../../server/domain/movements/companions.js';
+import type { History, Ledger, LedgerReport } from '../../server/domain/movements/history-of.js';
+import { foldedUnit, kindsOf } from '../../server/domain/movements/kind-of-unit.js';
+import type { Report } from '../../server/domain/movements/sighting.js';
 import {
-  compareSightings,
-  kindOfUnit,
-  sightingsOf,
-  type History,
-  type Ledger,
+  companionsIn,
+  inOrder,
+  reportsByUnit,
+  sightingsByUnit,
   type UnitSighting,
-} from '../../server/domain/movements/history-of.js';
+} from '../../server/domain/movements/unit-facts.js';
 import { WHEEL_REACH_MS } from '../../server/domain/movements/own-direction.js';
 import {
   hasSeveralOffsets,
   pointRules,
   type Passage,
 } from '../../server/domain/movements/passages.js';
-import type { Pass } from '../../server/domain/movements/passes.js';
+import type { Pass, PassKey } from '../../server/domain/movements/passes.js';
 import {
   reachOfChange,
   refoldPoint,
@@ -51,6 +55,7 @@ export class RunningHistory {
   private readonly passes = new Map<number, Pass[]>();
   private readonly strays = new Map<number, StrayPassage[]>();
   private readonly wheels: Wheel[] = [];
+  private readonly reports: LedgerReport[] = [];
   private readonly units = new Map<UnitRef, UnitHistory>();
 
   constructor(configuration: Configuration) {
@@ -78,7 +83,16 @@ export class RunningHistory {
       }
     }
     directPasses(this.network, this.passes);
-    for (const [unit, from] of differences(before, this.members())) this.foldUnit(unit, from);
+    this.reports.push(...(portion.reports ?? []));
+    const after = this.members();
+    const known = this.known();
+    const dirty = differences(before, after);
+    companionsOf(known, before, after, dirty);
+    for (const [unit, own] of reportsByUnit(this.network, portion.reports ?? [])) {
+      const from = Math.min(...own.map(({ firstAt }) => firstAt));
+      dirty.set(unit, Math.min(dirty.get(unit) ?? Infinity, from));
+    }
+    for (const [unit, from] of dirty) this.foldUnit(unit, from, known);
   }
 
   private factsOf(readPointId: number, portion: Ledger): Facts | null {
@@ -90,7 +104,11 @@ export class RunningHistory {
     if (since === Infinity) return null;
     const gapMs = this.network.readPoint(readPointId).visitGapSeconds * 1000;
     const visits = [...reads].flatMap(([unit, own]) => visitsOf(unit, own, gapMs));
-    return { visits, units: new Set(reads.keys()), since, until };
+    const units = new Set(reads.keys());
+    for (const { unit, first, lastAt } of records.length ? this.passagesAt(readPointId) : []) {
+      if (lastAt >= since && first.at <= until) units.add(unit);
+    }
+    return { visits, units, since, until };
   }
 
   private foldPoint(readPointId: number, facts: Facts): void {
@@ -154,14 +172,15 @@ export class RunningHistory {
   }
 
   /** Every passage with what its unit's history takes from it. */
-  private members(): Map<string, { unit: UnitRef; at: number; value: string }> {
-    const members = new Map<string, { unit: UnitRef; at: number; value: string }>();
+  private members(): Members {
+    const members: Members = new Map();
     for (const [readPointId, passes] of this.passes) {
       for (const { startedAt, ordinal, members: own } of passes) {
         for (const { passage, role, direction } of own) {
           const { unit, first, lastAt, tagCount } = passage;
           const value = [startedAt, ordinal, role, direction, lastAt, tagCount].join(' ');
-          members.set(`${readPointId} ${unit} ${first.at}`, { unit, at: first.at, value });
+          const pass = passText({ readPointId, startedAt, ordinal });
+          members.set(`${readPointId} ${unit} ${first.at}`, { unit, at: first.at, pass, value });
         }
       }
     }
@@ -181,24 +200,21 @@ export class RunningHistory {
     return reads;
   }
 
-  private foldUnit(unit: UnitRef, from: number): void {
-    const sightings = this.sightingsOf(unit);
+  private foldUnit(unit: UnitRef, from: number, known: Known): void {
+    const own = known.sightings.get(unit) ?? [];
+    const facts = inOrder(this.network, own, known.reports.get(unit) ?? []);
     const stored = this.units.get(unit);
     const checkpoint = stored?.checkpoints.findLast(({ beforeAt }) => beforeAt <= from);
-    const rest = sightings.filter(({ firstAt }) => firstAt >= (checkpoint?.beforeAt ?? 0));
+    const rest = facts.filter(({ firstAt }) => firstAt >= (checkpoint?.beforeAt ?? 0));
     const start = checkpoint && rest.length ? checkpoint : { beforeAt: 0, state: nothingKnown() };
-    const own = sightings.filter(({ firstAt }) => firstAt >= start.beforeAt);
-    if (own.length === 0) {
+    const later = facts.filter(({ firstAt }) => firstAt >= start.beforeAt);
+    if (later.length === 0) {
       this.units.delete(unit);
       return;
     }
-    const registered = this.network.unit(unit)?.registered ?? false;
-    const folded = foldHistory(
-      this.network,
-      { kind: kindOfUnit(sightings), registered },
-      start.state,
-      own,
-    );
+    const kind = foldedUnit(this.network, known.kinds, unit);
+    const companions = known.companionsOf(unit);
+    const folded = foldHistory(this.network, kind, start.state, later, companions);
     const changeable = changeableFrom(start.state, start.beforeAt);
     this.units.set(unit, {
       stays: [
@@ -212,6 +228,10 @@ export class RunningHistory {
         ),
         ...folded.legs,
       ],
+      doubts: [
+        ...(stored?.doubts ?? []).filter(({ at }) => at < changeable.doubtsSince),
+        ...folded.doubts,
+      ],
       lastSeen: folded.lastSeen,
       checkpoints: [
         ...(stored?.checkpoints ?? []).filter(
@@ -222,16 +242,51 @@ export class RunningHistory {
     });
   }
 
-  private sightingsOf(unit: UnitRef): UnitSighting[] {
-    return [...this.passes]
-      .flatMap(([readPointId, passes]) =>
-        passes.flatMap((pass) =>
-          sightingsOf(this.network, this.network.readPoint(readPointId), pass),
-        ),
-      )
-      .filter((sighting) => sighting.unit === unit)
-      .sort(compareSightings);
+  /** What the folds of units need of all the rest. */
+  private known(): Known {
+    const sightings = sightingsByUnit(this.network, this.passes);
+    return {
+      sightings,
+      reports: reportsByUnit(this.network, this.reports),
+      companionsOf: companionsIn(this.network, sightings),
+      kinds: kindsOf({ passes: this.passes, strays: this.strays }),
+    };
   }
+}
+
+interface Known {
+  sightings: Map<UnitRef, UnitSighting[]>;
+  reports: Map<UnitRef, Report[]>;
+  companionsOf: (unit: UnitRef) => Companions;
+  kinds: Map<UnitRef, EquipmentKind>;
+}
+
+/** Companions of changed passages: there, and where the same unit was seen next. */
+function companionsOf(
+  { sightings }: Known,
+  before: Members,
+  after: Members,
+  dirty: Map<UnitRef, number>,
+): void {
+  const passes = new Set<string>();
+  for (const [key, member] of [...before, ...after]) {
+    if (before.get(key)?.value === after.get(key)?.value) continue;
+    passes.add(member.pass);
+    const own = sightings.get(member.unit) ?? [];
+    const next = own.find(({ firstAt }) => firstAt > member.at);
+    if (next) passes.add(passText(next.pass));
+    for (const one of own.filter(({ firstAt }) => firstAt === member.at)) {
+      passes.add(passText(one.pass));
+    }
+  }
+  for (const member of after.values()) {
+    if (!passes.has(member.pass)) continue;
+    dirty.set(member.unit, Math.min(dirty.get(member.unit) ?? Infinity, member.at));
+  }
+}
+
+function passText({ readPointId, startedAt, ordinal }: PassKey): string {
+  return `${readPointId} ${startedAt} ${ordinal}`;
 }
 
 function visitsIn(passages: readonly Passage[]): Visit[] {
@@ -255,7 +310,7 @@ function touchedBy({ units, since, until }: Facts, all: readonly Passage[], gapM
   return within(first - BESIDE_MS, last + BESIDE_MS);
 }
 
-type Members = Map<string, { unit: UnitRef; at: number; value: string }>;
+type Members = Map<string, { unit: UnitRef; at: number; pass: string; value: string }>;
 
 /** Units whose passages differ, and the earliest difference of each. */
 function differences(before: Members, after: Members): Map<UnitRef, number> {

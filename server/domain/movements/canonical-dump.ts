@@ -1,4 +1,5 @@
 import type { Network, UnitRef } from './configuration.js';
+import type { Doubt } from './doubt.js';
 import type { Leg, Stay } from './fold-state.js';
 import type { LastSeen } from './last-seen.js';
 
@@ -39,6 +40,7 @@ export interface DumpedHistory {
   stays: (Stay & { unit: UnitRef })[];
   legs: (Leg & { unit: UnitRef })[];
   lastSeen: (LastSeen & { unit: UnitRef })[];
+  doubts: (Doubt & { unit: UnitRef })[];
 }
 
 /**
@@ -51,7 +53,8 @@ export function canonicalDump(
   nameOf: (unit: UnitRef) => string,
 ): string[] {
   const site = (id: number | null) => (id === null ? '-' : network.site(id).code);
-  const point = (id: number) => {
+  const point = (id: number | null) => {
+    if (id === null) return '-';
     const { siteId, code } = network.readPoint(id);
     return `${site(siteId)}/${code}`;
   };
@@ -70,9 +73,15 @@ export function canonicalDump(
     ...history.legs.map(({ unit, fromSiteId, toSiteId, ...rest }) =>
       line('leg', nameOf(unit), site(fromSiteId), site(toSiteId), sorted(rest)),
     ),
-    ...history.lastSeen.map(({ unit, siteId, staySiteId, readPointId, ...rest }) =>
-      line('last', nameOf(unit), site(siteId), site(staySiteId), point(readPointId), sorted(rest)),
-    ),
+    ...history.lastSeen.map(({ unit, siteId, staySiteId, readPointId, pass, ...rest }) => {
+      const where = [site(siteId), site(staySiteId), point(readPointId)];
+      const inPass = pass && [point(pass.readPointId), pass.startedAt, pass.ordinal];
+      return line('last', nameOf(unit), ...where, inPass, sorted(rest));
+    }),
+    ...history.doubts.map(({ unit, readPointId, previousReadPointId, ...rest }) => {
+      const where = [point(previousReadPointId), point(readPointId)];
+      return line('doubt', nameOf(unit), ...where, sorted(rest));
+    }),
   ].sort();
 }
 

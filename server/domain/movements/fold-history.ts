@@ -1,7 +1,9 @@
 import type { EquipmentKind } from '../identifiers/equipment-groups.js';
 import type { Network } from './configuration.js';
-import type { FoldRows, FoldState } from './fold-state.js';
-import { foldSighting, openRows, type Sighting } from './fold-unit.js';
+import type { Companions } from './companions.js';
+import { noRows, type FoldRows, type FoldState } from './fold-state.js';
+import { foldFact, openRows } from './fold-unit.js';
+import type { Fact } from './sighting.js';
 import { lastSeenOf, type FoldedUnit, type LastSeen } from './last-seen.js';
 
 /** A state of the fold to start again from: everything before `beforeAt` (ms) is in it. */
@@ -26,36 +28,38 @@ const RIDERS: ReadonlySet<EquipmentKind> = new Set([
   'generatorSet',
 ]);
 
-/** Folds a unit's sightings (in order of first reads) onto `start`. */
+/** Folds a unit's facts (in order of first reads) onto `start`. */
 export function foldHistory(
   network: Network,
   { kind, registered }: FoldedUnit,
   start: FoldState,
-  sightings: readonly Sighting[],
+  facts: readonly Fact[],
+  companions: Companions,
 ): UnitHistory {
-  const stays: FoldRows['stays'] = [];
-  const legs: FoldRows['legs'] = [];
+  const rows = noRows();
   const checkpoints: Checkpoint[] = [];
+  const context = { network, companions, countsMiles: !RIDERS.has(kind) };
   let state = start;
-  sightings.forEach((sighting, index) => {
+  facts.forEach((fact, index) => {
     const before = state;
-    const step = foldSighting(network, before, sighting, !RIDERS.has(kind));
+    const step = foldFact(context, before, fact);
     state = step.state;
-    stays.push(...step.done.stays);
-    legs.push(...step.done.legs);
+    rows.stays.push(...step.done.stays);
+    rows.legs.push(...step.done.legs);
+    rows.doubts.push(...step.done.doubts);
     const opening = state.stay?.firstSeenAt !== before.stay?.firstSeenAt;
-    const last = index === sightings.length - 1;
-    const tied = sightings[index - 1]?.firstAt === sighting.firstAt;
+    const last = index === facts.length - 1;
+    const tied = facts[index - 1]?.firstAt === fact.firstAt;
     if ((opening || last) && !tied) {
-      checkpoints.push({ beforeAt: sighting.firstAt, state: before, opening });
+      checkpoints.push({ beforeAt: fact.firstAt, state: before, opening });
     }
   });
   const open = openRows(state);
-  const lastSighting = sightings.at(-1);
   return {
-    stays: [...stays, ...open.stays],
-    legs: [...legs, ...open.legs],
-    lastSeen: lastSighting ? lastSeenOf(network, { kind, registered }, state, lastSighting) : null,
+    stays: [...rows.stays, ...open.stays],
+    legs: [...rows.legs, ...open.legs],
+    doubts: [...rows.doubts, ...open.doubts],
+    lastSeen: lastSeenOf(network, { kind, registered }, state),
     checkpoints,
   };
 }

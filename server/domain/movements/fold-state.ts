@@ -1,7 +1,10 @@
 import type { Direction } from './configuration.js';
+import type { Doubt } from './doubt.js';
+import type { PassKey } from './passes.js';
+import type { Sighting } from './sighting.js';
 
 /** How an arrival or departure is known. */
-export type Basis = 'read' | 'inferred' | 'unknown';
+export type Basis = 'read' | 'report' | 'hand' | 'inferred' | 'unknown';
 
 /** A unit at a site; instants in ms. */
 export interface Stay {
@@ -47,13 +50,17 @@ export interface Leg {
   estimated: boolean;
 }
 
-/** The last sighting folded, as the next one is judged by it. */
+/** The last that is known of a unit's place, as what comes next is judged by it. */
 export interface Previous {
-  /** Last read of it, ms. */
+  /** First and last read of it, ms. */
+  firstAt: number;
   at: number;
   /** Where it was seen: the site it was at, left or (a line point) passed. */
   siteId: number;
-  readPointId: number;
+  /** Null: no reader saw it there. */
+  readPointId: number | null;
+  pass: PassKey | null;
+  basis: 'read' | 'report' | 'hand';
   /** It was a crossing out to the line from that site. */
   outward: boolean;
   /** Its direction where it was a crossing. */
@@ -73,6 +80,8 @@ export interface FoldState {
   drill: Drill | null;
   /** Rows that are done unless the drill is struck. */
   held: FoldRows;
+  /** The last sighting, when no train could have made it; it has moved nothing so far. */
+  doubted: { sighting: Sighting; doubt: Doubt } | null;
 }
 
 export interface Drill {
@@ -85,12 +94,17 @@ export interface Drill {
 export interface FoldRows {
   stays: Stay[];
   legs: Leg[];
+  doubts: Doubt[];
+}
+
+export function noRows(): FoldRows {
+  return { stays: [], legs: [], doubts: [] };
 }
 
 /** A unit that nobody has seen. */
 export function nothingKnown(): FoldState {
-  const held = { stays: [], legs: [] };
-  return { stay: null, leg: null, previous: null, trail: [], drill: null, held };
+  const held = noRows();
+  return { stay: null, leg: null, previous: null, trail: [], drill: null, held, doubted: null };
 }
 
 /** What tells a unit's stays apart; legs go by the stay they lead to. */
@@ -101,15 +115,20 @@ export interface Changeable {
   /** No row of an earlier first sighting (ms) is among them. */
   since: number;
   includes(key: StayKey): boolean;
+  /** Doubts of sightings from this instant (ms) on are. */
+  doubtsSince: number;
 }
 
-/** Rows that a fold from `state` on, over the sightings from `beforeAt` (ms) on, may change. */
+/** Rows that a fold from `state` on, over the facts from `beforeAt` (ms) on, may change. */
 export function changeableFrom(state: FoldState, beforeAt: number): Changeable {
   const keys = mutableStays(state);
+  // A doubted sighting may come to count, or cease to.
+  const from = Math.min(beforeAt, state.doubted?.doubt.at ?? beforeAt);
   return {
-    since: Math.min(beforeAt, ...keys.map((key) => key.firstSeenAt)),
+    since: Math.min(from, ...keys.map((key) => key.firstSeenAt)),
+    doubtsSince: from,
     includes: ({ siteId, firstSeenAt }) =>
-      firstSeenAt >= beforeAt ||
+      firstSeenAt >= from ||
       keys.some((key) => key.siteId === siteId && key.firstSeenAt === firstSeenAt),
   };
 }

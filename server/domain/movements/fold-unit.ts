@@ -1,18 +1,28 @@
+import type { Companions } from './companions.js';
 import { LONGEST_STOP_MS, type Direction, type Network, type Place } from './configuration.js';
+import { corroborates, doubtOf, metresTooFar, type Doubt } from './doubt.js';
+import { applyReport } from './fold-reports.js';
 import { arrive, bePresent, leave, moveWithin, passOnLine, type Step } from './fold-rules.js';
-import type { FoldRows, FoldState } from './fold-state.js';
-import type { PassageRole } from './passes.js';
+import { noRows, type FoldRows, type FoldState } from './fold-state.js';
+import {
+  instantOf,
+  isReport,
+  moveOf,
+  type Fact,
+  type Move,
+  type Report,
+  type Sighting,
+} from './sighting.js';
 
-/** A unit at a read point, as its pass left it; instants in ms. */
-export interface Sighting {
-  readPointId: number;
-  firstAt: number;
-  lastAt: number;
-  role: PassageRole;
-  direction: Direction | null;
+/** What the fold of one unit knows besides its facts. */
+export interface FoldContext {
+  network: Network;
+  companions: Companions;
+  /** False for boxes, which ride: no rail metres until it is known on what. */
+  countsMiles: boolean;
 }
 
-/** The state after a sighting, and the rows that nothing later can change any more. */
+/** The state after a fact, and the rows that nothing later can change any more. */
 export interface FoldStep {
   state: FoldState;
   done: FoldRows;
@@ -20,29 +30,80 @@ export interface FoldStep {
 
 const MINUTE_MS = 60_000;
 const HOUR_MS = 60 * MINUTE_MS;
-const LONG_PASSAGE_MS = 2 * MINUTE_MS;
 
-/**
- * Folds the next sighting of a unit (in order of first reads) into its state. `countsMiles` is
- * false for boxes, which ride: their legs have no rail metres until it is known on what.
- */
-export function foldSighting(
-  network: Network,
-  before: FoldState,
-  sighting: Sighting,
-  countsMiles: boolean,
-): FoldStep {
+/** Folds the next fact of a unit (in order of first reads) into its state. */
+export function foldFact(context: FoldContext, before: FoldState, fact: Fact): FoldStep {
+  const settled = settleDoubt(context, before, fact);
+  if (isReport(fact)) return joined(settled, foldReport(context, settled.state, fact));
+  const doubt = doubtOf(context.network, settled.state.previous, fact);
+  const corroboratedBy = doubt && witnessOf(context, settled.state, fact);
+  if (doubt && !corroboratedBy) {
+    return { ...settled, state: { ...settled.state, doubted: { sighting: fact, doubt } } };
+  }
+  const step = joined(settled, foldSighting(context, settled.state, fact));
+  if (doubt) step.done.doubts.push({ ...doubt, corroboratedBy });
+  return step;
+}
+
+/** A doubted sighting counts after all when the next one fits it and not what was before. */
+function settleDoubt(context: FoldContext, before: FoldState, fact: Fact): FoldStep {
+  const state: FoldState = { ...before, doubted: null };
+  const done = noRows();
+  if (!before.doubted) return { state, done };
+  const { sighting, doubt } = before.doubted;
+  const counts = !isReport(fact) && corroborates(context.network, before.previous, sighting, fact);
+  const settled: Doubt = { ...doubt, corroboratedBy: counts ? 'point' : null };
+  const step = counts ? foldSighting(context, state, sighting) : { state, done };
+  step.done.doubts.push(settled);
+  return step;
+}
+
+function witnessOf(
+  { companions }: FoldContext,
+  { previous }: FoldState,
+  { tagCount, pass }: Sighting,
+): Doubt['corroboratedBy'] {
+  if (tagCount > 1) return 'side';
+  return previous?.pass && companions.shared(previous.pass, pass) > 0 ? 'mates' : null;
+}
+
+function joined(first: FoldStep, { state, done }: FoldStep): FoldStep {
+  return {
+    state,
+    done: {
+      stays: [...first.done.stays, ...done.stays],
+      legs: [...first.done.legs, ...done.legs],
+      doubts: [...first.done.doubts, ...done.doubts],
+    },
+  };
+}
+
+function foldSighting(context: FoldContext, before: FoldState, sighting: Sighting): FoldStep {
   if (isSameCrossing(before, sighting)) return goOn(before, sighting);
+  const { network } = context;
   const move = moveOf(network, sighting);
   const drill = struckDrill(network, before, sighting);
   if (drill) {
-    const step = startStep(network, drill.before, sighting, drill.at, countsMiles);
+    const step = startStep(context, drill.before, sighting, drill.at);
     bePresent(step, move.to, { lingering: false, spot: false });
     return { state: step.state, done: step.done };
   }
-  const step = startStep(network, before, sighting, instantOf(sighting, move), countsMiles);
-  step.done = settled(before.held);
+  const step = startStep(context, before, sighting, instantOf(sighting, move));
+  step.done = settledRows(before.held);
   apply(step, move, before);
+  return { state: step.state, done: step.done };
+}
+
+/** A report that no train could bear out moves nothing. */
+function foldReport(context: FoldContext, before: FoldState, report: Report): FoldStep {
+  const { network } = context;
+  const { siteId, firstAt } = report;
+  if (before.previous && metresTooFar(network, before.previous, siteId, firstAt) !== null) {
+    return { state: before, done: noRows() };
+  }
+  const step = startStep(context, before, report, firstAt);
+  step.done = settledRows(before.held);
+  applyReport(step, report);
   return { state: step.state, done: step.done };
 }
 
@@ -67,68 +128,35 @@ function goOn(before: FoldState, { lastAt }: Sighting): FoldStep {
     ...before.stay,
     lastSeenAt: Math.max(before.stay.lastSeenAt, lastAt),
   };
-  return { state: { ...before, previous, stay }, done: { stays: [], legs: [] } };
+  return { state: { ...before, previous, stay }, done: noRows() };
 }
 
-/** Rows that later sightings may still change. */
+/** Rows that later facts may still change. */
 export function openRows(state: FoldState): FoldRows {
   return {
     stays: [...state.held.stays, ...(state.stay ? [state.stay] : [])],
     legs: [...state.held.legs, ...(state.leg ? [state.leg] : [])],
+    doubts: state.doubted ? [state.doubted.doubt] : [],
   };
 }
 
-interface Move {
-  kind: 'crossing' | 'presence' | 'spot';
-  from: Place;
-  to: Place;
-}
-
-function moveOf(network: Network, { readPointId, role, direction }: Sighting): Move {
-  const point = network.readPoint(readPointId);
-  const decreasing = standing(network, point.decreasingPlace);
-  const increasing = standing(network, point.increasingPlace);
-  if (point.kind === 'spot') {
-    const place = increasing ?? decreasing;
-    const track = role === 'crossing' ? null : (place?.track ?? point.track);
-    const at = place && { siteId: place.siteId, track };
-    return { kind: role === 'crossing' ? 'presence' : 'spot', from: at, to: at };
-  }
-  const kind = role === 'crossing' ? 'crossing' : 'presence';
-  return direction === 'decreasing'
-    ? { kind, from: increasing, to: decreasing }
-    : { kind, from: decreasing, to: increasing };
-}
-
-/** A place where units stand: at a line point they only go by. */
-function standing(network: Network, place: Place): Place {
-  return place && network.site(place.siteId).kind !== 'line' ? place : null;
-}
-
-/** A crossing's instant is its first read; that of a long passage out to the line, its last. */
-function instantOf(sighting: Sighting, { kind, from, to }: Move): number {
-  const leaves = kind === 'crossing' && from !== null && to === null;
-  const long = sighting.lastAt - sighting.firstAt > LONG_PASSAGE_MS;
-  return leaves && long ? sighting.lastAt : sighting.firstAt;
-}
-
 function startStep(
-  network: Network,
+  { network, companions, countsMiles }: FoldContext,
   before: FoldState,
-  sighting: Sighting,
+  fact: Fact,
   at: number,
-  countsMiles: boolean,
 ): Step {
   const stay = before.stay && { ...before.stay, arrivalFinalAt: null };
-  const state = { ...before, stay, drill: null, held: { stays: [], legs: [] } };
-  return { network, state, sighting, at, countsMiles, done: { stays: [], legs: [] } };
+  const state = { ...before, stay, drill: null, held: noRows() };
+  return { network, companions, state, fact, at, countsMiles, done: noRows() };
 }
 
 /** Rows whose drill was not struck: the departure stands. */
-function settled(held: FoldRows): FoldRows {
+function settledRows(held: FoldRows): FoldRows {
   return {
     stays: held.stays.map((stay) => ({ ...stay, departureFinalAt: null })),
     legs: [...held.legs],
+    doubts: [...held.doubts],
   };
 }
 
@@ -169,10 +197,11 @@ function crossBetween(
   to: NonNullable<Place>,
   before: FoldState,
 ): void {
-  const { network, sighting, at, state } = step;
+  const { network, fact, at, state } = step;
+  if (isReport(fact)) return;
   const earlier = step.done;
-  const finalAt = at + network.readPoint(sighting.readPointId).drillMinutes * MINUTE_MS;
-  step.done = { stays: [], legs: [] };
+  const finalAt = at + network.readPoint(fact.readPointId).drillMinutes * MINUTE_MS;
+  step.done = noRows();
   leave(step, from.siteId);
   arrive(step, to);
   if (state.stay) state.stay.arrivalFinalAt = finalAt;
@@ -180,9 +209,9 @@ function crossBetween(
   if (left) left.departureFinalAt = finalAt;
   state.held = step.done;
   state.drill = {
-    before: { ...before, drill: null, held: { stays: [], legs: [] } },
-    readPointId: sighting.readPointId,
-    direction: sighting.direction as Direction,
+    before: { ...before, drill: null, held: noRows() },
+    readPointId: fact.readPointId,
+    direction: fact.direction as Direction,
     at,
   };
   step.done = earlier;

@@ -1,26 +1,29 @@
-import type { EquipmentKind } from '../identifiers/equipment-groups.js';
-import {
-  Network,
-  type Configuration,
-  type ReadPointConfiguration,
-  type UnitRef,
-} from './configuration.js';
+import { Network, type Configuration, type UnitRef } from './configuration.js';
 import { directPasses } from './direct-passes.js';
-import { compareText, type UsableRead } from './evidence.js';
+import type { UsableRead } from './evidence.js';
 import { foldHistory, type UnitHistory } from './fold-history.js';
 import { nothingKnown } from './fold-state.js';
-import type { Sighting } from './fold-unit.js';
 import type { WheelRecord } from './own-direction.js';
+import { foldedUnit, kindsOf } from './kind-of-unit.js';
 import { pointRules } from './passages.js';
 import type { Pass } from './passes.js';
 import { foldVisits, type StrayPassage } from './refold-point.js';
 import { resolveRead, type LedgerRead } from './resolve-read.js';
+import type { Report } from './sighting.js';
+import { companionsIn, inOrder, reportsByUnit, sightingsByUnit } from './unit-facts.js';
 import { visitsOf, type Visit } from './visits.js';
 
 /** Everything that was ever reported, in any order, repeats included. */
 export interface Ledger {
   reads: readonly LedgerRead[];
   wheels: readonly (WheelRecord & { readPointId: number })[];
+  reports?: readonly LedgerReport[];
+}
+
+/** A report as the ledger keeps it: about whatever unit had that compact identity then. */
+export interface LedgerReport extends Omit<Report, 'firstAt' | 'lastAt'> {
+  identity: string;
+  at: number;
 }
 
 /** What the ledger means under one configuration. */
@@ -38,21 +41,15 @@ export function historyOf(ledger: Ledger, configuration: Configuration): History
   const network = new Network(configuration);
   const { passes, strays } = passesOf(network, ledger);
   directPasses(network, passes);
-  const sightings = new Map<UnitRef, UnitSighting[]>();
-  for (const [readPointId, ofPoint] of passes) {
-    const point = network.readPoint(readPointId);
-    for (const sighting of ofPoint.flatMap((pass) => sightingsOf(network, point, pass))) {
-      const known = sightings.get(sighting.unit);
-      if (known) known.push(sighting);
-      else sightings.set(sighting.unit, [sighting]);
-    }
-  }
+  const sightings = sightingsByUnit(network, passes);
+  const reports = reportsByUnit(network, ledger.reports ?? []);
+  const companionsOf = companionsIn(network, sightings);
+  const kinds = kindsOf({ passes, strays });
   const units = new Map<UnitRef, UnitHistory>();
-  for (const [unit, own] of sightings) {
-    own.sort(compareSightings);
-    const registered = network.unit(unit)?.registered ?? false;
-    const folded = { kind: kindOfUnit(own), registered };
-    units.set(unit, foldHistory(network, folded, nothingKnown(), own));
+  for (const unit of new Set([...sightings.keys(), ...reports.keys()])) {
+    const facts = inOrder(network, sightings.get(unit) ?? [], reports.get(unit) ?? []);
+    const folded = foldedUnit(network, kinds, unit);
+    units.set(unit, foldHistory(network, folded, nothingKnown(), facts, companionsOf(unit)));
   }
   return { passes, strays, units };
 }
@@ -78,32 +75,6 @@ function passesOf(network: Network, ledger: Ledger): Pick<History, 'passes' | 's
   return { passes, strays };
 }
 
-/** A sighting with what orders it among the unit's others. */
-export interface UnitSighting extends Sighting {
-  unit: UnitRef;
-  kind: EquipmentKind;
-  kindRank: number;
-  siteCode: string;
-  first: UsableRead;
-}
-
-/** Total order of sightings: time, site code, antenna number, tag. */
-export function compareSightings(a: UnitSighting, b: UnitSighting): number {
-  return (
-    a.firstAt - b.firstAt ||
-    compareText(a.siteCode, b.siteCode) ||
-    a.first.antenna - b.first.antenna ||
-    compareText(a.first.tag, b.first.tag)
-  );
-}
-
-/** Of what its sightings say of its kind, the word that counts most. */
-export function kindOfUnit(sightings: readonly UnitSighting[]): EquipmentKind {
-  const first = sightings[0] as UnitSighting;
-  return sightings.reduce((best, next) => (next.kindRank < best.kindRank ? next : best), first)
-    .kind;
-}
-
 function readsByPoint(network: Network, reads: readonly LedgerRead[]) {
   const points = new Map<number, Map<UnitRef, UsableRead[]>>();
   for (const read of reads) {
@@ -117,24 +88,4 @@ function readsByPoint(network: Network, reads: readonly LedgerRead[]) {
     known.push({ at: read.at, antenna: read.antenna, tag: read.tag });
   }
   return points;
-}
-
-/** The sightings that a pass gives its units. */
-export function sightingsOf(
-  network: Network,
-  point: ReadPointConfiguration,
-  pass: Pass,
-): UnitSighting[] {
-  return pass.members.map(({ passage, role, direction }) => ({
-    unit: passage.unit,
-    kind: passage.kind,
-    kindRank: passage.kindRank,
-    siteCode: network.site(point.siteId).code,
-    first: passage.first,
-    readPointId: point.id,
-    firstAt: passage.first.at,
-    lastAt: passage.lastAt,
-    role,
-    direction,
-  }));
 }

@@ -1,7 +1,7 @@
 import type { EquipmentKind } from '../identifiers/equipment-groups.js';
 import { QUIET_HOURS, type Direction, type Network } from './configuration.js';
-import type { FoldState } from './fold-state.js';
-import type { Sighting } from './fold-unit.js';
+import type { FoldState, Previous } from './fold-state.js';
+import type { PassKey } from './passes.js';
 
 /** Where a unit was last seen and what follows from that; instants in ms. */
 export interface LastSeen {
@@ -10,7 +10,10 @@ export interface LastSeen {
   /** Where it stands, left last, or (a line point) passed last. */
   siteId: number;
   track: string | null;
-  readPointId: number;
+  /** Null: no reader saw it there. */
+  readPointId: number | null;
+  pass: PassKey | null;
+  basis: Previous['basis'];
   direction: Direction | null;
   staySiteId: number | null;
   stayFirstSeenAt: number | null;
@@ -32,29 +35,31 @@ export interface FoldedUnit {
   registered: boolean;
 }
 
-/** The last-seen row after `sighting`, the last of a unit's sightings, led to `state`. */
+/** The last-seen row of a unit whose facts led to `state`; null when nobody has seen it. */
 export function lastSeenOf(
   network: Network,
   { kind, registered }: FoldedUnit,
   state: FoldState,
-  sighting: Sighting,
-): LastSeen {
+): LastSeen | null {
   const { stay, previous } = state;
-  if (!previous) throw new Error('a sighting always leaves a previous one');
+  if (!previous) return null;
   const open = stay?.departedAt === null ? stay : null;
   const limited = !NO_LIMITS.has(kind);
   const limitHours = open ? network.site(open.siteId).dwellLimitHours : 0;
+  const { at, siteId, readPointId, pass, basis, direction } = previous;
   return {
-    at: previous.at,
+    at,
     state: open ? 'onHand' : 'enRoute',
-    siteId: open?.siteId ?? previous.siteId,
+    siteId: open?.siteId ?? siteId,
     track: open?.track ?? null,
-    readPointId: sighting.readPointId,
-    direction: sighting.direction,
+    readPointId,
+    pass,
+    basis,
+    direction,
     staySiteId: stay?.siteId ?? null,
     stayFirstSeenAt: stay?.firstSeenAt ?? null,
     arrivedAt: open?.arrivedAt ?? null,
-    quietAt: registered && limited && !open ? previous.at + QUIET_HOURS * HOUR_MS : null,
+    quietAt: registered && limited && !open ? at + QUIET_HOURS * HOUR_MS : null,
     limitAt: limited && open ? (open.arrivedAt ?? open.firstSeenAt) + limitHours * HOUR_MS : null,
   };
 }

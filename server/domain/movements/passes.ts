@@ -15,6 +15,13 @@ export interface PassMember {
   basis: DirectionBasis | null;
 }
 
+/** What tells passes apart; `startedAt` in ms. */
+export interface PassKey {
+  readPointId: number;
+  startedAt: number;
+  ordinal: number;
+}
+
 /** A train or cut going by a read point: consecutive passages, each unit once. */
 export interface Pass {
   startedAt: number;

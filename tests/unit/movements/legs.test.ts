@@ -145,6 +145,8 @@ describe('last seen', () => {
       siteId: world.yardA,
       track: null,
       readPointId: world.leadA.id,
+      pass: { readPointId: world.leadA.id, startedAt: time('08:00'), ordinal: 0 },
+      basis: 'read',
       direction: 'decreasing',
       staySiteId: world.yardA,
       stayFirstSeenAt: time('08:00'),
