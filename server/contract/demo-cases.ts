@@ -16,7 +16,10 @@ export const demoCaseView = z
       }),
     ),
     site: namedSchema.nullable(),
-    screen: z.literal('setAside').nullable(),
+    screen: z
+      .enum(['setAside', 'doubts'])
+      .nullable()
+      .meta({ description: 'A section that shows it, for those who may open it.' }),
   })
   .meta({ id: 'DemoCase' });
 export type DemoCaseView = z.infer<typeof demoCaseView>;

@@ -83,6 +83,7 @@ const rows: Row[] = [
     'The right tag of the first car is on the second. Minutes after the first came to Sorrel Yard it is read at Pipit, 32 rail miles away: no train could have joined these, so it does not move.',
     [branchCars.robbed, branchCars.impostor],
     'PIPIT',
+    'doubts',
   ],
   [
     'runs-round',

@@ -38,7 +38,7 @@ export function DemoCasesPage() {
       )}
       <div className="inset pb-32 pt-20">
         {cases.data ? (
-          <CaseList cases={cases.data.data} screens={session.sections} />
+          <CaseList cases={cases.data.data} sections={session.sections} />
         ) : (
           <LoadingRows of="what to look at" rows={12} />
         )}

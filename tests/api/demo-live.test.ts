@@ -1,6 +1,7 @@
 import type { AddressInfo } from 'node:net';
 import type { Server } from 'node:http';
 import { afterEach, describe, expect, it, vi } from 'vitest';
+import { demoCredentials } from '../../server/simulator/demo-credentials.js';
 import { rotateReaderTokens } from '../../server/simulator/rotate-reader-tokens.js';
 import { startSimulator, type Simulator } from '../../server/simulator/start-simulator.js';
 import { trafficBetween } from '../../server/simulator/traffic.js';
@@ -50,6 +51,17 @@ async function stored() {
   return row;
 }
 
+/** How many movement and hand reports came in from that instant on. */
+async function toldSince(from: number): Promise<number> {
+  const since = new Date(from);
+  const [row] = await db.pool.query<{ n: number }[]>(
+    `SELECT (SELECT COUNT(*) FROM movement_reports WHERE received_at >= ?)
+       + (SELECT COUNT(*) FROM hand_reports WHERE received_at >= ?) AS n`,
+    [since, since],
+  );
+  return Number(row?.n ?? 0);
+}
+
 afterEach(async () => {
   await running.simulator?.stop();
   delete running.simulator;
@@ -82,6 +94,41 @@ describe('live traffic', () => {
     expect(wanted.reads).toBeGreaterThan(200);
     await vi.waitFor(async () => expect(await stored()).toEqual(wanted), 20_000);
     expect(errors).toEqual([]);
+  });
+
+  it('brings what railroad and clerk tell, each once, through their own doors', async () => {
+    await seedDemo(db);
+    const spans = [
+      { from: Date.UTC(2026, 1, 14, 5, 50), hours: 1 },
+      { from: Date.UTC(2026, 1, 14, 14, 10), hours: 1 },
+    ];
+    const errors: unknown[] = [];
+    for (const { from, hours } of spans) {
+      const clock = buildClock(new Date(from).toISOString());
+      const context = buildContext(db, { clock });
+      running.simulator = startSimulator({
+        address: `http://127.0.0.1:${await listen(context)}`,
+        ...(await demoCredentials(context)),
+        clock,
+        onError: (error) => errors.push(error),
+        intervalMs: 5,
+      });
+      clock.advance(hours * 60 * MINUTE);
+      const told = trafficBetween(from, from + hours * 60 * MINUTE);
+      const wanted = told.filter(({ kind }) => kind === 'report' || kind === 'hand').length;
+      expect(wanted).toBeGreaterThan(0);
+      await vi.waitFor(async () => expect(await toldSince(from)).toBe(wanted), 20_000);
+      await running.simulator.stop();
+      await hangUp();
+    }
+    expect(errors).toEqual([]);
+    const reported = await db.pool.query<{ unit: string; seen: number; by: string }[]>(
+      `SELECT h.unit_compact AS unit, h.seen, p.email AS \`by\`
+         FROM hand_reports h JOIN people p ON p.id = h.reported_by`,
+    );
+    expect(reported).toEqual([
+      { unit: world.branchCars.byHand, seen: 1, by: 'clerk@fishplate.example' },
+    ]);
   });
 
   it('waits out a server that is away and then sends what it kept', async () => {

@@ -113,6 +113,12 @@ describe('the backfill of two days', () => {
     expect(seen[0]).toMatchObject({ total: 48, unit: 'hours of traffic' });
     expect(seen.at(-1)).toEqual({ done: stored, total: stored, unit: 'reads taken up' });
 
+    const held = await db.pool.query<{ code: string }[]>('SELECT DISTINCT code FROM held');
+    const reasons = held.map(({ code }) => code);
+    expect(reasons).toEqual(
+      expect.arrayContaining(['unmapped-epc', 'check-failed', 'not-equipment', 'unknown-antenna']),
+    );
+
     const found = await foundInDatabase(db);
     const truth = truthBetween(until.getTime() - 2 * DAY, until.getTime() - 3 * HOUR);
     const sensors = agreementOf(found, truth, 'sensors');

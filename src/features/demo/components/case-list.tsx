@@ -2,8 +2,13 @@ import { Link } from 'react-router-dom';
 import { paths } from '../../../lib/paths';
 import type { DemoCaseView } from '../../../lib/wire';
 
+const screens = {
+  setAside: { word: 'Set aside', to: paths.setAside() },
+  doubts: { word: 'Doubts', to: paths.doubts },
+};
+
 /** Every case in a line or two, and beside it what shows it. */
-export function CaseList({ cases, screens }: { cases: DemoCaseView[]; screens: string[] }) {
+export function CaseList({ cases, sections }: { cases: DemoCaseView[]; sections: string[] }) {
   return (
     <ol className="border-t border-rule-strong">
       {cases.map((each) => (
@@ -16,7 +21,7 @@ export function CaseList({ cases, screens }: { cases: DemoCaseView[]; screens: s
             <h2 className="font-medium">{each.title}</h2>
             <p className="text-ink-soft">{each.says}</p>
           </div>
-          <Where each={each} mayOpen={each.screen !== null && screens.includes(each.screen)} />
+          <Where each={each} mayOpen={each.screen !== null && sections.includes(each.screen)} />
         </li>
       ))}
     </ol>
@@ -33,9 +38,10 @@ function Where({ each, mayOpen }: { each: DemoCaseView; mayOpen: boolean }) {
         </li>
       ))}
       {site ? <li className="py-4">{site.name}</li> : null}
-      {screen === 'setAside' ? (
+      {screen ? (
         <li className="py-4">
-          {mayOpen ? <Link to={paths.setAside()}>Set aside</Link> : 'Set aside (administrator)'}
+          {mayOpen ? <Link to={screens[screen].to}>{screens[screen].word}</Link> : null}
+          {mayOpen ? null : `${screens[screen].word} (not among your sections)`}
         </li>
       ) : null}
     </ul>
