@@ -7,7 +7,7 @@ import { modelsOf } from '../models/index.js';
 import type { Organisation } from '../models/organisation.js';
 import type { Tag } from '../models/tag.js';
 import type { Unit } from '../models/unit.js';
-import { unitIdsByCompact } from './unit-ids-by-compact.js';
+import { registeredIdsByCompact } from './registered-ids-by-compact.js';
 
 /** A registered unit with what belongs to it. */
 export interface RegisteredUnit {
@@ -40,7 +40,7 @@ export async function listRegister(
 /** The registered units with these compact identities, in that order; others are left out. */
 export async function findRegistered(db: Database, compacts: string[]): Promise<RegisteredUnit[]> {
   const { Organisation, Unit } = modelsOf(db.sequelize);
-  const ids = await unitIdsByCompact(db, compacts);
+  const ids = await registeredIdsByCompact(db, compacts);
   const units = await Unit.findAll({
     where: { id: [...new Set(ids.values())], registered: true },
     include: [{ model: Organisation, as: 'owner', attributes: ['id', 'code'] }],

@@ -14,6 +14,7 @@ import { namingChanges, type NamingChange } from './naming-change.js';
 import { planRegisterRework } from './plan-register-rework.js';
 import { readIdentity } from './read-identity.js';
 import { unitDisplay } from './unit-display.js';
+import { requeueReports } from './requeue-reports.js';
 import { writeIdentities } from './write-identities.js';
 
 /**
@@ -36,6 +37,7 @@ export async function renumberUnit(
     const before = await unitDisplay(db, unitId, transaction);
     const changes = await giveIdentity(db, unitId, identity, input.from, transaction);
     const words = `${before} renumbered ${identity.display}`;
+    await requeueReports(transaction, changes, now);
     await planRegisterRework(transaction, { words, requestedBy, names: changes });
     return { compact: identity.compact, changes };
   });

@@ -14,6 +14,7 @@ import { placeIdentities } from './place-identities.js';
 import { namesOf, planRegisterRework, type RegisteredKind } from './plan-register-rework.js';
 import { readRegisterItems, type RegisterItem } from './read-register-items.js';
 import { replaceTags } from './replace-tags.js';
+import { requeueReports } from './requeue-reports.js';
 
 /** Compact identities in the order of the batch, and the ids of the units they now name. */
 export interface Registered {
@@ -48,6 +49,7 @@ export async function upsertRegister(
     const unitIds = await withNewUnits(db, compacts, known, transaction);
     const numbers = await placeIdentities(db, parsed, unitIds, transaction);
     const tags = await replaceTags(db, parsed, unitIds, transaction);
+    await requeueReports(transaction, numbers, now);
     await planRegisterRework(transaction, {
       words: `Register: ${namesOf(items.map(({ identity }) => identity.display))}`,
       requestedBy,
