@@ -26,12 +26,12 @@ export const defaultIngestLimits: IngestLimits = {
  * Counts what each token sends: requests and reads a second, and the bytes under way. All throw a
  * 429 problem when it is too much, and 503 when all tokens together have too much under way.
  */
-export function ingestMeter(limits: IngestLimits) {
+export function ingestMeter(limits: IngestLimits, what: 'reads' | 'reports' = 'reads') {
   const requests = new RateLimiterMemory({ points: limits.requestsPerSecond, duration: 1 });
   const reads = new RateLimiterMemory({ points: limits.readsPerSecond, duration: 1 });
   return {
     countRequest: (tokenId: number) => consume(requests, tokenId, 1, 'requests'),
-    countReads: (tokenId: number, count: number) => consume(reads, tokenId, count, 'reads'),
+    countReads: (tokenId: number, count: number) => consume(reads, tokenId, count, what),
     countBytes: bytesUnderWay(limits),
   };
 }

@@ -1,4 +1,4 @@
-import { Router, type RequestHandler } from 'express';
+import { Router, type Request, type RequestHandler, type Response } from 'express';
 import { heartbeatBody } from '../contract/heartbeat.js';
 import { forbidden } from '../errors.js';
 import { ingestHeartbeat } from '../ingest/ingest-heartbeat.js';
@@ -21,6 +21,8 @@ export function ingestHeartbeatRoutes(context: Context, limits?: Partial<IngestL
     await meter.countRequest(readerOf(request).tokenId);
     next();
   };
+  const bytesOf = (request: Request, response: Response) =>
+    meter.countBytes(readerOf(request).tokenId, response);
   // Asked again once the body is in: who lost the token meanwhile says nothing more.
   const guard = requireReader(context);
   const router = Router();
@@ -28,7 +30,7 @@ export function ingestHeartbeatRoutes(context: Context, limits?: Partial<IngestL
     '/ingest/heartbeat',
     guard,
     countRequest,
-    jsonBody(MOST_BYTES, bounds.idleMs),
+    jsonBody(MOST_BYTES, bounds.idleMs, bytesOf),
     guard,
     validate(beat),
     async (request, response) => {

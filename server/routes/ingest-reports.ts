@@ -1,4 +1,4 @@
-import { Router, type RequestHandler } from 'express';
+import { Router, type Request, type RequestHandler, type Response } from 'express';
 import { INGEST_BOUNDS } from '../contract/ingest.js';
 import { reportsAnswer, reportsBody, reportsEnvelope } from '../contract/movement-reports.js';
 import { tooLarge } from '../errors.js';
@@ -16,11 +16,13 @@ const envelope = { body: reportsEnvelope };
 export function ingestReportsRoutes(context: Context, limits?: Partial<IngestLimits>): Router {
   const { env, db, clock } = context;
   const bounds = { ...defaultIngestLimits, ...limits };
-  const meter = ingestMeter(bounds);
+  const meter = ingestMeter(bounds, 'reports');
   const countRequest: RequestHandler = async (request, _response, next) => {
     await meter.countRequest(reporterOf(request).tokenId);
     next();
   };
+  const bytesOf = (request: Request, response: Response) =>
+    meter.countBytes(reporterOf(request).tokenId, response);
   // Asked again once the body is in: who lost the token meanwhile reports nothing more.
   const guard = requireReporter(context);
   const router = Router();
@@ -28,7 +30,7 @@ export function ingestReportsRoutes(context: Context, limits?: Partial<IngestLim
     '/ingest/reports',
     guard,
     countRequest,
-    jsonBody(INGEST_BOUNDS.bytes, bounds.idleMs),
+    jsonBody(INGEST_BOUNDS.bytes, bounds.idleMs, bytesOf),
     guard,
     validate(envelope),
     async (request, response) => {

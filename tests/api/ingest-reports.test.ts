@@ -2,6 +2,7 @@ import { createHash } from 'node:crypto';
 import request from 'supertest';
 import { beforeEach, describe, expect, test } from 'vitest';
 import type { Site } from '../../server/models/site.js';
+import { replaceReportToken } from '../../server/services/replace-report-token.js';
 import { buildClock, buildContext } from '../support/context.js';
 import { useTestDatabase } from '../support/database.js';
 import { buildOrganisation, buildPerson, buildSite, signIn } from '../support/factories.js';
@@ -278,6 +279,32 @@ describe('a body that is refused whole', () => {
     const answer = await postReports(limited, fast.token, body(report())).expect(429);
     expect(Number(answer.headers['retry-after'])).toBeGreaterThanOrEqual(1);
     await postReports(limited, other.token, body()).expect(200);
+    expect(await storedReports(db)).toEqual([]);
+  });
+
+  test('429 for reports beyond those of a second, and for bytes beyond those under way', async () => {
+    const { token } = await buildReporter(context);
+    const few = buildIngestApp(context, { readsPerSecond: 1 });
+    const answer = await postReports(few, token, body(report(), report())).expect(429);
+    expect(answer.body.detail).toContain('1 reports a second');
+    const narrow = buildIngestApp(context, { bytesUnderWay: 100 });
+    await postReports(narrow, token, body(report())).expect(429);
+    await postReports(narrow, token, { source: 'a', reports: [] }).expect(200);
+    expect(await storedReports(db)).toEqual([]);
+  });
+
+  test('401 for a token that ends while the body is on its way', async () => {
+    const { token, organisation } = await buildReporter(context);
+    const sent = JSON.stringify(body(report()));
+    const slow = request(app)
+      .post('/api/ingest/reports')
+      .auth(token, { type: 'bearer' })
+      .set('Content-Type', 'application/json')
+      .set('Transfer-Encoding', 'chunked');
+    slow.write(sent.slice(0, 20));
+    await replaceReportToken(context, organisation.id);
+    slow.write(sent.slice(20));
+    await slow.expect(401);
     expect(await storedReports(db)).toEqual([]);
   });
 });
