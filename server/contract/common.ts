@@ -35,14 +35,14 @@ export const codeSchema = z
   .string()
   .regex(/^[A-Z0-9]{1,16}$/, 'must be 1 to 16 capital letters or digits');
 
-/** Text for people: trimmed, never empty, no control characters. */
+/** Text for people: trimmed, never empty, no control characters, no halves of characters. */
 export const textSchema = (most: number) =>
   z
     .string()
     .trim()
     .min(1, 'must not be empty')
     .max(most, `must have at most ${most} characters`)
-    .regex(/^\P{Cc}*$/u, 'must not contain control characters');
+    .regex(/^[^\p{Cc}\p{Cs}]*$/u, 'must not contain control characters');
 
 /** An instant as RFC 3339 text, as every answer carries it. */
 export const instantSchema = z.iso.datetime({ offset: true });

@@ -33,13 +33,14 @@ export function parseJson(text: string): unknown {
   return value;
 }
 
+const MOST_REPEATS_TOLD = 100;
+
 function refuseRepeats(keys: string[]): void {
-  if (new Set(keys).size === keys.length) return;
   const seen = new Set<string>();
+  const repeated = new Set(keys.filter((key) => seen.size === seen.add(key).size));
   const faults = new Faults();
-  for (const key of keys) {
-    if (seen.has(key)) faults.add(pointerOf([key]), 'is given twice');
-    seen.add(key);
+  for (const key of [...repeated].slice(0, MOST_REPEATS_TOLD)) {
+    faults.add(pointerOf([key]), 'is given twice');
   }
   faults.refuse();
 }
