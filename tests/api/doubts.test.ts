@@ -2,13 +2,17 @@ import { beforeEach, describe, expect, test } from 'vitest';
 import { createApp } from '../../server/app.js';
 import { doubtsAnswer, unitDoubtsAnswer } from '../../server/contract/doubts.js';
 import { aarIdentity } from '../../server/domain/identifiers/identity.js';
+import { ingestReads } from '../../server/ingest/ingest-reads.js';
+import { modelsOf } from '../../server/models/index.js';
 import type { Organisation } from '../../server/models/organisation.js';
 import type { ReadPoint } from '../../server/models/read-point.js';
 import type { Site } from '../../server/models/site.js';
 import type { Unit } from '../../server/models/unit.js';
+import { createProjector } from '../../server/projections/projector.js';
 import { buildContext } from '../support/context.js';
 import { useTestDatabase } from '../support/database.js';
 import {
+  buildAntenna,
   buildOrganisation,
   buildPerson,
   buildReadPoint,
@@ -135,6 +139,66 @@ describe('doubts of one car', () => {
     expect((await elsewhere.agent.get(UNIT).expect(200)).body.data).toEqual([]);
     const stranger = await agentOf({ roles: ['owner'] });
     await stranger.agent.get(UNIT).expect(404);
+  });
+});
+
+describe('what the projector leaves', () => {
+  async function read(site: Site, numbers: number[], at: Date): Promise<void> {
+    const reads = numbers.map((number) => ({ antenna: 1, tag: `QTKX ${number}`, readAt: at }));
+    await ingestReads(db, { site, reads: JSON.parse(JSON.stringify(reads)), receivedAt: NOW });
+    const context = buildContext(db);
+    context.clock.set(NOW);
+    const projector = createProjector(context);
+    await projector.drain();
+    await projector.stop();
+  }
+
+  beforeEach(async () => {
+    await buildAntenna(db, { readPoint: northLead, number: 1 });
+    await buildAntenna(db, { readPoint: eastLead, number: 1 });
+    const { RouteEdge, RouteNode } = modelsOf(db.sequelize);
+    const nodes = [alder, cairn].map(({ id, code, name }) =>
+      RouteNode.create({ code, name, siteId: id, latitude: 45, longitude: -93 }),
+    );
+    const [toNodeId = 0, fromNodeId = 0] = (await Promise.all(nodes)).map((node) => node.id);
+    const edge = { fromNodeId, toNodeId, railMetres: 120_000, kind: 'rail', line: 'Main' };
+    await RouteEdge.create(edge);
+    await db.pool.query('UPDATE config_state SET version = version + 1 WHERE id = 1');
+  });
+
+  test('of a car read 120 km away ten minutes later: it has not moved, and both are kept', async () => {
+    await read(cairn, [1], hoursAgo(3));
+    await read(alder, [1], hoursAgo(3 - 1 / 6));
+    const { agent } = await agentOf();
+    const { body } = await agent.get(UNIT).expect(200);
+    expect(body.data).toEqual([
+      {
+        ...inDoubt,
+        at: hoursAgo(3 - 1 / 6).toISOString(),
+        previous: { ...inDoubt.previous, at: hoursAgo(3).toISOString(), railMetres: 120_000 },
+      },
+    ]);
+    const shown = await agent.get('/api/equipment/QTKX1').expect(200);
+    expect(shown.body.data.lastSeen).toMatchObject({
+      at: hoursAgo(3).toISOString(),
+      readPoint: { code: 'E1' },
+    });
+    const sightings = await agent.get('/api/equipment/QTKX1/sightings').expect(200);
+    expect(sightings.body.data).toHaveLength(2);
+  });
+
+  test('of five cars at one site within a day is a matter of its clock', async () => {
+    for (const number of [1, 2, 3, 4, 5]) {
+      await read(cairn, [number], hoursAgo(10 - number));
+      await read(alder, [number], hoursAgo(10 - number - 0.1));
+    }
+    const { agent } = await agentOf();
+    const { body } = await agent.get('/api/doubts').expect(200);
+    expect(body.counts).toEqual({
+      doubts: 5,
+      units: 5,
+      clocks: [{ code: 'ALDER', name: 'Alder Bend Yard', units: 5 }],
+    });
   });
 });
 
