@@ -20,12 +20,15 @@ export function prepare(dir) {
   const place = {
     dir,
     data: path.join(dir, 'data'),
+    // Its own: at its start a MariaDB removes temporary tables, also those of a running neighbour.
+    temporary: path.join(dir, 'tmp'),
     log: path.join(dir, 'mariadb.log'),
     pidFile: path.join(dir, 'mariadb.pid'),
     passwordFile: path.join(dir, 'password'),
     account: null,
   };
   mkdirSync(place.data, { recursive: true, mode: 0o700 });
+  mkdirSync(place.temporary, { recursive: true, mode: 0o700 });
   place.account = accountFor(place);
   return place;
 }
@@ -63,6 +66,7 @@ function own(place, account) {
     }
   };
   hand(place.data);
+  hand(place.temporary);
   if (existsSync(place.log)) lchownSync(place.log, account.uid, account.gid);
   return account;
 }
@@ -79,6 +83,7 @@ export function bootstrap(place, installer) {
   const options = [
     '--no-defaults',
     `--datadir=${fresh}`,
+    `--tmpdir=${place.temporary}`,
     '--auth-root-authentication-method=socket',
     '--skip-test-db',
     '--skip-name-resolve',

@@ -104,6 +104,7 @@ async function launch(program, place, { port, bufferPoolMb, durable, parameters,
     [
       '--no-defaults',
       `--datadir=${place.data}`,
+      `--tmpdir=${place.temporary}`,
       `--socket=${path.join(socketDir, 's')}`,
       `--pid-file=${path.join(socketDir, 'pid')}`,
       `--init-file=${initFile}`,
