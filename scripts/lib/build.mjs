@@ -16,8 +16,6 @@ const sources = [
   'vite.config.ts',
 ];
 const dist = path.join(root, 'dist');
-// Vite's own way would write beside the packages, which may be somebody else's.
-const build = ['build', '--logLevel', 'warn', '--configLoader', 'runner'];
 const stamp = path.join(dist, 'built-from');
 
 /** Builds client and server into dist/, unless they were built from these very sources. */
@@ -29,8 +27,8 @@ export async function ensureBuilt() {
     if (readHolder(stamp) === wanted) return 'unchanged';
     rmSync(stamp, { force: true });
     const env = environment({ NODE_ENV: 'production' });
-    await runTool('vite', build, { env });
-    await runTool('vite', [...build, '--ssr'], { env });
+    await runTool('vite', ['build', '--logLevel', 'warn'], { env });
+    await runTool('vite', ['build', '--logLevel', 'warn', '--ssr'], { env });
     writeFileSync(stamp, wanted);
     return 'built';
   } finally {
