@@ -15,14 +15,14 @@ const db = openDatabase(mariadb.url, { connections: 3 });
 afterAll(() => db.close());
 const launch = useServerProcesses();
 const isLong = import.meta.env.TEST_MODE === 'long';
-const READS = isLong ? 6_000 : 1_200;
+const READS = isLong ? 6_000 : 1_000;
 const ENDS = Array.from({ length: isLong ? 10 : 2 }, (_, index) =>
   index % 2 ? ('SIGKILL' as const) : ('SIGTERM' as const),
 );
 
 it(
   'is answered 503 while the database is away, and each read is stored once when it is back',
-  { timeout: 300_000 },
+  { timeout: isLong ? 900_000 : 300_000 },
   async () => {
     const random = new SeededRandom(601);
     const { configuration, ledger: drawn } = disorderedCase(601, READS);

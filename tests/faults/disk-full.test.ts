@@ -44,7 +44,7 @@ afterAll(async () => {
 });
 const launch = useServerProcesses();
 const isLong = import.meta.env.TEST_MODE === 'long';
-const READS = isLong ? 12_000 : 1_500;
+const READS = isLong ? 12_000 : 1_000;
 const ROUNDS = isLong ? 4 : 1;
 const DISK_FULL = 1114;
 
@@ -70,7 +70,7 @@ async function fillDisk(): Promise<void> {
 
 it(
   'keeps what was acknowledged while the disk is full, refuses the rest with 503, and takes it later',
-  { timeout: 300_000 },
+  { timeout: isLong ? 900_000 : 300_000 },
   async () => {
     const random = new SeededRandom(701);
     const { configuration, ledger: drawn } = disorderedCase(701, READS);

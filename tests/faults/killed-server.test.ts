@@ -14,12 +14,12 @@ const db = useTestDatabase();
 const launch = useServerProcesses();
 const isLong = import.meta.env.TEST_MODE === 'long';
 const SEEDS = Array.from({ length: isLong ? 12 : 1 }, (_, index) => 301 + index);
-const READS = isLong ? 6_000 : 1_500;
-const KILLS = isLong ? 12 : 4;
+const READS = isLong ? 6_000 : 1_200;
+const KILLS = isLong ? 12 : 3;
 
 it.each(SEEDS)(
   'loses and doubles nothing when the server is killed again and again (seed %i)',
-  { timeout: 300_000 },
+  { timeout: isLong ? 900_000 : 300_000 },
   async (seed) => {
     const random = new SeededRandom(seed);
     const { configuration, ledger: drawn } = disorderedCase(seed, READS);

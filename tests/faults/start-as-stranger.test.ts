@@ -50,11 +50,12 @@ function copyTree(): string {
   return tree;
 }
 
-/** The packages stay root's, and nobody has looked through them yet. */
+/** The packages stay root's, and nobody has looked through them or built with them yet. */
 function bringPackages(directory: string): void {
   const own = path.join(root, 'node_modules');
   mkdirSync(directory);
-  const names = readdirSync(own).filter((name) => name !== '.fishplate-packages');
+  const kept = ['.bin', '.package-lock.json'];
+  const names = readdirSync(own).filter((name) => !name.startsWith('.') || kept.includes(name));
   for (const name of names) {
     const [from, to] = [path.join(own, name), path.join(directory, name)];
     if (isReadableByAll(root)) symlinkSync(from, to);
