@@ -117,9 +117,9 @@ it(
     const pidFile = path.join(tree, '.data/mariadb/mariadb.pid');
     const [pid] = readFileSync(pidFile, 'utf8').split(':');
     expect(statSync(`/proc/${pid}`).uid).toBe(uid);
-    expect(readFileSync(`/proc/${pid}/cmdline`, 'utf8')).toContain(
-      hidden.env['FISHPLATE_PROGRAMS'],
-    );
+    const command = readFileSync(`/proc/${pid}/cmdline`, 'utf8');
+    expect(command).toContain(hidden.env['FISHPLATE_PROGRAMS']);
+    expect(command).toContain(`--tmpdir=${path.join(tree, '.data/mariadb/tmp')}`);
     for (const file of ['.data/mariadb/data', '.data/session-secret', '.data/server.log']) {
       expect(statSync(path.join(tree, file)).uid, file).toBe(uid);
     }
