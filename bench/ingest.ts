@@ -12,6 +12,7 @@ import { modelsOf } from '../server/models/index.js';
 import { buildAntenna, buildReadPoint, buildSite } from '../tests/support/factories.js';
 import { migrate } from '../tests/support/migrations.js';
 import { trainRequests, type BenchRead } from './lib/ingest-traffic.js';
+import { postReads } from './lib/post-reads.js';
 
 const WRITERS = 4;
 const READS_PER_REQUEST = 500;
@@ -170,7 +171,7 @@ async function sendAll(senders: Sender[], port: number): Promise<number> {
   const rate = await rateOf(
     senders.map(({ token }, writer) => async () => {
       for (const body of bodies[writer] ?? []) {
-        const answer = await post({ agent, port, token, body });
+        const answer = await postReads({ agent, port, token, body });
         if (
           answer !==
           `{"accepted":${READS_PER_REQUEST},"duplicates":0,"held":0,"rejected":0,"problems":[]}`
@@ -181,25 +182,6 @@ async function sendAll(senders: Sender[], port: number): Promise<number> {
   );
   agent.destroy();
   return rate;
-}
-
-function post(options: { agent: http.Agent; port: number; token: string; body: Buffer }) {
-  const { agent, port, token, body } = options;
-  return new Promise<string>((resolve, reject) => {
-    const headers = {
-      Authorization: `Bearer ${token}`,
-      'Content-Type': 'application/json',
-      'Content-Length': body.length,
-    };
-    const address = { agent, port, host: '127.0.0.1', path: '/api/ingest/reads', headers };
-    const request = http.request({ ...address, method: 'POST' }, (response) => {
-      let text = '';
-      response.on('data', (chunk: Buffer) => (text += chunk.toString()));
-      response.on('end', () => resolve(text));
-    });
-    request.on('error', reject);
-    request.end(body);
-  });
 }
 
 /** Reads a second while all writers go at once. */
