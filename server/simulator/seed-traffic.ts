@@ -15,7 +15,7 @@ import {
   type Batch,
 } from './batches.js';
 import { whoTells, type WhoTells } from './who-tells.js';
-import { Traffic } from './traffic.js';
+import { Traffic, type Sent } from './traffic.js';
 import { world } from './world.js';
 
 const HOUR = 3_600_000;
@@ -35,8 +35,8 @@ export interface SeedOptions {
   until: Date;
   /** At most this many days back; 45 unless said otherwise. */
   days?: number;
-  /** Takes in the traffic of these sites alone; of all unless said otherwise. */
-  only?: readonly string[];
+  /** Takes in this part of the traffic alone; all of it unless said otherwise. */
+  only?: (sent: Sent) => boolean;
   onProgress?: (progress: SeedProgress) => void;
 }
 
@@ -67,7 +67,7 @@ export async function seedTraffic(context: Context, options: SeedOptions): Promi
 
 /** The first half of `seedTraffic`: the reads are in the queue, and nothing is made of them yet. */
 export async function feedTraffic(context: Context, options: SeedOptions): Promise<number> {
-  const { until, days = 45, only, onProgress = () => undefined } = options;
+  const { until, days = 45, only = () => true, onProgress = () => undefined } = options;
   const doors = { sites: await demoSites(context.db), tellers: await whoTells(context.db) };
   const to = until.getTime();
   const last = await lastReceived(context.db, doors.sites);
@@ -77,7 +77,7 @@ export async function feedTraffic(context: Context, options: SeedOptions): Promi
   let stored = 0;
   for (let at = from; at < to; at += SLICE_MS) {
     const end = Math.min(at + SLICE_MS, to);
-    const sent = traffic.between(at, end).filter(({ site }) => only?.includes(site) ?? true);
+    const sent = traffic.between(at, end).filter(only);
     stored += await takeIn(context, doors, sent);
     onProgress({ done: Math.ceil((end - from) / HOUR), total, unit: 'hours of traffic' });
   }

@@ -14,7 +14,7 @@ import { buildPerson, signIn } from '../support/factories.js';
 const HOUR = 3_600_000;
 /** Two rounds of the branch and most of a third; every fault that comes in some rounds alone. */
 const span = { from: Date.UTC(2026, 1, 10), until: Date.UTC(2026, 1, 18, 9) };
-const branch = ['ROWAN', 'SORREL', 'LINNET', 'PIPIT', 'BRYONY', 'ALDER'];
+const branch = ['ROWAN', 'SORREL', 'LINNET', 'PIPIT', 'BRYONY'];
 const { branchCars } = world;
 const db = useTestDatabase();
 
@@ -172,12 +172,16 @@ describe('what to look at in the demo', () => {
   beforeEach(() => vi.useFakeTimers({ toFake: ['Date'], now: span.until }));
   afterEach(() => vi.useRealTimers());
 
-  test('is really there, on the car that is named', async () => {
+  test('is really there, on the car that is named', { timeout: 120_000 }, async () => {
     await seedDemo(db);
     const until = new Date(span.until);
     const context = buildContext(db, { clock: buildClock(until.toISOString()) });
     const days = (span.until - span.from) / (24 * HOUR);
-    await seedTraffic(context, { until, days, only: branch });
+    await seedTraffic(context, {
+      until,
+      days,
+      only: ({ kind, site }) => kind === 'hand' || branch.includes(site),
+    });
     expect(Object.keys(shows).sort()).toEqual(demoCases.map(({ id }) => id).sort());
     const found: Record<string, boolean> = {};
     for (const { id } of demoCases) found[id] = (await shows[id]?.()) ?? false;
