@@ -38,7 +38,7 @@ export async function writeHistories(
     columns: STAY_COLUMNS,
     orderedBy: 'first_seen_at',
     key: ['unit_id', 'first_seen_at', 'site_id'],
-    isChangeable: ({ includes }, firstSeenAt, siteId) => includes({ siteId, firstSeenAt }),
+    isChangeable: (own, firstSeenAt, siteId) => own.includes({ siteId, firstSeenAt }),
     rowsOf: ({ start, history }) => history.stays.map((stay) => stayValues(start.unitId, stay)),
     former: rememberFormerStays,
   });
@@ -47,7 +47,7 @@ export async function writeHistories(
     columns: LEG_COLUMNS,
     orderedBy: 'to_first_seen_at',
     key: ['unit_id', 'to_first_seen_at', 'to_site_id'],
-    isChangeable: ({ includes }, firstSeenAt, siteId) => includes({ siteId, firstSeenAt }),
+    isChangeable: (own, firstSeenAt, siteId) => own.includes({ siteId, firstSeenAt }),
     rowsOf: ({ start, history }) => history.legs.map((leg) => legValues(start.unitId, leg)),
   });
   await writeDifferences(connection, units, {

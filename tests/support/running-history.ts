@@ -5,7 +5,6 @@ import {
   type UnitRef,
 } from '../../server/domain/movements/configuration.js';
 import { directPasses } from '../../server/domain/movements/direct-passes.js';
-import type { UsableRead } from '../../server/domain/movements/evidence.js';
 import { foldHistory, type UnitHistory } from '../../server/domain/movements/fold-history.js';
 import { changeableFrom, nothingKnown } from '../../server/domain/movements/fold-state.js';
 import type { EquipmentKind } from '../../server/domain/identifiers/equipment-groups.js';
@@ -20,21 +19,22 @@ import {
   sightingsByUnit,
   type UnitSighting,
 } from '../../server/domain/movements/unit-facts.js';
+import { differences, markCompanions, passText, touchedBy, type Members } from './what-changed.js';
 import { WHEEL_REACH_MS } from '../../server/domain/movements/own-direction.js';
 import {
   hasSeveralOffsets,
   pointRules,
   type Passage,
 } from '../../server/domain/movements/passages.js';
-import type { Pass, PassKey } from '../../server/domain/movements/passes.js';
+import type { Pass } from '../../server/domain/movements/passes.js';
 import {
   reachOfChange,
   refoldPoint,
   withFresh,
   type StrayPassage,
 } from '../../server/domain/movements/refold-point.js';
-import { resolveRead } from '../../server/domain/movements/resolve-read.js';
-import { ALONE_MS, BESIDE_MS, PARALLEL_MS } from '../../server/domain/movements/strays.js';
+import { ALONE_MS, PARALLEL_MS } from '../../server/domain/movements/strays.js';
+import { usableReads } from './usable-reads.js';
 import { visitsOf, type Visit } from '../../server/domain/movements/visits.js';
 
 type Wheel = Ledger['wheels'][number];
@@ -87,7 +87,7 @@ export class RunningHistory {
     const after = this.members();
     const known = this.known();
     const dirty = differences(before, after);
-    companionsOf(known, before, after, dirty);
+    markCompanions(known.sightings, before, after, dirty);
     for (const [unit, own] of reportsByUnit(this.network, portion.reports ?? [])) {
       const from = Math.min(...own.map(({ firstAt }) => firstAt));
       dirty.set(unit, Math.min(dirty.get(unit) ?? Infinity, from));
@@ -96,7 +96,7 @@ export class RunningHistory {
   }
 
   private factsOf(readPointId: number, portion: Ledger): Facts | null {
-    const reads = this.usableReads(readPointId, portion);
+    const reads = usableReads(this.network, readPointId, portion);
     const records = portion.wheels.filter((record) => record.readPointId === readPointId);
     const times = [...reads.values()].flat().map((read) => read.at);
     const since = Math.min(...times, ...records.map((one) => one.startedAt - WHEEL_REACH_MS));
@@ -187,19 +187,6 @@ export class RunningHistory {
     return members;
   }
 
-  private usableReads(readPointId: number, portion: Ledger): Map<UnitRef, UsableRead[]> {
-    const reads = new Map<UnitRef, UsableRead[]>();
-    for (const read of portion.reads) {
-      const named = resolveRead(this.network, read);
-      const unit = named?.unit ?? named?.identity?.compact;
-      if (named?.readPointId !== readPointId || unit === undefined) continue;
-      const own = reads.get(unit) ?? [];
-      reads.set(unit, own);
-      own.push({ at: read.at, antenna: read.antenna, tag: read.tag });
-    }
-    return reads;
-  }
-
   private foldUnit(unit: UnitRef, from: number, known: Known): void {
     const own = known.sightings.get(unit) ?? [];
     const facts = inOrder(this.network, own, known.reports.get(unit) ?? []);
@@ -261,68 +248,10 @@ interface Known {
   kinds: Map<UnitRef, EquipmentKind>;
 }
 
-/** Companions of changed passages: there, and where the same unit was seen next. */
-function companionsOf(
-  { sightings }: Known,
-  before: Members,
-  after: Members,
-  dirty: Map<UnitRef, number>,
-): void {
-  const passes = new Set<string>();
-  for (const [key, member] of [...before, ...after]) {
-    if (before.get(key)?.value === after.get(key)?.value) continue;
-    passes.add(member.pass);
-    const own = sightings.get(member.unit) ?? [];
-    const next = own.find(({ firstAt }) => firstAt > member.at);
-    if (next) passes.add(passText(next.pass));
-    for (const one of own.filter(({ firstAt }) => firstAt === member.at)) {
-      passes.add(passText(one.pass));
-    }
-  }
-  for (const member of after.values()) {
-    if (!passes.has(member.pass)) continue;
-    dirty.set(member.unit, Math.min(dirty.get(member.unit) ?? Infinity, member.at));
-  }
-}
-
-function passText({ readPointId, startedAt, ordinal }: PassKey): string {
-  return `${readPointId} ${startedAt} ${ordinal}`;
-}
-
 function visitsIn(passages: readonly Passage[]): Visit[] {
   return passages.flatMap(({ unit, visits }) => visits.map((evidence) => ({ unit, evidence })));
 }
 
 function besideOf(strays: readonly StrayPassage[]): Passage[] {
   return strays.flatMap(({ passage, reason }) => (reason === 'beside' ? [passage] : []));
-}
-
-/** Stored passages of the units concerned that are near enough to come out otherwise. */
-function touchedBy({ units, since, until }: Facts, all: readonly Passage[], gapMs: number) {
-  const spans = all
-    .filter(({ unit }) => units.has(unit))
-    .map(({ first, lastAt }) => ({ firstAt: first.at, lastAt }));
-  const within = (from: number, to: number) =>
-    spans.filter(({ firstAt, lastAt }) => lastAt >= from && firstAt <= to);
-  const joined = within(since - gapMs, until + gapMs);
-  const first = Math.min(since, ...joined.map(({ firstAt }) => firstAt));
-  const last = Math.max(until, ...joined.map(({ lastAt }) => lastAt));
-  return within(first - BESIDE_MS, last + BESIDE_MS);
-}
-
-type Members = Map<string, { unit: UnitRef; at: number; pass: string; value: string }>;
-
-/** Units whose passages differ, and the earliest difference of each. */
-function differences(before: Members, after: Members): Map<UnitRef, number> {
-  const dirty = new Map<UnitRef, number>();
-  for (const [one, other] of [
-    [before, after],
-    [after, before],
-  ] as const) {
-    for (const [key, { unit, at, value }] of one) {
-      if (other.get(key)?.value === value) continue;
-      dirty.set(unit, Math.min(dirty.get(unit) ?? Infinity, at));
-    }
-  }
-  return dirty;
 }

@@ -1,9 +1,11 @@
 import { encodeAei } from '../../server/domain/identifiers/aei.js';
 import type { Configuration, Direction } from '../../server/domain/movements/configuration.js';
+import type { Doubt } from '../../server/domain/movements/doubt.js';
 import type { Leg, Stay } from '../../server/domain/movements/fold-state.js';
 import type { LastSeen } from '../../server/domain/movements/last-seen.js';
-import { historyOf, type Ledger } from '../../server/domain/movements/history-of.js';
+import { historyOf, type Ledger, type LedgerReport } from '../../server/domain/movements/history-of.js';
 import type { Pass } from '../../server/domain/movements/passes.js';
+import type { StrayPassage } from '../../server/domain/movements/refold-point.js';
 import type { LedgerRead } from '../../server/domain/movements/resolve-read.js';
 import type { BuiltPoint } from './network-builder.js';
 
@@ -28,10 +30,11 @@ export const STOOD_MS = 61_000;
 
 /** What readers and wheel sensors said, put down one report at a time. */
 export class Trackside {
-  readonly ledger: Ledger & { reads: LedgerRead[]; wheels: Ledger['wheels'][number][] } = {
-    reads: [],
-    wheels: [],
-  };
+  readonly ledger: Ledger & {
+    reads: LedgerRead[];
+    wheels: Ledger['wheels'][number][];
+    reports: LedgerReport[];
+  } = { reads: [], wheels: [], reports: [] };
 
   constructor(private readonly configuration: Configuration) {}
 
@@ -40,6 +43,18 @@ export class Trackside {
     const { siteId, number } = point.antennas[antenna] as BuiltPoint['antennas'][number];
     const tag = tagOf(unit, side);
     this.ledger.reads.push({ siteId, antenna: number, tag, at: time(clock), holdCode: null });
+    return this;
+  }
+
+  /** Somebody says what became of the unit at a site. */
+  report(
+    siteId: number,
+    event: LedgerReport['event'],
+    unit: string,
+    clock: string,
+    { basis = 'report', track = null }: Partial<Pick<LedgerReport, 'basis' | 'track'>> = {},
+  ): this {
+    this.ledger.reports.push({ siteId, event, identity: unit, at: time(clock), basis, track });
     return this;
   }
 
@@ -85,6 +100,14 @@ export class Trackside {
 
   passes(point: BuiltPoint): Pass[] {
     return historyOf(this.ledger, this.configuration).passes.get(point.id) ?? [];
+  }
+
+  strays(point: BuiltPoint): StrayPassage[] {
+    return historyOf(this.ledger, this.configuration).strays.get(point.id) ?? [];
+  }
+
+  doubts(unit: string): Doubt[] {
+    return historyOf(this.ledger, this.configuration).units.get(unit)?.doubts ?? [];
   }
 
   stays(unit: string): Stay[] {
