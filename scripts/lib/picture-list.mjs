@@ -65,6 +65,8 @@ export const screens = [
   { name: 'watches', path: '/watches', email: owner, hasEmpty: true },
   { name: 'watch-quiet', path: '/fleet', email: owner, act: askToBeTold },
   { name: 'watch-standing', path: '/fleet?site=ALDER', email: dispatcher, act: askToBeTold },
+  { name: 'rework', path: '/rework', email: admin, hasEmpty: true },
+  { name: 'doubts', path: '/doubts', email: admin, hasEmpty: true },
   { name: 'set-aside', path: '/set-aside', email: admin, hasEmpty: true, isWhole: true },
   { name: 'set-aside-tags', path: '/set-aside?code=unmapped-epc', email: admin },
   { name: 'set-aside-release', path: '/set-aside', email: admin, act: askToRelease },
@@ -80,7 +82,9 @@ export const emptyAnswers = [
   [/\/api\/equipment(\?.*)?$/, nothing],
   [/\/api\/alerts(\?.*)?$/, { ...nothing, count: 0 }],
   [/\/api\/watches(\?.*)?$/, nothing],
+  [/\/api\/rebuilds(\?.*)?$/, nothing],
   [/\/api\/held-reads(\?.*)?$/, { ...nothing, counts: [] }],
+  [/\/api\/doubts(\?.*)?$/, { ...nothing, counts: { doubts: 0, units: 0, clocks: [] } }],
   [/\/api\/map/, { type: 'FeatureCollection', features: [] }],
   [
     /\/api\/fleet\/summary/,

@@ -62,6 +62,13 @@ export const createRouter = () =>
           ),
         },
         {
+          path: '/rework',
+          lazy: page(
+            () => import('../pages/rework-page'),
+            (module) => module.ReworkPage,
+          ),
+        },
+        {
           path: '/set-aside',
           lazy: page(
             () => import('../pages/set-aside-page'),

@@ -6,6 +6,7 @@ import type { SessionInfo } from '../lib/wire';
 const known: Record<string, { word: string; to: string }> = {
   fleet: { word: 'Fleet', to: paths.fleet() },
   alerts: { word: 'Alerts', to: paths.alerts() },
+  rework: { word: 'Rework', to: paths.rework },
   setAside: { word: 'Set aside', to: paths.setAside() },
   doubts: { word: 'Doubts', to: paths.doubts },
 };

@@ -8,6 +8,7 @@ export const paths = {
   equipment: (unitId: string) => `/equipment/${encodeURIComponent(unitId)}`,
   alerts: (filter: { state?: string; watch?: string | number } = {}) =>
     `/alerts${queryString(filter)}`,
+  rework: '/rework',
   watches: '/watches',
   doubts: '/doubts',
   setAside: (filter: { code?: string; site?: string } = {}) => `/set-aside${queryString(filter)}`,
@@ -70,6 +71,8 @@ export const api = {
   watch: (id: number | string) => `/api/watches/${id}`,
   watchPreview: '/api/watches/preview',
   alerts: '/api/alerts',
+  rebuilds: '/api/rebuilds',
+  rebuildAct: (id: number, act: 'stop' | 'resume') => `/api/rebuilds/${id}/${act}`,
   demoCases: '/api/demo/cases',
   heldReads: '/api/held-reads',
   heldReadList: '/api/held-reads/reads',

@@ -38,6 +38,7 @@ export type {
   SightingsAnswer,
   StayView,
 } from '../../server/contract/movements';
+export type { RebuildListAnswer, RebuildState, RebuildView } from '../../server/contract/rebuilds';
 export type { UnitReportView, UnitReportsAnswer } from '../../server/contract/unit-reports';
 export type {
   WatchInput,
