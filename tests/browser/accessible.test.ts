@@ -1,11 +1,13 @@
 import type { Page } from 'playwright-core';
 import { test } from 'vitest';
+import { modelsOf } from '../../server/models/index.js';
+import { renumberUnit } from '../../server/services/renumber-unit.js';
 import { buildPerson, PASSWORD } from '../support/factories.js';
 import { buildWatch } from '../support/watches.js';
 import { carTag } from '../support/ingest.js';
 import { expectAccessible } from './support/expect-accessible.js';
 import { buildCars, buildYards, cross, sendReads } from './support/railway.js';
-import { alertRow, heading, ledgerRows, signIn } from './support/screens.js';
+import { alertRow, heading, ledgerRows, lookUp, signIn } from './support/screens.js';
 import { usePortal } from './support/use-portal.js';
 
 const { db, portal, open } = usePortal(100);
@@ -104,4 +106,36 @@ test('what is set aside, and what is done about it, can be used by everyone', as
   await expectAccessible(page, 'reads that are set aside');
   await page.getByRole('button', { name: /^Say what wears it/ }).click();
   await expectAccessible(page, 'the dialog of a tag');
+});
+
+test('a car that was renumbered and is in doubt, and the list of doubts, can be used by everyone', async () => {
+  const { alder, cairn } = await buildYards(db, portal());
+  const administrator = await buildPerson(db);
+  await buildCars(db, [1]);
+  await cross(portal(), alder, [1], 'in');
+  await portal().later(1);
+  const [car] = await modelsOf(db.sequelize).Unit.findAll({ where: { unitKey: 'QTKX1' } });
+  const now = portal().clock.now();
+  const renumber = { unit: 'QBLX 77', from: now };
+  await renumberUnit(db, car?.id ?? 0, renumber, now, administrator.id);
+  const points = await modelsOf(db.sequelize).ReadPoint.findAll({ order: ['id'] });
+  const pointOf = ({ site }: typeof alder) => points.find((point) => point.siteId === site.id)?.id;
+  await db.pool.query(
+    `INSERT INTO doubts (unit_id, at, read_point_id, previous_read_point_id, previous_at,
+       rail_metres, corroborated_by) VALUES (?, ?, ?, ?, ?, ?, NULL)`,
+    [car?.id, now, pointOf(cairn), pointOf(alder), new Date(now.getTime() - 600_000), 212_000],
+  );
+  const page = await open();
+  await signIn(page, administrator.email, PASSWORD);
+  await page.goto('/doubts');
+  await heading(page, /^1 sighting of 1 car or box in the last 30 days fits no train/).waitFor();
+  await expectAccessible(page, 'Doubts');
+  await lookUp(page, 'QTKX 1');
+  await page.waitForURL('**/equipment/QBLX77');
+  await page.getByText('formerly QTKX 1').waitFor();
+  await page.getByText(/Two sightings that no train could join: Alder Bend Yard/).waitFor();
+  await page.getByRole('table', { name: 'Marks and numbers' }).getByText('former').waitFor();
+  await expectAccessible(page, 'a car that was renumbered and is in doubt');
+  await page.goto('/equipment/QTKX1');
+  await page.waitForURL('**/equipment/QBLX77');
 });
