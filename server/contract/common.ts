@@ -1,4 +1,5 @@
 import { z } from 'zod';
+import { parseInstant } from './parse-instant.js';
 
 /** What a person may be; one person may be several. */
 export const roles = ['administrator', 'owner', 'clerk', 'dispatcher'] as const;
@@ -47,14 +48,18 @@ export const textSchema = (most: number) =>
 /** An instant as RFC 3339 text, as every answer carries it. */
 export const instantSchema = z.iso.datetime({ offset: true });
 
+const noInstant = 'must be an RFC 3339 time with its offset, 1990 to 2100';
+
 /** An instant that comes in: RFC 3339 with an offset; a Date after the door. */
-export const instantInput = z.iso
-  .datetime({ offset: true, error: 'must be an RFC 3339 time with its offset, 1990 to 2100' })
-  .transform((text) => new Date(text))
-  .refine(
-    (instant) => instant.getUTCFullYear() >= 1990 && instant.getUTCFullYear() <= 2100,
-    'must be an RFC 3339 time with its offset, 1990 to 2100',
-  );
+export const instantInput = z
+  .string(noInstant)
+  .meta({ format: 'date-time' })
+  .transform((text, context) => {
+    const ms = parseInstant(text);
+    if (ms !== null) return new Date(ms);
+    context.addIssue({ code: 'custom', message: noInstant });
+    return z.NEVER;
+  });
 
 /** An IANA time zone that this runtime knows. */
 export const timeZoneSchema = z

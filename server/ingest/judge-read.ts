@@ -1,6 +1,6 @@
 import { INGEST_BOUNDS, type RejectCode } from '../contract/ingest.js';
 import { resolveTag, type ResolvedTag } from '../domain/identifiers/resolve-tag.js';
-import { parseInstant } from './parse-instant.js';
+import { parseInstant } from '../contract/parse-instant.js';
 
 /** A read that will be stored; `index` is its place in the request. */
 export interface SoundRead {

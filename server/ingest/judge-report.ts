@@ -6,7 +6,7 @@ import {
 } from '../contract/movement-reports.js';
 import { parseUnit } from '../domain/identifiers/parse-unit.js';
 import type { DoorClock } from './hold-of.js';
-import { parseInstant } from './parse-instant.js';
+import { parseInstant } from '../contract/parse-instant.js';
 
 /** A report that will be stored if its site is known; `index` is its place in the request. */
 export interface SoundReport {

@@ -62,6 +62,16 @@ describe('a train counted by wheel sensors', () => {
     expect(await stored()).toMatchObject([{ direction: null, speed_kmh: null }]);
   });
 
+  test.each([
+    ['2026-06-30T23:59:60Z', '2026-07-01T00:00:00.000Z'],
+    ['2026-12-01t10:01:00.123456789z', '2026-12-01T10:01:00.123Z'],
+    ['2026-12-01T15:45:00+05:45', '2026-12-01T10:00:00.000Z'],
+  ])('has its times read like those of reads: %s', async (endedAt, instant) => {
+    const { token, record } = await buildRecord();
+    await post(token, { ...record, startedAt: '2026-06-01T00:00:00Z', endedAt }).expect(200);
+    expect(await stored()).toMatchObject([{ ended_at: new Date(instant) }]);
+  });
+
   test('is refused with every fault named', async () => {
     const { token, record } = await buildRecord();
     const { body } = await post(token, {

@@ -2,7 +2,7 @@ import fc from 'fast-check';
 import { describe, expect, test } from 'vitest';
 import { refuseDeepNesting } from '../../server/ingest/checked-json.js';
 import { doorClock } from '../../server/ingest/hold-of.js';
-import { parseInstant } from '../../server/ingest/parse-instant.js';
+import { parseInstant } from '../../server/contract/parse-instant.js';
 import { sqlBytes, sqlCode, sqlInstant } from '../../server/ingest/sql-literals.js';
 
 describe('the time of a read', () => {
