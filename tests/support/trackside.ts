@@ -3,7 +3,11 @@ import type { Configuration, Direction } from '../../server/domain/movements/con
 import type { Doubt } from '../../server/domain/movements/doubt.js';
 import type { Leg, Stay } from '../../server/domain/movements/fold-state.js';
 import type { LastSeen } from '../../server/domain/movements/last-seen.js';
-import { historyOf, type Ledger, type LedgerReport } from '../../server/domain/movements/history-of.js';
+import {
+  historyOf,
+  type Ledger,
+  type LedgerReport,
+} from '../../server/domain/movements/history-of.js';
 import type { Pass } from '../../server/domain/movements/passes.js';
 import type { StrayPassage } from '../../server/domain/movements/refold-point.js';
 import type { LedgerRead } from '../../server/domain/movements/resolve-read.js';

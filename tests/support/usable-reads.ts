@@ -5,9 +5,9 @@ import { resolveRead } from '../../server/domain/movements/resolve-read.js';
 
 /** The reads of one read point that name a unit, by unit. */
 export function usableReads(
-network: Network,
-readPointId: number,
-portion: Ledger,
+  network: Network,
+  readPointId: number,
+  portion: Ledger,
 ): Map<UnitRef, UsableRead[]> {
   const reads = new Map<UnitRef, UsableRead[]>();
   for (const read of portion.reads) {
@@ -20,4 +20,3 @@ portion: Ledger,
   }
   return reads;
 }
-
