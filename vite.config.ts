@@ -15,7 +15,9 @@ const serverBuild = {
   emptyOutDir: true,
   target: 'node20',
   sourcemap: true,
-  rolldownOptions: { input: { index: here('server/index.ts') } },
+  rolldownOptions: {
+    input: { index: here('server/index.ts'), rebuild: here('server/rebuild.ts') },
+  },
 };
 
 /** Tests that share the throw-away MariaDB; each worker has a database of its own in it. */

@@ -7,7 +7,8 @@ import { runTool } from './run.mjs';
 import { environment, rememberedSecret } from './settings.mjs';
 import { Mend } from './steps.mjs';
 
-const databaseName = 'fishplate';
+/** What the database of a data directory is called. */
+export const databaseName = 'fishplate';
 
 /** Takes the data directory for this process; what is returned gives it back. */
 export function takeDataDir({ dataDir }) {

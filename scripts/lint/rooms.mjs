@@ -6,7 +6,7 @@ import path from 'node:path';
  * the last row, which is the floor everybody stands on.
  */
 export const serverFloors = [
-  ['index'],
+  ['index', 'rebuild'],
   ['app', 'worker', 'simulator'],
   ['routes'],
   ['middleware', 'jobs'],

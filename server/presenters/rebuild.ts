@@ -4,6 +4,8 @@ import type { Rebuild } from '../models/rebuild.js';
 /** How far a rebuild has come, from 0 to 1, and what it covers. */
 export interface RebuildProgress {
   share: number;
+  /** Of the ledger, each read point's for itself. */
+  hours: number;
   readPoints: number;
   since: Date;
   until: Date;

@@ -35,6 +35,15 @@ export async function findRebuild(db: Database, id: number): Promise<RebuildReco
   return record ?? null;
 }
 
+/** The rebuild that a command began last and that stands stopped; null when none does. */
+export async function findStoppedCommand(db: Database): Promise<number | null> {
+  const found = await modelsOf(db.sequelize).Rebuild.findOne({
+    where: { cause: 'command', state: 'stopped' },
+    order: [['id', 'DESC']],
+  });
+  return found?.id ?? null;
+}
+
 async function withProgress(db: Database, rebuilds: readonly Rebuild[]): Promise<RebuildRecord[]> {
   if (rebuilds.length === 0) return [];
   const [progress, people] = await Promise.all([
@@ -82,7 +91,13 @@ export async function rebuildProgress(
   return new Map(
     rows.map(({ rebuild_id: id, whole, past, points, since, until }) => [
       id,
-      { share: whole > 0 ? past / whole : 0, readPoints: points, since, until },
+      {
+        share: whole > 0 ? past / whole : 0,
+        hours: whole / 3600,
+        readPoints: points,
+        since,
+        until,
+      },
     ]),
   );
 }
