@@ -86,10 +86,10 @@ async function releasePortion(
     ['batch_id', 'seq', 'read_at', 'released_by', 'released_at'],
     held.map(({ batch_id, seq, read_at }) => [batch_id, seq, read_at, personId, now]),
   );
-  await byKeys(
-    connection,
-    'DELETE FROM held WHERE :keys',
-    'batch_id = ? AND seq = ?',
+  // Row by row: one statement for all of them walks the whole of a short table and so waits for
+  // rows that the door has only just put in.
+  await connection.batch(
+    'DELETE FROM held WHERE batch_id = ? AND seq = ?',
     held.map(({ batch_id, seq }) => [batch_id, seq]),
   );
   const reads = held.map(({ batch_id, seq, read_at }) => [batch_id, seq, read_at.toISOString()]);
