@@ -4,6 +4,7 @@ import os from 'node:os';
 import path from 'node:path';
 import { ensureBuilt } from './lib/build.mjs';
 import { ensureModules } from './lib/modules.mjs';
+import { runMutations } from './lib/mutations.mjs';
 import { checkNode, ensurePackages } from './lib/packages.mjs';
 import { runTool } from './lib/run.mjs';
 import { cleanEnvironment, root } from './lib/settings.mjs';
@@ -20,6 +21,7 @@ await stopping.guard(async () => {
     await prepare();
     await Promise.all([check('Lint', lint), checkQuickly()]);
     await runTests();
+    if (long) await dropRules();
   } catch (error) {
     counts.failed += 1;
     complain(error);
@@ -87,6 +89,13 @@ function addResults({ testResults }, code) {
   }
   // What vitest finds beyond single tests: errors that nobody caught, a start that failed.
   if (code !== 0 && counts.failed === failedBefore) counts.failed += 1;
+}
+
+/** Each rule of the movements that a test misses when it is dropped counts as a test passed. */
+async function dropRules() {
+  const { caught, survived } = await runMutations({ onLine: print });
+  counts.passed += caught;
+  counts.failed += survived;
 }
 
 /** The runner ends its own database when it is told to end, so it is told and waited for. */
