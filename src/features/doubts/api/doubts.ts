@@ -16,5 +16,5 @@ export const doubtsQuery = infiniteQueryOptions({
 export const unitDoubtsQuery = (unitId: string) =>
   queryOptions({
     queryKey: ['unit', unitId, 'doubts'],
-    queryFn: ({ signal }) => get<UnitDoubtsAnswer>(api.unitDoubts(unitId), { limit: 5 }, signal),
+    queryFn: ({ signal }) => get<UnitDoubtsAnswer>(api.unitDoubts(unitId), { limit: 3 }, signal),
   });

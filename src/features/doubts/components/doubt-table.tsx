@@ -62,7 +62,7 @@ function doubtColumns(
     { id: 'before', heading: `Before, ${name}`, width: 124, cell: (row) => time(row.previous?.at) },
     { id: 'from', heading: 'At', cell: (row) => row.previous?.site.name },
     { id: 'apart', heading: 'Apart', width: 190, cell: (row) => sayApart(row, distance) },
-    { id: 'cause', heading: 'Perhaps', wraps: true, cell: sayCause },
+    { id: 'cause', heading: 'Why', wraps: true, cell: sayCause },
   ];
 }
 
