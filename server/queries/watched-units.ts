@@ -110,7 +110,10 @@ function scopeConditions(scope: StoredScope, siteId: Sql): Sql[] {
     ...(ownerIds ? [sql`u.owner_id IN (${ownerIds})`] : []),
     ...(siteIds ? [sql`${siteId} IN (${siteIds})`] : []),
     ...(marks
-      ? [sql`EXISTS (SELECT 1 FROM identities i WHERE i.unit_id = u.id AND i.mark IN (${marks}))`]
+      ? [
+          sql`EXISTS (SELECT 1 FROM identities i
+            WHERE i.unit_id = u.id AND i.valid_to IS NULL AND i.mark IN (${marks}))`,
+        ]
       : []),
   ];
 }
