@@ -45,7 +45,7 @@ const rows: Row[] = [
   [
     'beam',
     'A car that stands in the beam',
-    'For four hours of every four days it stands before an antenna of Sorrel Yard and is read every 20 s or so: one visit, no crossing.',
+    'For three hours of every four days it stands before an antenna of Sorrel Yard and is read every half minute: one visit, no crossing.',
     [branchCars.inTheBeam],
     'SORREL',
   ],

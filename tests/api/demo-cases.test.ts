@@ -78,7 +78,7 @@ const shows: Record<string, () => Promise<boolean>> = {
       [branchCars.inTheBeam],
     );
     return (
-      visits.length === 2 && visits.every(({ hours, role }) => hours > 3.9 && role === 'presence')
+      visits.length === 2 && visits.every(({ hours, role }) => hours > 2.9 && role === 'presence')
     );
   },
   beside: async () => {
@@ -89,7 +89,7 @@ const shows: Record<string, () => Promise<boolean>> = {
       `${passagesOf} WHERE u.unit_key = ? AND r.code = 'W1' AND p.role = 'crossing'`,
       [branchCars.beside],
     );
-    return strays > 40 && moved === 0;
+    return strays > 20 && moved === 0;
   },
   unequipped: async () =>
     (await count(`${staysOf} AND y.departure_basis = 'inferred'`, [

@@ -1,6 +1,6 @@
 /** Cars of the branch that show one case each, by compact identity, for as long as the demo runs. */
 export const branchCars = {
-  /** Stands in the beam of Sorrel Yard's second track for four hours of each round. */
+  /** Stands in the beam of Sorrel Yard's second track for three hours of each round. */
   inTheBeam: 'QWKR160001',
   /** Stands beside Sorrel Yard's first track, where an antenna hears it now and then. */
   beside: 'QWKR160002',

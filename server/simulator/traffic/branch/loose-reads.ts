@@ -20,8 +20,8 @@ export interface LooseRead {
 
 const HOUR = 3_600_000;
 const DAY = 24 * HOUR;
-const STANDS = { fromHour: 80, hours: 4, everyMs: [18_000, 26_000] as [number, number] };
-const BESIDE = { fromHour: 64.2, hours: 29, everyMs: [840_000, 2_280_000] as [number, number] };
+const STANDS = { fromHour: 80, hours: 3, everyMs: [24_000, 36_000] as [number, number] };
+const BESIDE = { fromHour: 66, hours: 22, everyMs: [1_500_000, 3_300_000] as [number, number] };
 /** Heard by Sorrel's new antenna, which nobody has entered yet. */
 const UNKNOWN_ANTENNA = 9;
 const TEST_TAG = encodeAei({ groupCode: 28, initial: 'QTST', number: 1, side: 'left' });
