@@ -130,6 +130,20 @@ describe('a former number', () => {
   });
 });
 
+test('a watch of a mark covers who carries it now, not who did', async () => {
+  await register({ unit: 'QTKX 1' });
+  await read('QTKX 1', hourOf(4));
+  const covers = async (mark: string) => {
+    const watch = { kind: 'quiet', scope: { marks: [mark] } };
+    const { body } = await admin.post('/api/watches/preview').send(watch).expect(200);
+    return body.data.covers as number;
+  };
+  expect([await covers('QTKX'), await covers('QBLX')]).toEqual([1, 0]);
+  await renumber('QTKX1', 'QBLX 77');
+  await project();
+  expect([await covers('QTKX'), await covers('QBLX')]).toEqual([0, 1]);
+});
+
 describe('what was read before the register said so', () => {
   test('goes over to another car from the instant on at which a tag was moved', async () => {
     await register({ unit: 'QTKX 1', tags: [{ value: TAG, side: 'left' }] });
