@@ -68,7 +68,10 @@ export const staySchema = z
     departureBounds: boundsSchema,
     departureProvisional: z.boolean(),
     provisional: z.boolean().meta({ description: 'Either end may still be taken back.' }),
-    through: z.boolean().nullable().meta({ description: 'Null: not judged yet.' }),
+    through: z
+      .boolean()
+      .nullable()
+      .meta({ description: 'It left with the train it came in; null: an end was not read.' }),
     dwellMinutes: z.number().int(),
     atLeast: z.boolean(),
     outOfDwell: z.boolean().meta({ description: 'Left out of dwell figures.' }),
@@ -124,6 +127,9 @@ export const sightingSchema = z
     basis: z.enum(lastSeenBases),
     role: z.enum(passageRoles),
     stray: z.enum(strayReasons).nullable(),
+    doubted: z
+      .boolean()
+      .meta({ description: 'No train could have made it after the one before: it moved nothing.' }),
     speedKmh: z.number().nullable(),
     antennas: z.array(
       z.object({

@@ -22,8 +22,11 @@ export interface StayRecord {
   out_of_dwell: number;
 }
 
-/** A stay; provisional and, while it goes on, dwell are reckoned at `now`. */
-export function presentStay(row: StayRecord, now: Date): StayView {
+/**
+ * A stay; provisional and, while it goes on, dwell are reckoned at `now`. `through` null: an end of
+ * it was not read, so nobody can say.
+ */
+export function presentStay(row: StayRecord, now: Date, through: boolean | null): StayView {
   const begin = row.arrived_at ?? row.first_seen_at;
   const arrivalProvisional = isAhead(row.arrival_final_at, now);
   const departureProvisional = row.departed_at !== null && isAhead(row.departure_final_at, now);
@@ -41,7 +44,7 @@ export function presentStay(row: StayRecord, now: Date): StayView {
     departureBounds: boundsOf(row.departure_basis, row.departure_earliest, row.departure_latest),
     departureProvisional,
     provisional: arrivalProvisional || departureProvisional,
-    through: null,
+    through,
     dwellMinutes: Math.max(0, minutesBetween(begin, row.departed_at ?? now)),
     atLeast: row.arrived_at === null,
     outOfDwell: Boolean(row.out_of_dwell),

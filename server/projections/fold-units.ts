@@ -88,6 +88,7 @@ async function foldPart(
   network: Network,
   starts: readonly UnitStart[],
 ): Promise<FoldedUnit[]> {
+  if (starts.length === 0) return [];
   const kinds = await loadKinds(connection, starts);
   const facts = await loadFacts(connection, network, starts);
   const emptied = starts.filter(

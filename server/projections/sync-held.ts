@@ -1,7 +1,7 @@
 import type { PoolConnection } from 'mariadb';
 import type { Network } from '../domain/movements/configuration.js';
 import { isDoorFact, verdictOf } from '../domain/movements/resolve-read.js';
-import { byKeys, insertRows } from '../lib/bulk.js';
+import { insertRows } from '../lib/bulk.js';
 import type { StoredRead } from './load-reads.js';
 
 const COLUMNS = ['batch_id', 'seq', 'read_at', 'site_id', 'tag', 'code', 'config_version'];
@@ -21,12 +21,9 @@ export async function syncHeld(
     .filter((read) => !isDoorFact(read.holdCode))
     .map((read) => ({ read, code: verdictOf(network, read) }))
     .filter(({ read, code }) => all || code !== read.holdCode);
-  const free = judged.filter(({ code }) => code === null);
-  await byKeys(
+  await remove(
     connection,
-    'DELETE FROM held WHERE :keys',
-    'batch_id = ? AND seq = ?',
-    free.map(({ read }) => [read.batchId, read.seq]),
+    judged.filter(({ code }) => code === null).map(({ read }) => read),
   );
   const held = judged.flatMap(({ read, code }) =>
     code === null
@@ -44,4 +41,18 @@ export async function syncHeld(
         ],
   );
   await insertRows(connection, 'held', COLUMNS, held, ['code', 'config_version']);
+}
+
+/** By one key at a time: a list of keys would go through the whole table and its locks. */
+async function remove(connection: PoolConnection, reads: readonly StoredRead[]): Promise<void> {
+  if (reads.length === 0) return;
+  const there = await connection.query<{ batch_id: number; seq: number }[]>(
+    'SELECT batch_id, seq FROM held WHERE batch_id IN (?)',
+    [[...new Set(reads.map(({ batchId }) => batchId))]],
+  );
+  const free = new Set(reads.map(({ batchId, seq }) => `${batchId} ${seq}`));
+  const keys = there
+    .filter((row) => free.has(`${row.batch_id} ${row.seq}`))
+    .map((row) => [row.batch_id, row.seq]);
+  if (keys.length) await connection.batch('DELETE FROM held WHERE batch_id = ? AND seq = ?', keys);
 }

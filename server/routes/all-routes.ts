@@ -21,6 +21,7 @@ import { mapOperations, mapRoutes } from './map.js';
 import { metricsOperations } from './metrics.js';
 import { openapiOperations } from './openapi.js';
 import { organisationsOperations, organisationsRoutes } from './organisations.js';
+import { passesOperations, passesRoutes } from './passes.js';
 import { peopleOperations, peopleRoutes } from './people.js';
 import { readPointsOperations, readPointsRoutes } from './read-points.js';
 import { rebuildsOperations, rebuildsRoutes } from './rebuilds.js';
@@ -49,6 +50,7 @@ export function portalRouters(context: Context, projectorLagMs: () => Promise<nu
     equipmentRoutes(context),
     handReportsRoutes(context),
     fleetRoutes(context, projectorLagMs),
+    passesRoutes(context),
     doubtsRoutes(context),
     mapRoutes(context),
     lookUpRoutes(context),
@@ -74,6 +76,7 @@ export const allOperations: Operation[] = [
   ...equipmentOperations,
   ...handReportsOperations,
   ...fleetOperations,
+  ...passesOperations,
   ...doubtsOperations,
   ...mapOperations,
   ...lookUpOperations,

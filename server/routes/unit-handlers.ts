@@ -19,6 +19,7 @@ import { listStays } from '../queries/list-stays.js';
 import { loadAntennaSides } from '../queries/load-antennas.js';
 import { loadTags, tagSideOf } from '../queries/load-tags.js';
 import { loadUnit } from '../queries/load-unit.js';
+import { throughOf } from '../queries/through-of.js';
 import { countReads, unpackEvidence } from '../domain/movements/pack-evidence.js';
 import { notFound } from '../errors.js';
 
@@ -61,12 +62,15 @@ export function unitHandlers(context: Context, schemas: UnitSchemas) {
     const { query } = validated(request, schemas.movements);
     const now = clock.now();
     const stays = await listStays(db, open, query);
-    const [legs, railMetres] = await Promise.all([
+    const [legs, railMetres, through] = await Promise.all([
       listLegs(db, open, query, stays.rows),
       sumRailMetres(db, open, query),
+      throughOf(db, open.unitId, stays.rows),
     ]);
+    const isThrough = ({ arrived_at: at }: { arrived_at: Date | null }) =>
+      (at && through.get(at.getTime())) ?? null;
     const data = {
-      stays: stays.rows.map((row) => presentStay(row, now)),
+      stays: stays.rows.map((row) => presentStay(row, now, isThrough(row))),
       legs: legs.map(presentLeg),
       railMetres,
     };

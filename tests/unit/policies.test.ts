@@ -15,6 +15,7 @@ import { maySeeMail } from '../../server/policies/mail-policy.js';
 import { authorize, authorizeAll, permissions } from '../../server/policies/policy.js';
 import { maySeeRebuilds, rebuildPolicy } from '../../server/policies/rebuild-policy.js';
 
+import { passPolicy } from '../../server/policies/pass-policy.js';
 import { unitPolicy } from '../../server/policies/unit-policy.js';
 import {
   mayNameOwner,
@@ -92,6 +93,9 @@ describe('who may do what with units, watches, alerts and mail', () => {
     ['see a unit not found', (actor) => unitPolicy.see(actor, { access: null }), 'no no no no'],
     ['watch a unit of their list', (actor) => unitPolicy.watch(actor, listed), 'yes yes yes yes'],
     ['watch a unit that was there once', (actor) => unitPolicy.watch(actor, once), 'no no no no'],
+    ['see a pass of theirs', (actor) => passPolicy.see(actor, { named: 1 }), 'yes yes yes yes'],
+    ['see a pass of others', (actor) => passPolicy.see(actor, { named: 0 }), 'no no no no'],
+    ['see a pass at their site', (a) => passPolicy.see(a, { named: null }), 'yes yes yes yes'],
     ['set watches', maySetWatches, 'yes yes yes yes'],
     ['see their own watch', (actor) => watchPolicy.see(actor, mine), 'yes yes yes yes'],
     ['change their own watch', (actor) => watchPolicy.update(actor, mine), 'yes yes yes yes'],
