@@ -6,9 +6,15 @@ import type { RebuildListAnswer, RebuildState, RebuildView } from '../../../lib/
 const OFTEN_MS = 2_000;
 const SELDOM_MS = 20_000;
 
-/** No event tells of it: looked at often while something moves, else now and then. */
-const untilNext = (rows: readonly RebuildView[]) =>
-  rows.some(({ state }) => state === 'running' || state === 'waiting') ? OFTEN_MS : SELDOM_MS;
+/**
+ * No event tells of it: looked at often while something moves, else now and then. Never by itself
+ * after a fault with nothing to show: that would blink.
+ */
+function untilNext(rows: readonly RebuildView[] | undefined): number | false {
+  if (!rows) return false;
+  const moves = rows.some(({ state }) => state === 'running' || state === 'waiting');
+  return moves ? OFTEN_MS : SELDOM_MS;
+}
 
 /** Everything that was or is made anew, newest first, page after page. */
 export const rebuildListQuery = infiniteQueryOptions({
@@ -17,7 +23,7 @@ export const rebuildListQuery = infiniteQueryOptions({
     get<RebuildListAnswer>(api.rebuilds, { limit: 50, cursor: pageParam }, signal),
   initialPageParam: null as string | null,
   getNextPageParam: (page) => page.next,
-  refetchInterval: ({ state }) => untilNext(state.data?.pages.flatMap(({ data }) => data) ?? []),
+  refetchInterval: ({ state }) => untilNext(state.data?.pages.flatMap(({ data }) => data)),
 });
 
 /** Those in one state, newest first; `more` when there are more than these. */
@@ -28,5 +34,5 @@ export const rebuildsInQuery = (state: RebuildState) =>
       const page = await get<RebuildListAnswer>(api.rebuilds, { state, limit: 200 }, signal);
       return { rows: page.data, more: page.next !== null };
     },
-    refetchInterval: OFTEN_MS,
+    refetchInterval: (query) => (query.state.data ? OFTEN_MS : false),
   });

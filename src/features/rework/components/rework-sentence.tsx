@@ -1,7 +1,7 @@
 import { useQuery } from '@tanstack/react-query';
 import { ErrorNotice, LoadingSentence } from '../../../components/ui/notice';
 import { Sentence } from '../../../components/ui/sentence';
-import { capital, counted, listed } from '../../../lib/words';
+import { counted, listed } from '../../../lib/words';
 import { rebuildsInQuery } from '../api/rebuild-list';
 
 /** What is being made anew now, in a sentence. */
@@ -39,11 +39,15 @@ const stoppedNote =
   'What is stopped leaves a part of history as it was before the change, until it goes on.';
 
 function say(running: number, waiting: number, stopped: number): string {
-  const parts = [
-    running > 0 ? `${counted(running, 'rework is', 'reworks are')} under way` : null,
-    waiting > 0 ? `${counted(waiting, 'rework waits', 'reworks wait')}` : null,
-    stopped > 0 ? `${counted(stopped, 'rework is', 'reworks are')} stopped` : null,
-  ].filter((part) => part !== null);
-  if (parts.length === 0) return 'Nothing of history is being made anew.';
-  return `${capital(listed(parts))}.`;
+  const counts = [
+    { n: running, does: ['is under way', 'are under way'] },
+    { n: waiting, does: ['waits', 'wait'] },
+    { n: stopped, does: ['is stopped', 'are stopped'] },
+  ].filter(({ n }) => n > 0);
+  if (counts.length === 0) return 'Nothing of history is being made anew.';
+  const parts = counts.map(({ n, does: [one, many] }, place) => {
+    const what = place === 0 ? counted(n, 'rework', 'reworks') : n.toLocaleString('en-US');
+    return `${what} ${n === 1 ? one : many}`;
+  });
+  return `${listed(parts)}.`;
 }
