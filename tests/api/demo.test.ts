@@ -119,6 +119,11 @@ describe('the backfill of two days', () => {
       expect.arrayContaining(['unmapped-epc', 'check-failed', 'not-equipment', 'unknown-antenna']),
     );
 
+    const doubted = await db.pool.query<{ unit: string }[]>(
+      'SELECT DISTINCT u.unit_key AS unit FROM doubts d JOIN units u ON u.id = d.unit_id',
+    );
+    expect(doubted.map(({ unit }) => unit)).toEqual([world.branchCars.robbed]);
+
     const found = await foundInDatabase(db);
     const truth = truthBetween(until.getTime() - 2 * DAY, until.getTime() - 3 * HOUR);
     const sensors = agreementOf(found, truth, 'sensors');

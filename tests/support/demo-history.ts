@@ -4,7 +4,7 @@ import type {
   Direction,
   Place,
 } from '../../server/domain/movements/configuration.js';
-import type { History, Ledger } from '../../server/domain/movements/history-of.js';
+import type { History, Ledger, LedgerReport } from '../../server/domain/movements/history-of.js';
 import type { Sent, SentRead } from '../../server/simulator/traffic.js';
 import type { TrueCrossing, TrueStray } from '../../server/simulator/truth-between.js';
 import { towardOf } from '../../server/simulator/world/toward.js';
@@ -126,7 +126,16 @@ export function demoLedger(sent: Sent[]): Ledger {
         ? [{ ...each, readPointId: required(pointIds.get(`${each.site} ${each.readPoint}`)) }]
         : [],
     ),
+    reports: sent.flatMap((each) => reportOf(each) ?? []),
   };
+}
+
+function reportOf(sent: Sent): LedgerReport | null {
+  if (sent.kind !== 'report' && sent.kind !== 'hand') return null;
+  const facts = { identity: sent.unit, siteId: siteId(sent.site), at: sent.at };
+  if (sent.kind === 'report') return { ...facts, event: sent.event, basis: 'report', track: null };
+  const event = sent.seen ? 'seen' : 'notThere';
+  return { ...facts, event, basis: 'hand', track: sent.track };
 }
 
 /** What was made of the reads, in the words of the truth; instants in milliseconds. */

@@ -47,6 +47,18 @@ describe('what the rules make of two weeks of invented traffic', () => {
     expect(directionWrong / read).toBeLessThanOrEqual(0.018);
   });
 
+  it('knows by reports what came and went where no reader is', () => {
+    const kiln = truth.filter(({ site }) => site === 'BRYONY');
+    const cars = new Set(kiln.map(({ unit }) => unit).filter((unit) => unit.startsWith('QWKR160')));
+    expect(cars.size).toBe(7);
+    const missed = kiln.filter(({ unit, purpose, at }) => {
+      const stays = found.stays.filter((stay) => stay.unit === unit && stay.site === 'BRYONY');
+      const field = purpose === 'arrive' ? 'arrivedAt' : 'departedAt';
+      return cars.has(unit) && !stays.some((stay) => stay[field] === at);
+    });
+    expect(missed).toEqual([]);
+  });
+
   it('lets nothing move that was heard from the next track, from beside it, or standing', () => {
     const strays = strayTruthBetween(from, from + 14 * DAY);
     for (const why of ['parallel', 'beside', 'beam'] as const) {
