@@ -36,6 +36,11 @@ export async function ensureBuilt() {
   }
 }
 
+/** True when dist/ was built from the sources as they are now. */
+export function isBuilt() {
+  return readHolder(stamp) === fingerprint();
+}
+
 function fingerprint() {
   const hash = createHash('sha256').update(process.version);
   for (const source of sources) addTo(hash, source);
