@@ -17,6 +17,7 @@ export interface PassageRecord {
   pass_started_at: Date | null;
   pass_ordinal: number | null;
   stray: string | null;
+  doubted: number;
   direction: string;
   direction_basis: string | null;
   role: string;
@@ -58,6 +59,7 @@ export function presentSighting(
     basis: 'read',
     role: ROLES.find((role) => passages.some((passage) => passage.role === role)) ?? 'presence',
     stray: first.stray as SightingView['stray'],
+    doubted: passages.some((passage) => passage.doubted === 1),
     speedKmh: directed.speed_kmh,
     antennas: antennasOf(first.site_id, runs, sides),
     sides: (['left', 'right'] as const).filter((side) =>

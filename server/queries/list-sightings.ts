@@ -64,7 +64,9 @@ export const passageColumns: Sql = sql`
   p.read_point_id, rp.site_id, rs.code AS site_code, rs.name AS site_name,
   rp.code AS read_point_code, rp.name AS read_point_name, rp.track AS read_point_track,
   p.first_at, p.last_at, p.pass_started_at, p.pass_ordinal, p.direction, p.direction_basis,
-  p.role, p.stray, p.speed_kmh, p.read_count, p.evidence`;
+  p.role, p.stray, p.speed_kmh, p.read_count, p.evidence, EXISTS (
+    SELECT 1 FROM doubts d WHERE d.unit_id = p.unit_id AND d.at = p.first_at
+      AND d.read_point_id = p.read_point_id AND d.corroborated_by IS NULL) AS doubted`;
 
 export const passageTables: Sql = sql`
   passages p JOIN read_points rp ON rp.id = p.read_point_id JOIN sites rs ON rs.id = rp.site_id`;

@@ -184,7 +184,10 @@ describe('what the projector leaves', () => {
       readPoint: { code: 'E1' },
     });
     const sightings = await agent.get('/api/equipment/QTKX1/sightings').expect(200);
-    expect(sightings.body.data).toHaveLength(2);
+    expect(sightings.body.data).toMatchObject([
+      { readPoint: { code: 'N1' }, doubted: true },
+      { readPoint: { code: 'E1' }, doubted: false },
+    ]);
   });
 
   test('of five cars at one site within a day is a matter of its clock', async () => {

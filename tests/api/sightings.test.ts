@@ -90,6 +90,7 @@ describe('sightings', () => {
           basis: 'read',
           role: 'crossing',
           stray: null,
+          doubted: false,
           speedKmh: expect.any(Number),
           antennas: [
             { number: 1, side: 'left', reads: 2 },

@@ -96,10 +96,11 @@ const bases = {
 } as const;
 
 function sayMeaning(
-  { role, stray, speedKmh, directionBasis }: SightingView,
+  { role, stray, doubted, speedKmh, directionBasis }: SightingView,
   distance: Preferences['distance'],
 ): string {
   if (role === 'stray') return strays[stray ?? 'beside'];
+  if (doubted) return 'in doubt: no train could have brought it, so it moved nothing';
   const speed = speedKmh === null ? '' : ` at ${formatSpeed(speedKmh, distance)}`;
   const how = role === 'crossing' && directionBasis ? `, direction ${bases[directionBasis]}` : '';
   return `${roles[role]}${speed}${how}`;
@@ -110,6 +111,8 @@ const saySides = ({ sides, antennas }: SightingView): string => {
   return sides.length === 0 ? by : `${listed(sides)}, ${by}`;
 };
 
+const isProof = ({ role, doubted }: SightingView): boolean => role === 'crossing' && !doubted;
+
 /** Solid where the pass proves a move, hollow where it only shows presence. */
 function SightingMark({ sighting }: { sighting: SightingView }) {
   return (
@@ -119,7 +122,7 @@ function SightingMark({ sighting }: { sighting: SightingView }) {
         cy="7"
         r="3.6"
         strokeWidth="1.4"
-        className={sighting.role === 'crossing' ? 'fill-ink' : 'fill-transparent'}
+        className={isProof(sighting) ? 'fill-ink' : 'fill-transparent'}
       />
     </svg>
   );
