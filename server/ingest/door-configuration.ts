@@ -3,6 +3,8 @@ import type { Pool, PoolConnection } from 'mariadb';
 /** The part of the configuration that decides about reads at the door, at one version of it. */
 export interface DoorConfiguration {
   version: number;
+  /** Before it the ledger is closed for good; 0 when no month has gone yet. */
+  frozenBeforeMs: number;
   /** Antenna numbers by site id. */
   antennas: Map<number, Set<number>>;
   /** Those that were asked for so far. */
@@ -28,13 +30,18 @@ export async function doorConfiguration(
   pool: Pool,
   connection: PoolConnection,
 ): Promise<DoorConfiguration> {
-  const [state] = await connection.query<{ version: number }[]>(
-    'SELECT version FROM config_state WHERE id = 1',
+  const [state] = await connection.query<{ version: number; frozen_before: Date | null }[]>(
+    'SELECT version, frozen_before FROM config_state WHERE id = 1',
   );
   const version = state?.version ?? 0;
   const present = kept.get(pool);
   if (present?.version === version) return present;
-  const fresh = { version, antennas: await loadAntennas(connection), epcs: new Map() };
+  const fresh = {
+    version,
+    frozenBeforeMs: state?.frozen_before?.getTime() ?? 0,
+    antennas: await loadAntennas(connection),
+    epcs: new Map(),
+  };
   kept.set(pool, fresh);
   return fresh;
 }

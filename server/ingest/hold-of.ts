@@ -10,11 +10,15 @@ export interface DoorClock {
   earliestMs: number;
 }
 
-/** Raw reads are kept by whole months (UTC): the present one and `retainMonths` before it. */
-export function doorClock(receivedAt: Date, retainMonths: number): DoorClock {
+/**
+ * Raw reads are kept by whole months (UTC): the present one and `retainMonths` before it, but none
+ * that has gone already when fewer were kept.
+ */
+export function doorClock(receivedAt: Date, retainMonths: number, frozenBeforeMs = 0): DoorClock {
+  const kept = Date.UTC(receivedAt.getUTCFullYear(), receivedAt.getUTCMonth() - retainMonths, 1);
   return {
     latestMs: receivedAt.getTime() + AHEAD_MS,
-    earliestMs: Date.UTC(receivedAt.getUTCFullYear(), receivedAt.getUTCMonth() - retainMonths, 1),
+    earliestMs: Math.max(kept, frozenBeforeMs),
   };
 }
 

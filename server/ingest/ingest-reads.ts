@@ -43,7 +43,7 @@ async function append(
   const sight = {
     antennas: door.antennas.get(site.id) ?? new Set<number>(),
     epcs: await validitiesOf(door, connection, epcs),
-    clock: doorClock(receivedAt, retainMonths),
+    clock: doorClock(receivedAt, retainMonths, door.frozenBeforeMs),
   };
   return appendReads(connection, {
     siteId: site.id,

@@ -158,6 +158,19 @@ describe('a month that is too old', () => {
     expect(await history()).toEqual(before);
   });
 
+  test('has gone for good, even when more months are to be kept from then on', async () => {
+    nextTurn();
+    expect(await retireMonth(context, hasty)).toBe('dropped');
+    const late = { antenna: 1, tag: carTag(7), readAt: seconds(-60).toISOString() };
+    const answer = await ingestReads(db, {
+      site: { id: site.id, code: site.code },
+      reads: [late, { ...late, readAt: seconds(1).toISOString() }],
+      receivedAt: context.clock.now(),
+      retainMonths: 24,
+    });
+    expect(answer).toMatchObject({ accepted: 1, problems: [{ index: 0, code: 'too-old' }] });
+  });
+
   test('takes what was set aside of it along, and leaves what is younger', async () => {
     await send([
       { antenna: 9, tag: carTag(1), readAt: seconds(-60).toISOString() },
