@@ -12,6 +12,7 @@ import {
 } from '../domain/movements/refold-point.js';
 import type { Visit } from '../domain/movements/visits.js';
 import type { Changes } from './changes.js';
+import { lengthenStanding } from './lengthen-standing.js';
 import { visitsOfRow, type PassRow } from './passage-rows.js';
 import { loadWheels, loadWindow, startOf, startOfWindow, type Window } from './point-window.js';
 import { loadSurroundings, touchedSpans } from './surroundings.js';
@@ -40,12 +41,14 @@ export async function foldPoint(
   connection: PoolConnection,
   network: Network,
   point: ReadPointConfiguration,
-  facts: FreshFacts,
+  given: FreshFacts,
   changes: Changes,
 ): Promise<void> {
+  const facts = await lengthenStanding(connection, network, point, given, changes);
+  if (facts.visits.length === 0 && given.visits.length > 0) return;
   const touched = await touchedSpans(connection, network, point, facts);
   const reach = reachOfChange({ point }, facts, touched);
-  const from = await startOfWindow(connection, network, point, reach.since);
+  const from = await startOfWindow(connection, network, point, { ...facts, since: reach.since });
   for (let further = FIRST_REACH_MS; ; further *= REACH_GROWTH) {
     const window = await loadWindow(connection, point.id, from, reach.until + further);
     const refolded = await refold(connection, network, point, facts, window, reach.until);

@@ -6,6 +6,7 @@ import {
 } from '../domain/movements/configuration.js';
 import { WHEEL_REACH_MS, type WheelRecord } from '../domain/movements/own-direction.js';
 import { hasSeveralOffsets } from '../domain/movements/passages.js';
+import { STANDING_MS } from '../domain/movements/passes.js';
 import { ALONE_MS } from '../domain/movements/strays.js';
 import type { PassStart } from '../domain/movements/refold-point.js';
 import type { SqlValue } from '../lib/bulk.js';
@@ -22,18 +23,31 @@ export interface Window {
   complete: boolean;
 }
 
-/** The last clean start before anything that the facts can touch; null: from the very beginning. */
+/**
+ * The last clean start before anything that the facts can touch; null: from the very beginning.
+ * What has stood in the beam for long reaches no further than when it came, unless it is read
+ * again or a wheel record covers it.
+ */
 export async function startOfWindow(
   connection: PoolConnection,
   network: Network,
   point: ReadPointConfiguration,
-  since: number,
+  { since, unitIds, sensed }: { since: number; unitIds: ReadonlySet<number>; sensed: boolean },
 ): Promise<PassStart | null> {
   const reachMs = Math.max(point.visitGapSeconds * 1000, ALONE_MS);
   const touching = await firstAtOf(
     connection,
-    'SELECT MIN(first_at) AS at FROM passages WHERE read_point_id = ? AND last_at >= ? AND first_at < ?',
-    [point.id, new Date(since - reachMs), new Date(since)],
+    `SELECT MIN(first_at) AS at FROM passages
+     WHERE read_point_id = ? AND last_at >= ? AND first_at < ?
+       AND (? OR first_at >= ? OR direction_basis IN ('sensors', 'antennas') OR unit_id IN (?))`,
+    [
+      point.id,
+      new Date(since - reachMs),
+      new Date(since),
+      sensed,
+      new Date(since - reachMs - STANDING_MS),
+      unitIds.size ? [...unitIds] : [0],
+    ],
   );
   const before = hasSeveralOffsets(network, point)
     ? await firstAtOf(
@@ -52,7 +66,7 @@ export async function startOfWindow(
   return start ? startOf(start) : null;
 }
 
-async function firstAtOf(connection: PoolConnection, sql: string, values: SqlValue[]) {
+async function firstAtOf(connection: PoolConnection, sql: string, values: (SqlValue | number[])[]) {
   const [row] = await connection.query<{ at: Date | null }[]>(sql, values);
   return row?.at?.getTime() ?? null;
 }
