@@ -35,7 +35,6 @@ export const stayMutations = [
       'a crossing in soon after a reported arrival is that arrival',
       'if (step.state.stay) step.state.stay.openedByPresence = true;',
     ],
-    ['a report at a line point moves nothing', 'if (isReport(step.fact)) return;'],
     [
       'inward with a stay open: the stay goes on',
       'if (stay.departedAt === null && at - previous.at < returnMs) {',
@@ -123,11 +122,6 @@ export const stayMutations = [
     ],
   ]),
   ...inFile(UNIT, 'rules', [
-    [
-      'a struck pair begins no drill of its own',
-      'before: { ...before, drill: null, held: noRows() },',
-      'before,',
-    ],
     ['a doubted sighting does not move it', 'if (doubt && !corroboratedBy) {', 'if (!context) {'],
     [
       'a doubt that something speaks against is kept all the same',
