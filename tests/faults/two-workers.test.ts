@@ -100,7 +100,7 @@ it.each(SEEDS)(
 
 it(
   'commit nothing of what one of them had begun before it was paused past its time',
-  { timeout: 120_000 },
+  { timeout: isLong ? 900_000 : 120_000 },
   async () => {
     const { configuration, ledger, posts, tokens } = await prepare(499);
     const third = Math.ceil(posts.length / 3);
