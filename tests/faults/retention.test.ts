@@ -158,6 +158,26 @@ describe('a month that is too old', () => {
     expect(await history()).toEqual(before);
   });
 
+  test('is not made anew: a rebuild of everything begins behind it', async () => {
+    context.clock.set(seconds(7200));
+    await sendTrain(-86_400, 1, 20);
+    await sendTrain(-CARS / 2);
+    await sendTrain(1800, 1, 40);
+    await drain();
+    const before = await history();
+    nextTurn();
+    expect(await retireMonth(context, hasty)).toBe('dropped');
+    await db.pool.query('UPDATE passes SET speed_kmh = 1 WHERE started_at >= ?', [seconds(900)]);
+    const spans = [{ readPointId: point.id, since: seconds(-100_000), until: seconds(100_000) }];
+    const plan = { cause: 'command', label: 'all', requestedBy: null, spans } as const;
+    await planRebuild(db.pool, plan);
+    const planned = await db.pool.query('SELECT since_at FROM rebuild_spans');
+    expect(planned).toEqual([{ since_at: cut }]);
+    await drain();
+    expect(await history()).toEqual(before);
+    expect(await db.pool.query('SELECT state FROM rebuilds')).toEqual([{ state: 'done' }]);
+  });
+
   test('has gone for good, even when more months are to be kept from then on', async () => {
     nextTurn();
     expect(await retireMonth(context, hasty)).toBe('dropped');
