@@ -10,7 +10,8 @@ import { openDatabase, withTransaction, type Database } from '../server/lib/data
 import { LiveEvents } from '../server/lib/live-events.js';
 import { createLogger } from '../server/lib/logger.js';
 import { createProjector } from '../server/projections/projector.js';
-import { LIVE, takeWork } from '../server/projections/take-work.js';
+import { LANES } from '../server/domain/lanes.js';
+import { takeWork } from '../server/projections/take-work.js';
 import { feedTraffic } from '../server/simulator/seed-traffic.js';
 import { seedDemo } from '../tests/support/demo-seed.js';
 import { migrate } from '../tests/support/migrations.js';
@@ -92,7 +93,7 @@ async function refill({ pool }: Database, queue: readonly Record<string, SqlValu
 
 async function drainBare({ pool }: Database): Promise<void> {
   for (;;) {
-    const work = await takeWork(pool, LIVE, MOST_READS);
+    const work = await takeWork(pool, LANES.live, MOST_READS);
     if (!work) return;
     await withTransaction(pool, (connection) =>
       connection.query('DELETE FROM work WHERE id IN (?)', [work.ids]),

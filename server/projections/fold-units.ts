@@ -1,4 +1,5 @@
 import type { PoolConnection } from 'mariadb';
+import type { Lane } from '../domain/lanes.js';
 import type { EquipmentKind } from '../domain/identifiers/equipment-groups.js';
 import type { Network } from '../domain/movements/configuration.js';
 import { foldHistory } from '../domain/movements/fold-history.js';
@@ -7,7 +8,6 @@ import { byKeys, inParts } from '../lib/bulk.js';
 import { KnownCompanions } from './known-companions.js';
 import { loadFacts } from './load-facts.js';
 import { configurationVersion, type LoadedNetwork } from './load-network.js';
-import type { Lane } from './take-work.js';
 import { writeHistories, type FoldedUnit } from './write-histories.js';
 
 const UNITS_A_PART = 500;

@@ -1,6 +1,7 @@
 import { randomUUID } from 'node:crypto';
 import type { PoolConnection } from 'mariadb';
 import { setTimeout as pause } from 'node:timers/promises';
+import { LANES, MOST_LATE_READS, type Lane } from '../domain/lanes.js';
 import type { Context } from '../lib/context.js';
 import { insertRows } from '../lib/bulk.js';
 import { withTransaction } from '../lib/database.js';
@@ -11,7 +12,7 @@ import { configurationVersion, loadNetwork, type LoadedNetwork } from './load-ne
 import { foldSlice, loadSlice } from './rebuild-slice.js';
 import { syncHeld } from './sync-held.js';
 import { advanceRebuild, frozenBefore, takeRebuild } from './take-rebuild.js';
-import { LATE, LIVE, takeWork, type Lane } from './take-work.js';
+import { takeWork } from './take-work.js';
 
 const LEASE = 'projector';
 /** What a killed worker's successor waits at most. */
@@ -20,8 +21,7 @@ const RENEW_MS = 4_000;
 /** Reads a portion holds at most, about. */
 const MOST_READS = 20_000;
 const MOST_UNITS = 4_000;
-/** A slice of what came late, so that what comes now never waits long. */
-const LATE_READS = 1_000;
+/** Of what came late only so much at a time, so that what comes now never waits long. */
 const LATE_UNITS = 500;
 const IDLE_MS = 100;
 const RETRY_MS = 1_000;
@@ -62,8 +62,8 @@ export class Projector {
     const lease = await this.holdLease();
     if (!lease) return NOTHING;
     try {
-      const live = await this.foldQueue(lease, LIVE, this.mostReads);
-      const late = await this.foldQueue(lease, LATE, LATE_READS);
+      const live = await this.foldQueue(lease, LANES.live, this.mostReads);
+      const late = await this.foldQueue(lease, LANES.late, MOST_LATE_READS);
       const units = await this.foldDirty(lease);
       const slices = live < this.mostReads / 2 && late === 0 ? await this.rebuild(lease) : 0;
       return { reads: live + late, units, slices };
@@ -167,8 +167,8 @@ export class Projector {
     const units = await withTransaction(db.pool, async (connection) => {
       await keepLease(connection, lease, LEASE_SECONDS);
       return [
-        ...(await foldUnits(connection, loaded, LIVE, MOST_UNITS)),
-        ...(await foldUnits(connection, loaded, LATE, LATE_UNITS)),
+        ...(await foldUnits(connection, loaded, LANES.live, MOST_UNITS)),
+        ...(await foldUnits(connection, loaded, LANES.late, LATE_UNITS)),
       ];
     });
     if (units.length) liveEvents.publish({ unitIds: units });
@@ -198,7 +198,7 @@ export class Projector {
       await keepLease(connection, lease, LEASE_SECONDS);
       await syncHeld(connection, loaded, slice.reads, { all: true });
       const changes = await foldSlice(connection, network, point, slice, usable);
-      await markDirty(connection, changes.dirty, LATE);
+      await markDirty(connection, changes.dirty, LANES.late);
       await advanceRebuild(connection, span, { reached: slice.to, now });
     });
     return 1;

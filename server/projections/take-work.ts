@@ -1,11 +1,7 @@
 import type { Pool } from 'mariadb';
+import type { Lane } from '../domain/lanes.js';
 import { WHEEL_REACH_MS } from '../domain/movements/own-direction.js';
 import { loadReads, loadReleased, type StoredRead } from './load-reads.js';
-
-/** The queue's lanes: what is said now goes before what was said late. */
-export const LIVE = 0;
-export const LATE = 1;
-export type Lane = typeof LIVE | typeof LATE;
 
 /** Some of one lane of the queue, ready to fold: whole batches in the order they were taken in. */
 export interface Work {
