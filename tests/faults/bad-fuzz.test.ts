@@ -11,7 +11,11 @@ const clock = buildClock('2026-12-01T12:00:00.000Z');
 const limits = { requestsPerSecond: 1e6, readsPerSecond: 1e9 };
 const door = useDoor(db, { clock, limits });
 const isLong = import.meta.env.TEST_MODE === 'long';
-const runs = { seed: isLong ? undefined : 20_261_201, numRuns: isLong ? 3_000 : 150 };
+const runs = {
+  seed: isLong ? undefined : 20_261_201,
+  numRuns: isLong ? 3_000 : 150,
+  endOnFailure: true,
+};
 const timeout = isLong ? 1_800_000 : 60_000;
 
 type Form = 'application/json' | 'application/x-ndjson';
