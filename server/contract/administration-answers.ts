@@ -43,6 +43,9 @@ export const siteView = z
 export type SiteView = z.infer<typeof siteView>;
 
 const placeView = z.object({ site: z.string(), track: z.string().nullable() }).nullable();
+const towardView = z.array(z.string()).meta({
+  description: 'Nodes of the route graph next on the open line on that side.',
+});
 
 export const readPointView = z
   .object({
@@ -53,6 +56,8 @@ export const readPointView = z
     kind: z.enum(['line', 'spot']),
     decreasingPlace: placeView,
     increasingPlace: placeView,
+    decreasingToward: towardView,
+    increasingToward: towardView,
     passGapSeconds: z.number().int(),
     visitGapSeconds: z.number().int(),
     drillMinutes: z.number().int(),

@@ -103,6 +103,16 @@ export const placeSchema = z.object({
 });
 export type Place = z.output<typeof placeSchema>;
 
+/** Each node of the route graph next on the open line, once. */
+const towardSchema = z
+  .array(codeSchema)
+  .max(20, 'names more than 20')
+  .refine((codes) => new Set(codes).size === codes.length, 'must not name one twice')
+  .meta({
+    description:
+      'Nodes of the route graph next on the open line on that side; none where it is a site.',
+  });
+
 export const readPointInput = z
   .object({
     site: codeSchema,
@@ -112,6 +122,8 @@ export const readPointInput = z
     kind: z.enum(['line', 'spot']),
     decreasingPlace: placeSchema.nullable().optional(),
     increasingPlace: placeSchema.nullable().optional(),
+    decreasingToward: towardSchema.optional(),
+    increasingToward: towardSchema.optional(),
     passGapSeconds: z.int().min(1).max(86_400).optional(),
     visitGapSeconds: z.int().min(1).max(86_400).optional(),
     drillMinutes: z.int().min(0).max(10_080).optional(),

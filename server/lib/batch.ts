@@ -13,6 +13,9 @@ export function batchPointer(batch: Batch<unknown>, index: number, ...path: Prop
   return pointerOf(batch.isList ? [index, ...path] : path);
 }
 
+/** A JSON pointer to a part of the item that is looked at. */
+export type PointerTo = (...path: PropertyKey[]) => string;
+
 /** Adds a fault for each item whose key an earlier item has already. */
 export function faultRepeats<T>(
   batch: Batch<T>,

@@ -25,6 +25,8 @@ export class ReadPoint extends Model<
   declare passGapSeconds: CreationOptional<number>;
   declare visitGapSeconds: CreationOptional<number>;
   declare drillMinutes: CreationOptional<number>;
+  /** JSON: `{ "decreasing": ["LARCHJ"], "increasing": [] }`, codes of route nodes. */
+  declare toward: CreationOptional<string>;
 }
 
 /** Binds ReadPoint to the given connection. */
@@ -45,6 +47,7 @@ export function initReadPoint(sequelize: Sequelize): typeof ReadPoint {
       passGapSeconds: DataTypes.INTEGER.UNSIGNED,
       visitGapSeconds: DataTypes.INTEGER.UNSIGNED,
       drillMinutes: DataTypes.INTEGER.UNSIGNED,
+      toward: DataTypes.TEXT,
     },
     { sequelize, tableName: 'read_points', modelName: 'ReadPoint' },
   );

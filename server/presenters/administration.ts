@@ -19,6 +19,7 @@ import type { Tag } from '../models/tag.js';
 import type { Unit } from '../models/unit.js';
 import { rolesOf } from '../policies/actor.js';
 import { leadsOf } from './leads.js';
+import { linesOf } from './lines-of.js';
 
 export function presentOrganisation(organisation: Organisation): OrganisationView {
   const { code, name, kind } = organisation;
@@ -68,6 +69,7 @@ export function presentReadPoint(
 ): ReadPointView {
   const place = (siteId: number | null, track: string | null) =>
     siteId === null ? null : { site: codes.get(siteId) ?? '', track };
+  const lines = linesOf(readPoint.toward);
   return {
     site: codes.get(readPoint.siteId) ?? '',
     code: readPoint.code,
@@ -76,6 +78,8 @@ export function presentReadPoint(
     kind: readPoint.kind as ReadPointView['kind'],
     decreasingPlace: place(readPoint.decreasingSiteId, readPoint.decreasingTrack),
     increasingPlace: place(readPoint.increasingSiteId, readPoint.increasingTrack),
+    decreasingToward: lines.decreasing,
+    increasingToward: lines.increasing,
     passGapSeconds: readPoint.passGapSeconds,
     visitGapSeconds: readPoint.visitGapSeconds,
     drillMinutes: readPoint.drillMinutes,

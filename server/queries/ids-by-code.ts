@@ -20,6 +20,15 @@ export async function organisationIdsByCode(
   return idsByCode(modelsOf(db.sequelize).Organisation, codes, transaction);
 }
 
+/** Ids of the route nodes with these codes; codes that none has are not in it. */
+export async function routeNodeIdsByCode(
+  db: Database,
+  codes: Iterable<string>,
+  transaction?: Transaction,
+): Promise<Map<string, number>> {
+  return idsByCode(modelsOf(db.sequelize).RouteNode, codes, transaction);
+}
+
 interface Coded {
   findAll(options: object): Promise<{ id: number; code: string }[]>;
 }

@@ -3,6 +3,7 @@ import { inTransaction } from '../lib/in-transaction.js';
 import { modelsOf } from '../models/index.js';
 import { bumpConfigVersion } from './bump-config-version.js';
 import { refuseUsed } from './refuse-used.js';
+import { usedByLines } from './used-by-lines.js';
 
 const uses = [
   {
@@ -13,9 +14,10 @@ const uses = [
     words: 'its site',
     sql: 'SELECT 1 FROM route_nodes WHERE id = :id AND site_id IS NOT NULL',
   },
+  usedByLines('route_nodes.id = :id'),
 ];
 
-/** Removes a junction without edges; 409 for one with edges and for the node of a site. */
+/** Removes a junction to which nothing refers; 409 for others and for the node of a site. */
 export async function removeRouteNode(db: Database, id: number): Promise<void> {
   await inTransaction(db.sequelize, async (transaction) => {
     await bumpConfigVersion(transaction);

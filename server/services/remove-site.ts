@@ -3,6 +3,7 @@ import { inTransaction } from '../lib/in-transaction.js';
 import { modelsOf } from '../models/index.js';
 import { bumpConfigVersion } from './bump-config-version.js';
 import { refuseUsed } from './refuse-used.js';
+import { usedByLines } from './used-by-lines.js';
 
 const uses = [
   {
@@ -19,6 +20,7 @@ const uses = [
               ON route_nodes.id IN (route_edges.from_node_id, route_edges.to_node_id)
            WHERE route_nodes.site_id = :id`,
   },
+  usedByLines('route_nodes.site_id = :id'),
   { words: 'reads', sql: 'SELECT 1 FROM `reads` WHERE site_id = :id' },
   { words: 'movement reports', sql: 'SELECT 1 FROM movement_reports WHERE site_id = :id' },
   { words: 'reports by eye', sql: 'SELECT 1 FROM hand_reports WHERE site_id = :id' },

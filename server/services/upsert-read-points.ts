@@ -1,11 +1,13 @@
-import type { Place, ReadPointInput } from '../contract/administration.js';
-import { batchPointer, faultRepeats, given, type Batch } from '../lib/batch.js';
+import type { ReadPointInput } from '../contract/administration.js';
+import { batchPointer, faultRepeats, given, type Batch, type PointerTo } from '../lib/batch.js';
 import type { Database } from '../lib/database.js';
 import { Faults } from '../lib/faults.js';
 import { modelsOf } from '../models/index.js';
 import type { ReadPoint } from '../models/read-point.js';
-import { siteIdsByCode } from '../queries/ids-by-code.js';
+import { routeNodeIdsByCode, siteIdsByCode } from '../queries/ids-by-code.js';
 import { changeConfiguration } from './change-configuration.js';
+import { placeColumns } from './place-columns.js';
+import { towardColumn } from './toward-column.js';
 
 const columns = [
   'name',
@@ -18,12 +20,8 @@ const columns = [
   'passGapSeconds',
   'visitGapSeconds',
   'drillMinutes',
+  'toward',
 ] as const;
-
-interface Sides {
-  decreasing: Place | null;
-  increasing: Place | null;
-}
 
 /** Stores read points by site and code, all or none. What is left out stays as it is. */
 export async function upsertReadPoints(
@@ -36,6 +34,7 @@ export async function upsertReadPoints(
   const { ReadPoint } = modelsOf(db.sequelize);
   await changeConfiguration(db, requestedBy, async (transaction) => {
     const siteIds = await siteIdsByCode(db, batch.items.flatMap(siteCodesOf), transaction);
+    const nodeIds = await routeNodeIdsByCode(db, batch.items.flatMap(nodeCodesOf), transaction);
     const codes = batch.items.map((item) => item.code);
     const known = await ReadPoint.findAll({
       where: { siteId: [...siteIds.values()], code: codes },
@@ -46,17 +45,20 @@ export async function upsertReadPoints(
       const present = byKey.get(`${siteIds.get(item.site)} ${item.code}`);
       const at = (...path: PropertyKey[]) => batchPointer(batch, index, ...path);
       faultUnknownSites(item, siteIds, faults, at);
-      return rowOf(item, present, siteIds, faults, at);
+      const row = rowOf(item, present, siteIds, faults, at);
+      return { ...row, toward: towardColumn(item, row, present, nodeIds, faults, at) };
     });
     faults.refuse();
     await ReadPoint.bulkCreate(rows, { updateOnDuplicate: [...columns], transaction });
   });
 }
 
-type PointerTo = (...path: PropertyKey[]) => string;
-
 function siteCodesOf({ site, decreasingPlace, increasingPlace }: ReadPointInput): string[] {
   return [site, decreasingPlace?.site ?? site, increasingPlace?.site ?? site];
+}
+
+function nodeCodesOf({ decreasingToward = [], increasingToward = [] }: ReadPointInput): string[] {
+  return [...decreasingToward, ...increasingToward];
 }
 
 function faultUnknownSites(
@@ -96,56 +98,3 @@ function rowOf(
   }
   return { ...row, ...placeColumns(item, present, siteIds, faults, at) };
 }
-
-/** Sides that are given, else those it has; a new spot without sides stands in its own site. */
-function placeColumns(
-  item: ReadPointInput,
-  present: ReadPoint | undefined,
-  siteIds: Map<string, number>,
-  faults: Faults,
-  at: PointerTo,
-) {
-  const { decreasing, increasing } = item.kind === 'spot' ? spotSides(item) : lineSides(item);
-  if (item.kind === 'spot') faultSpot(item, faults, at);
-  else if (!present) {
-    for (const side of ['decreasingPlace', 'increasingPlace'] as const) {
-      if (item[side] === undefined) {
-        faults.add(at(side), 'is missing: a site, or null for the open line');
-      }
-    }
-  }
-  const idOf = (place: Place | null) => (place ? (siteIds.get(place.site) ?? null) : null);
-  return {
-    decreasingSiteId:
-      decreasing === undefined ? (present?.decreasingSiteId ?? null) : idOf(decreasing),
-    decreasingTrack:
-      decreasing === undefined ? (present?.decreasingTrack ?? null) : (decreasing?.track ?? null),
-    increasingSiteId:
-      increasing === undefined ? (present?.increasingSiteId ?? null) : idOf(increasing),
-    increasingTrack:
-      increasing === undefined ? (present?.increasingTrack ?? null) : (increasing?.track ?? null),
-  };
-}
-
-function lineSides(item: ReadPointInput): Partial<Sides> {
-  return { decreasing: item.decreasingPlace, increasing: item.increasingPlace };
-}
-
-/** A spot has one place on both sides. */
-function spotSides(item: ReadPointInput): Sides {
-  const own = { site: item.site, track: item.track ?? null };
-  const place = item.increasingPlace ?? item.decreasingPlace ?? own;
-  return { decreasing: place, increasing: place };
-}
-
-function faultSpot(item: ReadPointInput, faults: Faults, at: PointerTo): void {
-  const { decreasingPlace, increasingPlace } = item;
-  for (const side of ['decreasingPlace', 'increasingPlace'] as const) {
-    if (item[side] === null) faults.add(at(side), 'must be a site: a spot is never the open line');
-  }
-  if (decreasingPlace && increasingPlace && !isSamePlace(decreasingPlace, increasingPlace)) {
-    faults.add(at('decreasingPlace'), 'must be the increasingPlace: a spot has one place');
-  }
-}
-
-const isSamePlace = (a: Place, b: Place) => a.site === b.site && a.track === b.track;

@@ -67,7 +67,14 @@ describe('a network loaded by script', () => {
     expect(sites.data.map((one: { code: string }) => one.code)).toEqual(['ALDER', 'CAIRN']);
     const { body: readPoint } = await admin.post('/api/read-points').send([north]).expect(200);
     expect(readPoint.data).toEqual([
-      { ...north, passGapSeconds: 180, visitGapSeconds: 60, drillMinutes: 60 },
+      {
+        ...north,
+        decreasingToward: [],
+        increasingToward: [],
+        passGapSeconds: 180,
+        visitGapSeconds: 60,
+        drillMinutes: 60,
+      },
     ]);
     const antenna = { site: 'ALDER', readPoint: 'NORTH', number: 1, offsetM: -4.5, side: 'left' };
     await admin.post('/api/antennas').send(antenna).expect(200, { data: antenna });
