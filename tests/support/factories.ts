@@ -115,9 +115,11 @@ export async function buildReadPoint(
     passGapSeconds: number;
     visitGapSeconds: number;
     drillMinutes: number;
+    /** Codes of the route nodes next on the open line, on either side. */
+    toward: Partial<Record<'decreasing' | 'increasing', string[]>>;
   }> = {},
 ): Promise<ReadPoint> {
-  const { site = await buildSite(db), decreasingSite, increasingSite, ...columns } = values;
+  const { site = await buildSite(db), decreasingSite, increasingSite, toward, ...columns } = values;
   const number = nextNumber();
   return modelsOf(db.sequelize).ReadPoint.create({
     siteId: site.id,
@@ -129,6 +131,7 @@ export async function buildReadPoint(
     decreasingTrack: null,
     increasingSiteId: increasingSite === undefined ? site.id : (increasingSite?.id ?? null),
     increasingTrack: null,
+    ...(toward && { toward: JSON.stringify(toward) }),
     ...columns,
   });
 }
