@@ -1,110 +1,30 @@
 import { beforeEach, describe, expect, test } from 'vitest';
 import { createApp } from '../../server/app.js';
-import { ingestReads } from '../../server/ingest/ingest-reads.js';
-import type { ReadPoint } from '../../server/models/read-point.js';
-import type { Site } from '../../server/models/site.js';
-import { createProjector } from '../../server/projections/projector.js';
 import { buildContext } from '../support/context.js';
 import { useTestDatabase } from '../support/database.js';
-import {
-  buildAntenna,
-  buildPerson,
-  buildReadPoint,
-  buildSite,
-  signIn,
-} from '../support/factories.js';
+import { buildPerson, signIn } from '../support/factories.js';
 import { carTag } from '../support/ingest.js';
+import {
+  buildReworkYard,
+  minutes,
+  plannedRework,
+  type ReworkYard,
+} from '../support/rework-yard.js';
 
 const db = useTestDatabase();
 const context = buildContext(db);
 const app = createApp(context, { clientDirectory: null });
-const EPC = '34140b8cac3aa24000000001';
+const planned = () => plannedRework(context);
+const nothing = { rebuilds: [], units: [] };
 let admin: Awaited<ReturnType<typeof signIn>>;
-let site: Site;
-/** Two tracks of one lead, and a gate. */
-let east: ReadPoint;
-let west: ReadPoint;
-let gate: ReadPoint;
-
-const minutes = (count: number) => new Date(Date.parse('2026-11-02T10:00:00Z') + count * 60_000);
+let yard: ReworkYard;
 
 beforeEach(async () => {
   context.clock.set('2026-11-03T00:00:00Z');
   admin = await signIn(app, await buildPerson(db));
-  site = await buildSite(db, { code: 'ALDER', name: 'Alder', timeZone: 'UTC' });
-  east = await buildReadPoint(db, { site, code: 'EAST', name: 'East', track: '1' });
-  west = await buildReadPoint(db, { site, code: 'WEST', name: 'West', track: '2' });
-  const industry = await buildSite(db, { code: 'MILL', kind: 'industry' });
-  gate = await buildReadPoint(db, { site, code: 'GATE', name: 'Gate', decreasingSite: industry });
-  for (const [readPoint, number, offsetM] of [
-    [east, 1, -3],
-    [east, 2, 3],
-    [west, 3, -3],
-    [west, 4, 3],
-    [gate, 5, 0],
-    [gate, 6, 0],
-  ] as const) {
-    await buildAntenna(db, { readPoint, number, offsetM });
-  }
-  await db.pool.query('UPDATE config_state SET version = version + 1');
-  // Antennas 1 and 2 read cars 1 and 2 at 0 and 120 minutes; 3 and 4 car 3 at 60; 5 car 4 at 240.
-  await send([
-    [1, carTag(1), 0],
-    [2, carTag(1), 0.02],
-    [1, carTag(2), 120],
-    [2, carTag(2), 120.02],
-    [3, carTag(3), 60],
-    [4, carTag(3), 60.02],
-    [5, carTag(4), 240],
-    [6, carTag(4), 240],
-  ]);
-  await drain();
+  yard = await buildReworkYard(context);
 });
 
-async function send(reads: [antenna: number, tag: string, at: number][]): Promise<void> {
-  await ingestReads(db, {
-    site: { id: site.id, code: site.code },
-    reads: reads.map(([antenna, tag, at]) => ({ antenna, tag, readAt: minutes(at).toISOString() })),
-    receivedAt: context.clock.now(),
-  });
-}
-
-async function drain(): Promise<void> {
-  const projector = createProjector(context);
-  await projector.drain();
-  await projector.stop();
-}
-
-interface Planned {
-  label: string;
-  /** Read point, and from and until in minutes. */
-  spans: [string, number, number][];
-}
-
-/** The rebuilds that wait, oldest first, and the units that are to be folded again. */
-async function planned(): Promise<{ rebuilds: Planned[]; units: string[] }> {
-  const rows = await db.pool.query<
-    { id: number; label: string; code: string; since_at: Date; until_at: Date }[]
-  >(
-    `SELECT r.id, r.label, rp.code, s.since_at, s.until_at FROM rebuilds r
-       JOIN rebuild_spans s ON s.rebuild_id = r.id JOIN read_points rp ON rp.id = s.read_point_id
-     WHERE r.state = 'waiting' ORDER BY r.id, rp.code, s.since_at`,
-  );
-  const byId = new Map<number, Planned>();
-  for (const { id, label, code, since_at: since, until_at: until } of rows) {
-    const rebuild = byId.get(id) ?? { label, spans: [] };
-    byId.set(id, rebuild);
-    rebuild.spans.push([code, minutesOf(since), minutesOf(until)]);
-  }
-  const units = await db.pool.query<{ unit_key: string }[]>(
-    `SELECT unit_key FROM dirty_units d JOIN units u ON u.id = d.unit_id
-     WHERE d.lane = 1 AND d.from_at = '1970-01-01' ORDER BY unit_key`,
-  );
-  return { rebuilds: [...byId.values()], units: units.map((row) => row.unit_key) };
-}
-
-const minutesOf = (at: Date) => Math.round((at.getTime() - minutes(0).getTime()) / 60_000);
-const nothing = { rebuilds: [], units: [] };
 const antenna = (number: number, changes: object = {}) => ({
   site: 'ALDER',
   readPoint: ['EAST', 'WEST', 'GATE'][Math.ceil(number / 2) - 1] as string,
@@ -183,8 +103,8 @@ describe('antennas', () => {
   });
 
   test('new: what it read before anybody knew of it', async () => {
-    await send([[9, carTag(1), 300]]);
-    await drain();
+    await yard.send([[9, carTag(1), 300]]);
+    await yard.drain();
     const added = { ...antenna(1), number: 9, readPoint: 'EAST' };
     await admin.post('/api/antennas').send(added).expect(200);
     const { rebuilds } = await planned();
@@ -352,7 +272,7 @@ describe('sites and routes', () => {
     const rows = await db.pool.query<{ unit_key: string }[]>(
       `SELECT unit_key FROM last_seen l JOIN units u ON u.id = l.unit_id
        WHERE l.stay_site_id = ? ORDER BY unit_key`,
-      [site.id],
+      [yard.site.id],
     );
     expect(rows.length).toBeGreaterThan(0);
     await admin
@@ -387,121 +307,6 @@ describe('sites and routes', () => {
   });
 });
 
-describe('the register', () => {
-  const car = (number: number, changes: object = {}) => ({
-    unit: `QTKX ${number}`,
-    kind: 'car',
-    ...changes,
-  });
-
-  test('a car that reads have named comes on with the very tags it has: its limits alone', async () => {
-    await admin
-      .post('/api/register')
-      .send(car(1, { tags: [{ value: carTag(1) }] }))
-      .expect(200);
-    expect(await planned()).toEqual({ rebuilds: [], units: ['QTKX1'] });
-    await drain();
-    await admin
-      .post('/api/register')
-      .send(car(1, { tags: [{ value: carTag(1) }] }))
-      .expect(200);
-    await admin
-      .post('/api/register')
-      .send(car(1, { carType: 'tank car' }))
-      .expect(200);
-    expect(await planned()).toEqual(nothing);
-  });
-
-  test('a tag that belongs to another car: around its passages, where it was read', async () => {
-    await admin
-      .post('/api/register')
-      .send(car(7, { tags: [{ value: carTag(2) }] }))
-      .expect(200);
-    expect(await planned()).toEqual({
-      rebuilds: [{ label: 'Register: QTKX 7', spans: [['EAST', 90, 150]] }],
-      units: [],
-    });
-  });
-
-  test('a tag that moves at an instant: only what was read from then on', async () => {
-    await send([
-      [1, carTag(2), 500],
-      [2, carTag(2), 500.02],
-    ]);
-    await drain();
-    await admin
-      .post('/api/register')
-      .send([car(2), car(7)])
-      .expect(200);
-    await drain();
-    const moved = { value: carTag(2), validFrom: minutes(400).toISOString() };
-    await admin.post('/api/register/QTKX7/tags').send(moved).expect(200);
-    const { rebuilds } = await planned();
-    expect(rebuilds).toEqual([{ label: 'Tag put on QTKX 7', spans: [['EAST', 470, 530]] }]);
-  });
-
-  test('an EPC that nobody knew: the reads that were set aside for it', async () => {
-    await send([
-      [3, EPC, 600],
-      [4, EPC, 600.02],
-      [5, EPC, 700],
-    ]);
-    await drain();
-    await admin
-      .post('/api/register')
-      .send(car(7, { tags: [{ value: EPC }] }))
-      .expect(200);
-    const { rebuilds } = await planned();
-    expect(rebuilds.map(({ spans }) => spans)).toEqual([
-      [
-        ['GATE', 670, 730],
-        ['WEST', 570, 630],
-      ],
-    ]);
-    await drain();
-    await admin
-      .post('/api/register')
-      .send(car(7, { tags: [] }))
-      .expect(200);
-    expect((await planned()).rebuilds.map(({ spans }) => spans)).toEqual([
-      [
-        ['GATE', 670, 730],
-        ['WEST', 570, 630],
-      ],
-    ]);
-  });
-
-  test('a car that turns out a locomotive: around all of its passages', async () => {
-    await admin
-      .post('/api/register')
-      .send(car(3, { kind: 'locomotive' }))
-      .expect(200);
-    expect(await planned()).toEqual({
-      rebuilds: [{ label: 'Register: QTKX 3', spans: [['WEST', 30, 90]] }],
-      units: ['QTKX3'],
-    });
-  });
-
-  test('a number that another car carries from an instant on', async () => {
-    await admin
-      .post('/api/register')
-      .send([car(2), car(7)])
-      .expect(200);
-    await drain();
-    const from = minutes(60).toISOString();
-    await admin.post('/api/register/QTKX2/renumber').send({ unit: 'QTKX 8', from }).expect(200);
-    const { rebuilds } = await planned();
-    expect(rebuilds).toEqual([{ label: 'QTKX 2 renumbered QTKX 8', spans: [['EAST', 90, 150]] }]);
-  });
-
-  test('taken off: its limits go', async () => {
-    await admin.post('/api/register').send(car(4)).expect(200);
-    await drain();
-    await admin.delete('/api/register/QTKX4').expect(204);
-    expect(await planned()).toEqual({ rebuilds: [], units: ['QTKX4'] });
-  });
-});
-
 test('an antenna that moves turns the trains round that it gave the direction of', async () => {
   const directions = async () => {
     const rows = await db.pool.query<{ read_point_id: number; direction: string }[]>(
@@ -509,7 +314,7 @@ test('an antenna that moves turns the trains round that it gave the direction of
     );
     return rows.map((row) => [row.read_point_id, row.direction]);
   };
-  const [first, beside, second] = [east.id, west.id, east.id];
+  const [first, beside, second] = [yard.east.id, yard.west.id, yard.east.id];
   expect((await directions()).slice(0, 3)).toEqual([
     [first, 'increasing'],
     [beside, 'increasing'],
@@ -519,7 +324,7 @@ test('an antenna that moves turns the trains round that it gave the direction of
     .post('/api/antennas')
     .send(antenna(1, { offsetM: 9 }))
     .expect(200);
-  await drain();
+  await yard.drain();
   expect((await directions()).slice(0, 3)).toEqual([
     [first, 'decreasing'],
     [beside, 'increasing'],
