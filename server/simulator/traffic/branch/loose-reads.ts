@@ -22,6 +22,7 @@ const HOUR = 3_600_000;
 const DAY = 24 * HOUR;
 const STANDS = { fromHour: 80, hours: 3, everyMs: [24_000, 36_000] as [number, number] };
 const BESIDE = { fromHour: 66, hours: 22, everyMs: [1_500_000, 3_300_000] as [number, number] };
+const SOON_MS = 150_000;
 /** Heard by Sorrel's new antenna, which nobody has entered yet. */
 const UNKNOWN_ANTENNA = 9;
 const TEST_TAG = encodeAei({ groupCode: 28, initial: 'QTST', number: 1, side: 'left' });
@@ -52,7 +53,10 @@ function beside(round: Round): LooseRead[] {
   const unit = branchCars.beside;
   const { value: tag } = tagOf(unit, 'right');
   const stands = { unit, readPoint: 'W1', how: 'beside' as const };
-  return momentsOf(round, 'beside', BESIDE).map((at) => {
+  const moments = momentsOf(round, 'beside', BESIDE);
+  const [first = round.start] = moments;
+  // Until it is heard again nothing tells it from a car that went by.
+  return [first, first + SOON_MS, ...moments.slice(1)].map((at) => {
     return { site: 'SORREL', antenna: 2, tag, at, rssi: -71.5, stands };
   });
 }

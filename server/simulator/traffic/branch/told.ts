@@ -30,7 +30,7 @@ export function movementReports(round: Round): MovementReport[] {
     const at = kilnAt(round, event);
     return carsOf.second.map((unit) => ({
       source: 'kiln desk',
-      reference: `${round.number} ${event} ${unit}`,
+      reference: `${round.number}${event === 'arrived' ? 'A' : 'D'}-${unit}`,
       unit,
       event,
       site: 'BRYONY',
