@@ -106,19 +106,14 @@ export const passMutations = [
       'median(passages.flatMap(({ own }) => own.speedKmh ?? []))',
       'passages[0]?.own.speedKmh ?? null',
     ],
-    ['passes of one instant are numbered', 'return { ...pass, ordinal };', 'return pass;'],
-  ]),
-  ...inFile('server/domain/movements/passes.ts', 'running', [
     [
       'a start is clean only where it was settled at once',
       'drafts.push(draftOf(tail, reversal, later && tail.length === 1));',
       'drafts.push(draftOf(tail, reversal, later));',
     ],
-    [
-      'a start is clean only later than what was before',
-      'const later = !before || passage.first.at > before.first.at;',
-      'const later = true;',
-    ],
+    ['passes of one instant are numbered', 'return { ...pass, ordinal };', 'return pass;'],
+  ]),
+  ...inFile('server/domain/movements/passes.ts', 'running', [
     ['a refold knows of a reversal before its start', ': from.reversal;', ': false;'],
   ]),
 ];
