@@ -6,7 +6,7 @@ import type { Site } from '../../server/models/site.js';
 import { createProjector } from '../../server/projections/projector.js';
 import { buildContext } from '../support/context.js';
 import { useTestDatabase } from '../support/database.js';
-import { buildPerson, signIn } from '../support/factories.js';
+import { buildPerson, buildReadPoint, signIn } from '../support/factories.js';
 import { carTag } from '../support/ingest.js';
 
 const db = useTestDatabase();
@@ -102,6 +102,19 @@ describe('the lines at a read point', () => {
     expect(await store(onLine)).toEqual({ ...lines, increasingToward: [] });
     const { site, code, name } = onLine;
     expect(await store({ site, code, name, kind: 'spot' })).toEqual(none);
+  });
+});
+
+describe('a row as seeders write it', () => {
+  test.each([undefined, {}, { increasing: ['EAST'] }])('%o', async (toward) => {
+    const site = await modelsOf(db.sequelize).Site.findOne({ where: { code: 'LINE' } });
+    if (!site) throw new Error('The line is not there.');
+    const row = { site, code: 'M', increasingSite: null, ...(toward && { toward }) };
+    const built = await buildReadPoint(db, row);
+    const { toward: before } = await built.reload();
+    const lines = { decreasingToward: [], increasingToward: toward?.increasing ?? [] };
+    expect(await store({ ...onLine, ...lines })).toEqual(lines);
+    expect((await built.reload()).toward).toBe(before);
   });
 });
 

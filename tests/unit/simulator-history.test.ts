@@ -47,6 +47,14 @@ describe('what the rules make of two weeks of invented traffic', () => {
     expect(directionWrong / read).toBeLessThanOrEqual(0.018);
   });
 
+  it.each(['MARTEN', 'MILLRACE'])('agrees with the truth at %s, which has one offset', (site) => {
+    const trains = truth.filter((crossing) => crossing.site === site);
+    const agreement = agreementOf(found, trains, 'oneOffset');
+    expect(agreement.crossings).toBeGreaterThan(150);
+    expect(agreement.directionRight).toBeGreaterThanOrEqual(0.99);
+    expect(agreement.directionWrong).toBe(0);
+  });
+
   it('knows by reports what came and went where no reader is', () => {
     const kiln = truth.filter(({ site }) => site === 'BRYONY');
     const cars = new Set(kiln.map(({ unit }) => unit).filter((unit) => unit.startsWith('QWKR160')));

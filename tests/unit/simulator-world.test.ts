@@ -87,6 +87,24 @@ describe('the invented network', () => {
     expect(first?.track).not.toBe(second?.track);
   });
 
+  it('knows on every side of a line read point what lies next, but for lines out of the region', () => {
+    const nodes = new Set<string>(world.nodes.map(({ code }) => code));
+    const blind: string[] = [];
+    for (const point of world.readPoints) {
+      const { site, code, decreasingPlace, increasingPlace } = point;
+      const { decreasing, increasing } = world.towardOf(point);
+      expect([...decreasing, ...increasing].filter((node) => !nodes.has(node))).toEqual([]);
+      for (const [place, lines] of [
+        [decreasingPlace, decreasing],
+        [increasingPlace, increasing],
+      ] as const) {
+        if (place !== null) expect(lines).toEqual([]);
+        else if (lines.length === 0) blind.push(`${site} ${code}`);
+      }
+    }
+    expect(blind).toEqual(['BITTERN X', 'FALLOW X']);
+  });
+
   it('dates the tag that changed cars, and knows nothing of the other', () => {
     const now = Date.UTC(2026, 1, 23);
     const spells = world.tagSpellsAt(now);
