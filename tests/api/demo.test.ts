@@ -6,7 +6,7 @@ import { truthBetween } from '../../server/simulator/truth-between.js';
 import { world } from '../../server/simulator/world.js';
 import { buildClock, buildContext } from '../support/context.js';
 import { useTestDatabase } from '../support/database.js';
-import { agreementLine, agreementOf } from '../support/demo-history.js';
+import { agreementLine, agreementOf } from '../support/demo-agreement.js';
 import { demoSeeders, foundInDatabase, seedDemo } from '../support/demo-seed.js';
 
 const HOUR = 3_600_000;

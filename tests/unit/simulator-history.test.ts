@@ -2,14 +2,8 @@ import { describe, expect, it } from 'vitest';
 import { historyOf } from '../../server/domain/movements/history-of.js';
 import { trafficBetween } from '../../server/simulator/traffic.js';
 import { strayTruthBetween, truthBetween } from '../../server/simulator/truth-between.js';
-import {
-  agreementLine,
-  agreementOf,
-  demoConfiguration,
-  demoLedger,
-  foundIn,
-  movedByStrays,
-} from '../support/demo-history.js';
+import { agreementLine, agreementOf, movedByStrays } from '../support/demo-agreement.js';
+import { demoConfiguration, demoLedger, foundIn } from '../support/demo-history.js';
 
 const DAY = 86_400_000;
 
