@@ -18,7 +18,7 @@ export async function expectWholeHistory(
   configuration: Configuration,
   ledger: Ledger,
 ): Promise<void> {
-  await waitUntil(() => isTakenUp(db), 60_000);
+  await waitUntil(() => isTakenUp(db), 240_000);
   const counts = `SELECT (SELECT COUNT(*) FROM \`reads\`) AS \`reads\`,
     (SELECT COUNT(*) FROM wheel_records) AS wheels, (SELECT COUNT(*) FROM held) AS held,
     (SELECT COUNT(*) FROM work) AS work, (SELECT COUNT(*) FROM dirty_units) AS dirty`;
