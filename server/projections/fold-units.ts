@@ -7,18 +7,9 @@ import { changeableFrom, nothingKnown, type FoldState } from '../domain/movement
 import { byKeys, inParts } from '../lib/bulk.js';
 import { KnownCompanions } from './known-companions.js';
 import { loadFacts } from './load-facts.js';
-import { configurationVersion, type LoadedNetwork } from './load-network.js';
 import { writeHistories, type FoldedUnit } from './write-histories.js';
 
 const UNITS_A_PART = 500;
-
-/** The configuration has moved on since it was loaded: load it and begin again. */
-export class ConfigurationChanged extends Error {
-  constructor() {
-    super('the configuration has changed');
-    this.name = 'ConfigurationChanged';
-  }
-}
 
 /**
  * Second stage: folds the sightings of dirty units of one lane, from where they changed on, into
@@ -26,7 +17,7 @@ export class ConfigurationChanged extends Error {
  */
 export async function foldUnits(
   connection: PoolConnection,
-  { network, version }: Pick<LoadedNetwork, 'network' | 'version'>,
+  network: Network,
   lane: Lane,
   most: number,
 ): Promise<number[]> {
@@ -34,11 +25,6 @@ export async function foldUnits(
     'SELECT unit_id, from_at FROM dirty_units WHERE lane = ? ORDER BY unit_id LIMIT ? FOR UPDATE',
     [lane, most],
   );
-  // A change of configuration marks units in its own transaction: what is marked must be folded
-  // under the configuration that it was marked for.
-  if (dirty.length && version !== (await configurationVersion(connection))) {
-    throw new ConfigurationChanged();
-  }
   for (const part of inParts(dirty, UNITS_A_PART)) {
     const starts = await startsOf(connection, part);
     const folded = await foldPart(connection, network, starts);

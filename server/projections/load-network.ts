@@ -1,4 +1,4 @@
-import type { Pool } from 'mariadb';
+import type { Pool, PoolConnection } from 'mariadb';
 import type { EquipmentKind } from '../domain/identifiers/equipment-groups.js';
 import {
   Network,
@@ -24,6 +24,29 @@ export interface LoadedNetwork {
 export async function configurationVersion(pool: Pick<Pool, 'query'>): Promise<number> {
   const rows = await pool.query<{ version: number }[]>('SELECT version FROM config_state');
   return rows[0]?.version ?? 0;
+}
+
+/** The configuration has moved on since it was loaded: load it and begin again. */
+export class ConfigurationChanged extends Error {
+  constructor() {
+    super('the configuration has changed');
+    this.name = 'ConfigurationChanged';
+  }
+}
+
+/**
+ * Keeps the configuration as it is until the caller's transaction ends. Throws ConfigurationChanged
+ * when it is not the one of `version` any more: who changes it plans, in the same transaction, what
+ * is to be folded again, and that must not be folded as it was before.
+ */
+export async function holdConfiguration(
+  connection: PoolConnection,
+  version: number,
+): Promise<void> {
+  const [row] = await connection.query<{ version: number }[]>(
+    'SELECT version FROM config_state WHERE id = 1 LOCK IN SHARE MODE',
+  );
+  if ((row?.version ?? 0) !== version) throw new ConfigurationChanged();
 }
 
 /** Reads the whole configuration: every unit, tag and identity, so not for each request. */

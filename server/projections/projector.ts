@@ -7,8 +7,14 @@ import { insertRows } from '../lib/bulk.js';
 import { withTransaction } from '../lib/database.js';
 import { dropLease, keepLease, LeaseLost, takeLease, type Lease } from '../lib/lease.js';
 import { foldReads, resolveReads, resolveReports } from './fold-reads.js';
-import { ConfigurationChanged, foldUnits } from './fold-units.js';
-import { configurationVersion, loadNetwork, type LoadedNetwork } from './load-network.js';
+import { foldUnits } from './fold-units.js';
+import {
+  ConfigurationChanged,
+  configurationVersion,
+  holdConfiguration,
+  loadNetwork,
+  type LoadedNetwork,
+} from './load-network.js';
 import { foldSlice, loadSlice } from './rebuild-slice.js';
 import { syncHeld } from './sync-held.js';
 import { advanceRebuild, frozenBefore, takeRebuild } from './take-rebuild.js';
@@ -150,10 +156,13 @@ export class Projector {
     const loaded = await this.network();
     const usable = await resolveReads(db, loaded, work.reads);
     const reported = await resolveReports(db, loaded, work.reports);
+    const frozen = work.wheels.length ? await frozenBefore(db.pool) : 0;
+    const wheels = work.wheels.filter(({ since }) => since >= frozen);
     await withTransaction(db.pool, async (connection) => {
       await keepLease(connection, lease, LEASE_SECONDS);
+      await holdConfiguration(connection, loaded.version);
       await syncHeld(connection, loaded, work.reads, { all: false });
-      const changes = await foldReads(connection, loaded, work.wheels, usable);
+      const changes = await foldReads(connection, loaded, wheels, usable);
       for (const { unitId, at } of reported) changes.unit(unitId, at);
       await markDirty(connection, changes.dirty, lane);
       await connection.query('DELETE FROM work WHERE id IN (?)', [work.ids]);
@@ -166,9 +175,10 @@ export class Projector {
     const loaded = await this.network();
     const units = await withTransaction(db.pool, async (connection) => {
       await keepLease(connection, lease, LEASE_SECONDS);
+      await holdConfiguration(connection, loaded.version);
       return [
-        ...(await foldUnits(connection, loaded, LANES.live, MOST_UNITS)),
-        ...(await foldUnits(connection, loaded, LANES.late, LATE_UNITS)),
+        ...(await foldUnits(connection, loaded.network, LANES.live, MOST_UNITS)),
+        ...(await foldUnits(connection, loaded.network, LANES.late, LATE_UNITS)),
       ];
     });
     if (units.length) liveEvents.publish({ unitIds: units });
@@ -196,6 +206,7 @@ export class Projector {
     const usable = await resolveReads(db, loaded, slice.reads);
     await withTransaction(db.pool, async (connection) => {
       await keepLease(connection, lease, LEASE_SECONDS);
+      await holdConfiguration(connection, loaded.version);
       await syncHeld(connection, loaded, slice.reads, { all: true });
       const changes = await foldSlice(connection, network, point, slice, usable);
       await markDirty(connection, changes.dirty, LANES.late);

@@ -6,6 +6,7 @@ import { Changes } from './changes.js';
 import { foldPoints } from './fold-points.js';
 import type { Usable } from './fold-reads.js';
 import { withReleases, type ReadRow, type StoredRead } from './load-reads.js';
+import type { PassRow } from './passage-rows.js';
 import { PointLedger } from './point-ledger.js';
 
 /** A stretch of one read point whose history is made anew from the ledger; [from, to), ms. */
@@ -48,11 +49,13 @@ export async function foldSlice(
   usable: readonly Usable[],
 ): Promise<Changes> {
   const changes = new Changes();
+  const stretch = [point.id, new Date(from), new Date(to)] as const;
   const stored = await connection.query<{ unit_id: number }[]>(
     `SELECT DISTINCT unit_id FROM passages
      WHERE read_point_id = ? AND first_at >= ? AND first_at < ?`,
-    [point.id, new Date(from), new Date(to)],
+    stretch,
   );
+  await voteAgain(connection, stretch, changes);
   const byUnit = new Map<number, UsableRead[]>();
   for (const { readPointId, unit, read } of usable) {
     if (readPointId !== point.id) continue;
@@ -71,4 +74,26 @@ export async function foldSlice(
   };
   await foldPoints(connection, network, new Map([[point.id, [facts]]]), changes);
   return changes;
+}
+
+/**
+ * What was read may be what it was, and yet history tell of it otherwise: lines, leads or the route
+ * graph may have changed.
+ */
+async function voteAgain(
+  connection: PoolConnection,
+  stretch: readonly [readPointId: number, from: Date, to: Date],
+  changes: Changes,
+): Promise<void> {
+  const passes = await connection.query<
+    Pick<PassRow, 'read_point_id' | 'started_at' | 'ordinal'>[]
+  >(
+    `SELECT read_point_id, started_at, ordinal FROM passes
+     WHERE read_point_id = ? AND started_at >= ? AND started_at < ?
+       AND (direction_basis IS NULL OR direction_basis = 'history')`,
+    stretch,
+  );
+  for (const { read_point_id: readPointId, started_at: startedAt, ordinal } of passes) {
+    changes.vote({ readPointId, startedAt: startedAt.getTime(), ordinal });
+  }
 }

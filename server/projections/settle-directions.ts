@@ -2,14 +2,16 @@ import type { PoolConnection } from 'mariadb';
 import type { Direction, Network } from '../domain/movements/configuration.js';
 import {
   directionByHistory,
+  mayVote,
   type Adjacent,
   type Voter,
 } from '../domain/movements/direction-by-history.js';
-import { STANDING_MS, type PassKey } from '../domain/movements/passes.js';
+import { unpackEvidence } from '../domain/movements/pack-evidence.js';
+import type { PassageRole, PassKey } from '../domain/movements/passes.js';
 import { byKeys } from '../lib/bulk.js';
 import { passKeyOf, passOfRow, type Changes } from './changes.js';
 import { neighboursOf, type NeighbourRow, type Neighbours } from './neighbours.js';
-import type { PassRow } from './passage-rows.js';
+import type { PassageRow, PassRow } from './passage-rows.js';
 
 /**
  * Votes again on the passes noted as undirected, in order of time. A direction that comes out
@@ -42,7 +44,7 @@ export async function settleDirections(
 interface Ballot {
   key: PassKey;
   direction: Direction | null;
-  members: { row: NeighbourRow; neighbours: Neighbours }[];
+  members: { row: PassageRow; neighbours: Neighbours }[];
 }
 
 const KEY = 'read_point_id = ? AND started_at = ? AND ordinal = ?';
@@ -67,7 +69,7 @@ async function loadBallots(
     const key = { readPointId: row.read_point_id, startedAt, ordinal: row.ordinal };
     return { key, direction: known(row.direction), members: [] };
   });
-  const rows = await byKeys<NeighbourRow>(
+  const rows = await byKeys<PassageRow>(
     connection,
     'SELECT * FROM passages WHERE :keys',
     OF_PASS,
@@ -88,22 +90,21 @@ function count(
   { key, members }: Ballot,
   decided: ReadonlyMap<string, Direction | null>,
 ): Direction | null {
-  const voters = members
-    .filter(({ row }) => mayVote(row))
-    .map(({ row, neighbours }): Voter => {
-      const { before, after } = neighbours;
-      return {
-        firstAt: row.first_at.getTime(),
-        lastAt: row.last_at.getTime(),
-        before: before && adjacentOf(before, decided),
-        after: after && adjacentOf(after, new Map()),
-      };
-    });
+  const severalOffsets = network.offsetsOf(key.readPointId) > 1;
+  const electorate = members.filter(({ row }) => {
+    const visits = severalOffsets ? unpackEvidence(row.evidence) : [];
+    return mayVote({ ...spanOf(row), role: row.role as PassageRole, visits }, severalOffsets);
+  });
+  const voters = electorate.map(({ row, neighbours: { before, after } }): Voter => ({
+    ...spanOf(row),
+    before: before && adjacentOf(before, decided),
+    after: after && adjacentOf(after, new Map()),
+  }));
   return directionByHistory(network, key.readPointId, voters);
 }
 
-function mayVote(row: NeighbourRow): boolean {
-  return row.role !== 'returned' && row.last_at.getTime() - row.first_at.getTime() <= STANDING_MS;
+function spanOf(row: PassageRow) {
+  return { firstAt: row.first_at.getTime(), lastAt: row.last_at.getTime() };
 }
 
 /** What was decided of its pass in this round stands above what is stored. */

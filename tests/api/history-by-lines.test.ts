@@ -122,6 +122,20 @@ describe('history', () => {
     expect(dirty).toEqual(CARS.map((car) => ({ unit: `QTKX${car}` })));
   });
 
+  test('is made anew when the lines become known, turn, or are taken away', async () => {
+    await runTrain();
+    await store({ ...onLine, ...lines });
+    await drain();
+    expect(await told()).toEqual({ direction: 'increasing', directionBasis: 'history' });
+    await store({ ...onLine, decreasingToward: ['EAST'], increasingToward: ['FORK'] });
+    await drain();
+    expect(await told()).toEqual({ direction: 'decreasing', directionBasis: 'history' });
+    await store({ ...onLine, decreasingToward: [], increasingToward: [] });
+    await drain();
+    expect(await told()).toEqual(unknown);
+    expect(await planned()).toEqual([]);
+  });
+
   test('stays as it is where the lines do, in whatever order they come', async () => {
     await runTrain();
     const wide = { decreasingToward: ['FORK', 'WEST'], increasingToward: ['EAST'] };

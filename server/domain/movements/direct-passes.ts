@@ -1,8 +1,8 @@
 import type { Network, UnitRef } from './configuration.js';
-import { directionByHistory, type Adjacent, type Voter } from './direction-by-history.js';
+import { directionByHistory, mayVote, type Adjacent, type Voter } from './direction-by-history.js';
 import { compareReads, compareText } from './evidence.js';
 import type { Passage } from './passages.js';
-import { isUndirected, STANDING_MS, withHistory, type Pass, type PassMember } from './passes.js';
+import { isUndirected, withHistory, type Pass, type PassMember } from './passes.js';
 
 /** A unit's passage in a pass, found again when the pass gets its direction. */
 interface Entry {
@@ -25,7 +25,12 @@ export function directPasses(network: Network, passes: Map<number, Pass[]>): voi
   for (const [readPointId, ofPoint] of passes) {
     ofPoint.forEach((pass, index) => {
       if (!isUndirected(pass)) return;
-      const voters = pass.members.filter(mayVote).map(({ passage }): Voter => {
+      const severalOffsets = network.offsetsOf(readPointId) > 1;
+      const electorate = pass.members.filter(({ passage, role }) => {
+        const { first, lastAt, visits } = passage;
+        return mayVote({ role, firstAt: first.at, lastAt, visits }, severalOffsets);
+      });
+      const voters = electorate.map(({ passage }): Voter => {
         const { own, at } = places.get(passage) as Place;
         const { lastAt } = passage;
         const [before, after] = [adjacent(own[at - 1]), adjacent(own[at + 1])];
@@ -34,11 +39,6 @@ export function directPasses(network: Network, passes: Map<number, Pass[]>): voi
       ofPoint[index] = withHistory(pass, directionByHistory(network, readPointId, voters));
     });
   }
-}
-
-/** A car that stands, or went back, says nothing of where its train went. */
-export function mayVote({ passage, role }: Pick<PassMember, 'passage' | 'role'>): boolean {
-  return role !== 'returned' && passage.lastAt - passage.first.at <= STANDING_MS;
 }
 
 function adjacentOf(readPointId: number, { passage, direction, basis }: PassMember): Adjacent {

@@ -1,6 +1,8 @@
 import type { Direction, Network, ReadPointConfiguration } from './configuration.js';
-import type { DirectionBasis } from './passes.js';
+import type { Evidence } from './evidence.js';
+import { STANDING_MS, type DirectionBasis, type PassageRole } from './passes.js';
 import { sideOfPoint } from './side-of-point.js';
+import { onlyGroup } from './strays.js';
 
 /** A unit's sighting next before or after its passage in the pass that is voted on. */
 export interface Adjacent {
@@ -18,6 +20,26 @@ export interface Voter {
   lastAt: number;
   before: Adjacent | null;
   after: Adjacent | null;
+}
+
+/** What of a passage decides whether it has a vote. */
+export interface Candidate extends Pick<Voter, 'firstAt' | 'lastAt'> {
+  role: PassageRole;
+  visits: readonly Evidence[];
+}
+
+/**
+ * A car that stands, or went back, says nothing of where its train went. Nor does, where there are
+ * two offsets, one tag heard by one antenna: that may be a car beside the track, and whoever really
+ * goes by is heard by more.
+ */
+export function mayVote(
+  { role, firstAt, lastAt, visits }: Candidate,
+  severalOffsets: boolean,
+): boolean {
+  if (role === 'returned' || lastAt - firstAt > STANDING_MS) return false;
+  const [only, ...others] = visits;
+  return !severalOffsets || others.length > 0 || !only || onlyGroup(only) === null;
 }
 
 const LEAST_VOTES = 3;

@@ -118,3 +118,30 @@ describe('at a site with a lead that is not equipped', () => {
     expect(track.passes(lead).at(-1)?.direction).toBe(told);
   });
 });
+
+describe('where there are two offsets', () => {
+  const offsets = twoYards('offsets');
+
+  test('one tag heard by one antenna has no vote: it may stand beside the track', () => {
+    const track = new Trackside(offsets.configuration).cross(
+      offsets.leadA,
+      CAR,
+      '08:00',
+      'decreasing',
+    );
+    track.read(offsets.leadA, 0, CAR, '16:00');
+    expect(track.passes(offsets.leadA).at(-1)).toMatchObject({ direction: null, basis: null });
+    expect(track.stays(CAR)).toMatchObject([{ departedAt: null }]);
+  });
+
+  test('heard on both sides it has', () => {
+    const track = new Trackside(offsets.configuration).cross(
+      offsets.leadA,
+      CAR,
+      '08:00',
+      'decreasing',
+    );
+    track.read(offsets.leadA, 0, CAR, '16:00').read(offsets.leadA, 1, CAR, '16:00:01', 'right');
+    expect(track.passes(offsets.leadA).at(-1)?.direction).toBe('increasing');
+  });
+});

@@ -1,7 +1,9 @@
 import { expect, test } from 'vitest';
 import { Network } from '../../../server/domain/movements/configuration.js';
-import { mayVote } from '../../../server/domain/movements/direct-passes.js';
-import { directionByHistory } from '../../../server/domain/movements/direction-by-history.js';
+import {
+  directionByHistory,
+  mayVote,
+} from '../../../server/domain/movements/direction-by-history.js';
 import { time, Trackside } from '../../support/trackside.js';
 import { twoYards } from '../../support/two-yards.js';
 
@@ -25,7 +27,11 @@ test('a car that went back has no vote on where its train went', () => {
   track.wheels(leadA, '09:59:59', '10:00:01', 'increasing');
   track.wheels(leadA, '10:00:39', '10:00:41', 'decreasing');
   const members = track.passes(leadA).flatMap((pass) => pass.members);
-  const votes = members.map((member) => [member.passage.unit, member.role, mayVote(member)]);
+  const votes = members.map(({ role, passage: { unit, first, lastAt, visits } }) => [
+    unit,
+    role,
+    mayVote({ role, firstAt: first.at, lastAt, visits }, false),
+  ]);
   expect(votes).toContainEqual(['QTKX1', 'returned', false]);
   expect(votes).toContainEqual(['QTKX2', 'presence', true]);
 });
