@@ -50,7 +50,7 @@ export const passageMutations = [
       'if (known?.registered) return { kind: known.kind, kindRank: REGISTER_RANK };',
     ],
   ]),
-  ...inFile('server/domain/movements/passages.ts', 'running', [
+  ...inFile('server/domain/movements/passages.ts', 'rules', [
     [
       'of a stranger’s tags the lowest group code says its kind',
       'if (rank < kindRank)',

@@ -210,13 +210,6 @@ export const stayMutations = [
       '(open.firstSeenAt)',
     ],
   ]),
-  ...inFile('server/domain/movements/fold-history.ts', 'running', [
-    [
-      'a checkpoint never parts sightings of one instant',
-      'if ((opening || last) && !tied) {',
-      'if (opening || last) {',
-    ],
-  ]),
   ...inFile('server/domain/movements/fold-state.ts', 'running', [
     [
       'a fold may change the stays that a drill keeps back',

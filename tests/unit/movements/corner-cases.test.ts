@@ -1,4 +1,5 @@
 import { describe, expect, test } from 'vitest';
+import { encodeAei } from '../../../server/domain/identifiers/aei.js';
 import { at, NetworkBuilder, type Equipped } from '../../support/network-builder.js';
 import { tagOf, time, Trackside } from '../../support/trackside.js';
 import { twoYards } from '../../support/two-yards.js';
@@ -24,6 +25,15 @@ describe('a passage', () => {
     const { point, track } = lead('sensors', (network) => network.register('QTKX2', 'locomotive'));
     // A minute and a half is no gap between cars, and one before a locomotive.
     track.read(point, 0, CAR, '10:00:00').read(point, 0, 'QTKX2', '10:01:30');
+    expect(track.passes(point).map(({ members }) => members.length)).toEqual([1, 1]);
+  });
+
+  test('of a stranger is of the kind that its lowest group code says, whichever tag came first', () => {
+    const { point, track } = lead('sensors');
+    track.read(point, 0, CAR, '10:00:00').read(point, 0, 'QTKX2', '10:01:30');
+    const locomotive = encodeAei({ groupCode: 5, initial: 'QTKX', number: 2, side: 'right' });
+    const [, first] = track.ledger.reads;
+    if (first) track.ledger.reads.push({ ...first, at: first.at + 1, tag: locomotive });
     expect(track.passes(point).map(({ members }) => members.length)).toEqual([1, 1]);
   });
 
