@@ -21,9 +21,7 @@ import { stayMutations } from './stays.mjs';
 const suites = {
   rules: { project: 'unit', files: ['tests/unit/movements/', 'tests/unit/theil-sen.test.ts'] },
   running: { project: 'unit', files: ['tests/properties/running-history.test.ts'] },
-  named: { project: 'db', files: ['tests/properties/db/named-', 'tests/properties/db/worker-'] },
-  database: { project: 'db', files: ['tests/properties/db/running-state.test.ts'] },
-  doors: { project: 'db', files: ['tests/api/ingest-', 'tests/api/held', 'tests/api/release'] },
+  lease: { project: 'db', files: ['tests/properties/db/worker-lease.test.ts'] },
 };
 
 /** Of the tree, what those tests load. */

@@ -71,10 +71,9 @@ export const historyMutations = [
     ],
     [
       'a car that only rolls past a spot was not spotted',
-      "const track = role === 'crossing' ? null : (place?.track ?? point.track);",
-      'const track = place?.track ?? point.track;',
+      "role === 'crossing' ? 'presence' : 'spot'",
+      "'spot'",
     ],
-    ['nor does it open a spot’s stay', "role === 'crossing' ? 'presence' : 'spot'", "'spot'"],
   ]),
   ...inFile(at('companions'), 'rules', [
     [
@@ -165,6 +164,13 @@ export const historyMutations = [
       'three votes, or all',
       'if (votes.length < LEAST_VOTES && votes.length < voters.length) return null;',
     ],
+    ['a car that stands does not vote', '|| lastAt - firstAt > STANDING_MS'],
+    ['a car that went back does not vote', "role === 'returned' || lastAt", 'lastAt'],
+    [
+      'at two offsets what one antenna heard does not vote',
+      'return !severalOffsets || others.length > 0 || !only || onlyGroup(only) === null;',
+      'return true;',
+    ],
     ['sixty in a hundred', 'if (increasing / votes.length >= MAJORITY)', 'if (increasing)'],
     [
       'whose two sightings disagree does not vote',
@@ -186,8 +192,6 @@ export const historyMutations = [
   ]),
   ...inFile(at('direct-passes'), 'rules', [
     ['only passes without direction of their own are voted on', 'if (!isUndirected(pass)) return;'],
-    ['a car that stands does not vote', '&& passage.lastAt - passage.first.at <= STANDING_MS'],
-    ['a car that went back does not vote', "role !== 'returned' && passage", 'passage'],
   ]),
   ...inFile(at('passes'), 'rules', [
     [

@@ -211,10 +211,6 @@ export const stayMutations = [
     ],
   ]),
   ...inFile('server/domain/movements/fold-state.ts', 'running', [
-    [
-      'a fold may change the stays that a drill keeps back',
-      '...(state.drill ? mutableStays(state.drill.before) : []),',
-    ],
     ['a fold may change the stay that is last', '...(state.stay ? [state.stay] : []),'],
   ]),
 ];

@@ -119,7 +119,7 @@ describe('a stay', () => {
     const hump = network.readPoint(yard, 'sensors', places);
     const track = new Trackside(network.build()).cross(hump, CAR, '10:00', 'increasing');
     expect(track.stays(CAR)).toMatchObject([
-      { siteId: yard, track: '2', arrivedAt: null, arrivalBasis: 'unknown', departedAt: null },
+      { siteId: yard, track: '2', arrivalBasis: 'unknown', departedAt: null, excursions: 0 },
     ]);
   });
 });
