@@ -29,6 +29,9 @@ const PROJECTIONS = [
   'unit_folds',
   'last_seen',
   'visible_units',
+  'doubts',
+  'pass_aliases',
+  'stay_aliases',
 ];
 
 /**

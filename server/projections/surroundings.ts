@@ -44,10 +44,14 @@ export async function touchedSpans(
   };
   // A read may lengthen a stored visit: whatever is near that one is near the read.
   const gapMs = point.visitGapSeconds * 1000;
-  const joined = await load(since - gapMs, until + gapMs);
+  const near = await load(since - BESIDE_MS, until + BESIDE_MS);
+  const joined = near.filter(
+    ({ firstAt, lastAt }) => lastAt >= since - gapMs && firstAt <= until + gapMs,
+  );
   const first = Math.min(since, ...joined.map(({ firstAt }) => firstAt));
   const last = Math.max(until, ...joined.map(({ lastAt }) => lastAt));
-  return load(first - BESIDE_MS, last + BESIDE_MS);
+  const isWider = first < since || last > until;
+  return isWider ? load(first - BESIDE_MS, last + BESIDE_MS) : near;
 }
 
 /** A wheel record bears on every visit that it covers. */
