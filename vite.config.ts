@@ -31,6 +31,8 @@ export default defineConfig(({ isSsrBuild }) => ({
   build: isSsrBuild ? serverBuild : clientBuild,
   test: {
     reporters: ['default'],
+    // One waits for the database while the other computes; vitest's own guess is a core less.
+    maxWorkers: 2,
     projects: [
       {
         extends: true,

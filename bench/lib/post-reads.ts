@@ -20,7 +20,11 @@ export function postReads(options: {
       response.on('data', (chunk: Buffer) => (text += chunk.toString()));
       response.on('end', () => resolve(text));
     });
-    request.on('error', reject);
+    // A kept connection may be closed by the server in the moment it is used again.
+    request.on('error', (error: NodeJS.ErrnoException) => {
+      if (request.reusedSocket && error.code === 'ECONNRESET') resolve(postReads(options));
+      else reject(error);
+    });
     request.end(body);
   });
 }
