@@ -7,7 +7,7 @@ import type { Usable } from './fold-reads.js';
 import type { Work } from './take-work.js';
 
 /** Facts further apart are folded one after the other, so that what lies between is left alone. */
-const APART_MS = 3 * 3_600_000;
+const APART_MS = 24 * 3_600_000;
 
 /** New facts by read point, those near in time together, earliest first. */
 export function factsByPoint(
