@@ -17,20 +17,22 @@ it(
   `comes to the same whatever way ${CASES} ledgers of ${READS} reads and more come in`,
   () => {
     for (let seed = FIRST_SEED; seed < FIRST_SEED + CASES; seed += 1) {
-      const { configuration, ledger } = disorderedCase(seed, READS);
+      const { configuration, ledger } = disorderedCase(seed, READS, { reported: true });
       const random = new SeededRandom(seed);
       const running = new RunningHistory(configuration);
       // Half of the cases nearly in order with stragglers, half in no order at all.
       const late = () => (random.chance(seed % 2 ? 1 : 0.05) ? random.between(0, 1e9) : 0);
       const facts = [
-        ...ledger.reads.map((read) => ({ read, wheel: null, at: read.at + late() })),
-        ...ledger.wheels.map((wheel) => ({ read: null, wheel, at: wheel.endedAt + late() })),
+        ...ledger.reads.map((read) => ({ read, at: read.at + late() })),
+        ...ledger.wheels.map((wheel) => ({ wheel, at: wheel.endedAt + late() })),
+        ...(ledger.reports ?? []).map((report) => ({ report, at: report.at + late() })),
       ].sort((a, b) => a.at - b.at);
       while (facts.length) {
         const portion = facts.splice(0, random.whole(1, 60));
         running.take({
-          reads: portion.flatMap(({ read }) => read ?? []),
-          wheels: portion.flatMap(({ wheel }) => wheel ?? []),
+          reads: portion.flatMap((fact) => ('read' in fact ? [fact.read] : [])),
+          wheels: portion.flatMap((fact) => ('wheel' in fact ? [fact.wheel] : [])),
+          reports: portion.flatMap((fact) => ('report' in fact ? [fact.report] : [])),
         });
       }
       expect(dump(running.history), `seed ${seed}`).toEqual(dumpOf(ledger, configuration));

@@ -1,5 +1,6 @@
 import { encodeAei } from '../../server/domain/identifiers/aei.js';
-import type { Ledger } from '../../server/domain/movements/history-of.js';
+import { reportEvents } from '../../server/contract/movement-reports.js';
+import type { Ledger, LedgerReport } from '../../server/domain/movements/history-of.js';
 import type { LedgerRead } from '../../server/domain/movements/resolve-read.js';
 import { at, NetworkBuilder, type BuiltPoint, type Equipped } from './network-builder.js';
 import { SeededRandom } from './seeded-random.js';
@@ -12,7 +13,7 @@ const HOUR_MS = 60 * MINUTE_MS;
  * A small network with every kind of read point, and reads that no railway would send: units that
  * stand, turn, come twice, tie in time, and gaps around every limit of the rules.
  */
-export function disorderedCase(seed: number, least: number) {
+export function disorderedCase(seed: number, least: number, { reported = false } = {}) {
   const random = new SeededRandom(seed);
   const { configuration, points, besides } = oddNetwork(random);
   const units = oddUnits();
@@ -48,8 +49,30 @@ export function disorderedCase(seed: number, least: number) {
       });
     }
   }
-  const ledger: Ledger = { reads: onceEach(reads), wheels: onceEachRecord(wheels) };
+  const reports = reported ? oddReports(random, time, least) : [];
+  const ledger: Ledger = { reads: onceEach(reads), wheels: onceEachRecord(wheels), reports };
   return { configuration, ledger };
+}
+
+const REPORTED = ['QTKX1', 'QTKX2', 'QTKX5', 'QLR70', 'QBLX77', 'QTKX99'];
+
+/** What railroads and clerks say of cars, one of which no reader has seen; wherever, whenever. */
+function oddReports(random: SeededRandom, until: number, reads: number): LedgerReport[] {
+  return Array.from({ length: Math.ceil(reads / 60) }, (): LedgerReport => {
+    const fact = {
+      identity: random.pick(REPORTED),
+      at: Math.floor(random.between(STARTS_AT, until) / 1000) * 1000,
+      siteId: random.pick([1, 3, 4]),
+    };
+    return random.chance(0.6)
+      ? { ...fact, basis: 'report', event: random.pick([...reportEvents]), track: null }
+      : {
+          ...fact,
+          basis: 'hand',
+          event: random.chance(0.5) ? 'seen' : 'notThere',
+          track: random.pick(['4', null]),
+        };
+  });
 }
 
 function gap(random: SeededRandom): number {

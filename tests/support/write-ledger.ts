@@ -1,6 +1,9 @@
+import { v5 } from 'uuid';
 import type { Configuration } from '../../server/domain/movements/configuration.js';
-import type { Ledger } from '../../server/domain/movements/history-of.js';
+import type { Ledger, LedgerReport } from '../../server/domain/movements/history-of.js';
+import { ingestHandReports } from '../../server/ingest/ingest-hand-reports.js';
 import { ingestReads } from '../../server/ingest/ingest-reads.js';
+import { ingestReports } from '../../server/ingest/ingest-reports.js';
 import { ingestWheels } from '../../server/ingest/ingest-wheels.js';
 import { openDatabase, type Database } from '../../server/lib/database.js';
 import { testDatabaseUrl } from './database.js';
@@ -20,6 +23,7 @@ interface Portion {
   siteId: number;
   reads: Ledger['reads'];
   wheels: Ledger['wheels'];
+  reports?: readonly LedgerReport[];
   receivedAt: Date;
 }
 
@@ -48,6 +52,9 @@ export async function writeLedger(
 
 function portionsOf(ledger: Ledger, random: SeededRandom): Portion[] {
   const portions = ledger.wheels.map((record) => portion(random, 0, [], [record]));
+  for (const report of ledger.reports ?? []) {
+    portions.push({ ...portion(random, 0, [], []), reports: [report] });
+  }
   for (const siteId of new Set(ledger.reads.map((read) => read.siteId))) {
     const own = ledger.reads.filter((read) => read.siteId === siteId);
     const rest = random.chance(0.5) ? random.shuffled(own) : nearlyInOrder(own, random);
@@ -93,6 +100,7 @@ export async function deliver(
 
 async function write(db: Database, configuration: Configuration, portion: Portion): Promise<void> {
   const { siteId, reads, wheels, receivedAt } = portion;
+  for (const report of portion.reports ?? []) await say(db, configuration, report);
   if (reads.length) {
     const sent = reads.map(({ antenna, tag, at }) => {
       return { antenna, tag, readAt: new Date(at).toISOString() };
@@ -114,6 +122,25 @@ async function write(db: Database, configuration: Configuration, portion: Portio
     };
     await ingestWheels(db, { site, record, receivedAt });
   }
+}
+
+/** A report always under the same reference or id, so that sent twice it is one. */
+async function say(
+  db: Database,
+  configuration: Configuration,
+  { identity, event, at, siteId, track, basis }: LedgerReport,
+): Promise<void> {
+  const reference = [identity, event, at, siteId, track].join(' ');
+  const bounds = { receivedAt: RECEIVED_AT, retainMonths: 13 };
+  if (basis === 'report') {
+    const site = siteOf(configuration, siteId).code;
+    const report = { reference, unit: identity, event, at: new Date(at).toISOString(), site };
+    await ingestReports(db, { organisationId: 1, source: 'test', reports: [report], ...bounds });
+    return;
+  }
+  const seen = event === 'seen';
+  const report = { id: v5(reference, v5.URL), unit: identity, at: new Date(at), seen };
+  await ingestHandReports(db, { siteId, personId: 1, track, reports: [report], ...bounds });
 }
 
 function siteOf(configuration: Configuration, id: number): { id: number; code: string } {

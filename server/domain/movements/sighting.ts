@@ -1,3 +1,4 @@
+import type { ReportEvent } from '../../contract/movement-reports.js';
 import { siteOfPlace, type Direction, type Network, type Place } from './configuration.js';
 import type { PassageRole, PassKey } from './passes.js';
 
@@ -13,25 +14,9 @@ export interface Sighting {
   tagCount: number;
 }
 
-/** What somebody may say of a unit's place. */
-export const reportEvents = [
-  'arrived',
-  'departed',
-  'placed',
-  'released',
-  'pulled',
-  'interchanged',
-  'badOrdered',
-  'repaired',
-  'loaded',
-  'emptied',
-  'lifted',
-  'grounded',
-] as const;
-
 /** A report of somebody's own, or what a person saw by eye; `firstAt` and `lastAt` are its time, ms. */
 export interface Report {
-  event: (typeof reportEvents)[number] | 'seen' | 'notThere';
+  event: ReportEvent | 'seen' | 'notThere';
   basis: 'report' | 'hand';
   siteId: number;
   track: string | null;
