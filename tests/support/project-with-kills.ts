@@ -10,6 +10,9 @@ import { RECEIVED_AT } from './write-ledger.js';
 const MOST_READS = 250;
 const KILLED = 0.6;
 const MOST_STATEMENTS = 30;
+/** So many connections are lost whatever the seed, each within the first statements of its turn. */
+const LEAST_KILLS = 2;
+const FIRST_STATEMENTS = 3;
 
 /**
  * Folds what comes in while `writing` goes on, and the rest after it: one projector after another,
@@ -29,7 +32,9 @@ export async function projectWithKills(
   const onlooker = createProjector(buildContext(db));
   try {
     while (busy || (await onlooker.lagMs())) {
-      fused.burnAfter(random.chance(KILLED) ? random.whole(1, MOST_STATEMENTS) : 0);
+      const statements = random.chance(KILLED) ? random.whole(1, MOST_STATEMENTS) : 0;
+      const isDue = fused.burnt < LEAST_KILLS;
+      fused.burnAfter(isDue ? random.whole(1, FIRST_STATEMENTS) : statements);
       await runUnlessKilled(createProjector(context, { mostReads: MOST_READS }));
       await db.pool.query('UPDATE worker_leases SET expires_at = NOW(3) - INTERVAL 1 SECOND');
     }
