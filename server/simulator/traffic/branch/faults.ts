@@ -38,6 +38,3 @@ export function areDeaf(site: string, at: number): boolean {
   const isRound = Math.abs(roundNumberAt(at)) % 2 === 1;
   return site === dead.site && isRound && hour >= dead.fromHour && hour < dead.toHour;
 }
-
-/** The longest that anything of the branch is kept back. */
-export const KEPT_BACK_MOST_MS = (linkDown.toHour - linkDown.fromHour) * HOUR;

@@ -3,7 +3,8 @@ import { useForm } from 'react-hook-form';
 import { zodResolver } from '@hookform/resolvers/zod';
 import { z } from 'zod';
 import { Button } from '../../../components/ui/button';
-import { Fault, Field } from '../../../components/ui/field';
+import { Fault } from '../../../components/ui/fault';
+import { Field } from '../../../components/ui/field';
 import { sayReason } from '../../../components/ui/notice';
 import { signIn } from '../api/sign-in';
 

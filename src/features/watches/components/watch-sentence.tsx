@@ -1,5 +1,5 @@
 import type { FieldErrors, UseFormReturn } from 'react-hook-form';
-import { Fault } from '../../../components/ui/field';
+import { Fault } from '../../../components/ui/fault';
 import { Options } from '../../../components/ui/options';
 import type { Choice } from '../../../components/ui/options';
 import { capital, kindNames, sayKind } from '../../../lib/words';
